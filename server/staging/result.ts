@@ -1,0 +1,87 @@
+import type { Note } from '../errors.ts';
+import type { MonthBill } from '../tariff/tariff.ts';
+
+/** Every rule the program knows; model.md calls them by these ids and so do files, HTTP and commands. */
+export const RULE_IDS = [
+  'fixed-speed',
+  'one-trimmed',
+  'late-staging',
+  'flow-steps',
+  'best-count',
+  'steady',
+  'batch',
+  'as-logged',
+] as const;
+
+export type RuleId = (typeof RULE_IDS)[number];
+
+/** Where the kWh go; the parts add up to the total, and each is computed by its own formula. */
+export interface LedgerKwh {
+  readonly lift: number;
+  readonly pipeFriction: number;
+  readonly branch: number;
+  readonly valve: number;
+  readonly pump: number;
+  readonly motor: number;
+  readonly drive: number;
+  readonly standby: number;
+}
+
+/** What one rule does with the whole record. Money is absent without a tariff. */
+export interface RuleResult {
+  readonly rule: RuleId;
+  /** How many drives the rule needs: none, one, or one per duty pump. */
+  readonly needsDrives: number;
+  readonly energyKwh: number;
+  /** Per m³ delivered; null where nothing was delivered. */
+  readonly kwhPerM3: number | null;
+  readonly aboveFloorPercent?: number;
+  readonly energyCost?: number;
+  readonly demandCost?: number;
+  readonly fixedCost?: number;
+  readonly taxCost?: number;
+  readonly totalCost?: number;
+  readonly carbonKg?: number;
+  /** Highest interval mean, standby included, and highest power of any state entered. */
+  readonly peakKw: number;
+  readonly peakStateKw: number;
+  readonly wireToWaterPercent: number | null;
+  readonly deliveredM3: number;
+  readonly shortfallM3: number;
+  readonly shortfallHours: number;
+  readonly hoursByCount: Readonly<Record<string, number>>;
+  readonly hoursBySet: Readonly<Record<string, number>>;
+  readonly outsidePreferredHours: number | null;
+  readonly outsideAllowableHours: number | null;
+  readonly nearDeadHeadHours: number;
+  readonly overloadHours: number;
+  readonly endOfCurveHours: number;
+  /** null where unknown (no active volume and the pumps cycle inside intervals). */
+  readonly starts: number | null;
+  readonly ledgerKwh: LedgerKwh;
+  readonly months?: readonly MonthBill[];
+  readonly periods?: readonly { readonly name: string; readonly energyKwh: number; readonly energyCost: number }[];
+}
+
+/** `nth-pump/result/1`: rules side by side on one record. */
+export interface ComparisonResult {
+  readonly format: 'nth-pump/result/1';
+  readonly record: {
+    readonly from: string;
+    readonly to: string;
+    readonly intervals: number;
+    readonly hours: number;
+    readonly gapHours: number;
+    readonly volumeM3: number;
+  };
+  readonly inputs: {
+    readonly station: string;
+    readonly tariff: string | null;
+    readonly currency: string;
+    readonly sha256: { readonly station: string; readonly record: string; readonly tariff: string | null };
+  };
+  readonly firmCapacityM3s: number;
+  readonly floor?: { readonly energyKwh: number };
+  readonly rules: readonly RuleResult[];
+  readonly notes: readonly Note[];
+}
