@@ -10,7 +10,6 @@ export interface Season {
 
 /** When something holds. null means always; `fromMinute` = `toMinute` means all day; a wrap past midnight is allowed. */
 export interface Period {
-  readonly name: string;
   readonly season: string | null;
   readonly days: readonly Weekday[] | null;
   readonly fromMinute: number;
@@ -18,11 +17,15 @@ export interface Period {
 }
 
 export interface EnergyRate extends Period {
+  readonly name: string;
   /** Money per kWh. */
   readonly rate: number;
 }
 
-export interface DemandCharge extends Period {
+export interface DemandCharge {
+  readonly name: string;
+  /** A demand window counts where its start is inside any of these. */
+  readonly periods: readonly Period[];
   /** Money per kW and month. */
   readonly rate: number;
   /** Never bill less than this share of the highest measured demand of so many preceding months. */
