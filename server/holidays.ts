@@ -23,8 +23,8 @@ export function publicHolidayDates(country: string, region: string | null, years
     for (const holiday of calendar.getHolidays(year)) {
       if (holiday.type !== 'public' || holiday.date.slice(11, 16) !== '00:00') continue;
       const first = Date.parse(`${holiday.date.slice(0, 10)}T00:00:00Z`);
-      // A day on which clocks change has 23 or 25 hours: whole days by rounding.
-      const days = Math.max(1, Math.round((holiday.end.getTime() - holiday.start.getTime()) / DAY_MS));
+      // Whole days only; a day on which clocks change has 23 hours and is whole.
+      const days = Math.floor((holiday.end.getTime() - holiday.start.getTime()) / DAY_MS + 0.1);
       for (let day = 0; day < days; day++) dates.add(new Date(first + day * DAY_MS).toISOString().slice(0, 10));
     }
   }

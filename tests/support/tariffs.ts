@@ -1,0 +1,55 @@
+import { billOf } from '../../server/tariff/bill.ts';
+import { planBill } from '../../server/tariff/plan.ts';
+import type { Bill, PowerSeries, Tariff } from '../../server/tariff/tariff.ts';
+import { readTariff, type TariffFile } from '../../server/tariff/tariffFile.ts';
+
+/** A tariff file with one rate, in a zone of the test's choice; any field may be replaced. */
+export function aTariffFile(fields: Partial<TariffFile> = {}): TariffFile {
+  return {
+    format: 'nth-pump/tariff/1',
+    name: 'test tariff',
+    currency: 'EUR',
+    timeZone: 'Europe/Dublin',
+    energy: [{ name: 'all', rate: 0.2 }],
+    ...fields,
+  };
+}
+
+export function aTariff(fields: Partial<TariffFile> = {}): Tariff {
+  return readTariff(aTariffFile(fields), 'tariff.json');
+}
+
+/** A record of equal steps; power in kW by interval. */
+export interface EvenRecord {
+  /** ISO 8601 with offset. */
+  readonly from: string;
+  readonly stepMinutes: number;
+  readonly kw: readonly number[];
+}
+
+/** Power that is not shared between two states, so that its mean is all there is to know. */
+export function powerOf({ from, stepMinutes, kw }: EvenRecord): PowerSeries {
+  const start = Date.parse(from);
+  const mean = Float64Array.from(kw, (value) => value * 1000);
+  const nothing = new Float64Array(kw.length);
+  return {
+    startMs: Float64Array.from(kw, (_, i) => start + i * stepMinutes * 60_000),
+    seconds: new Float64Array(kw.length).fill(stepMinutes * 60),
+    mean,
+    low: mean,
+    high: mean,
+    lowFlow: nothing,
+    highFlow: nothing,
+    flow: nothing,
+    activeVolume: null,
+  };
+}
+
+export function billFor(tariff: Tariff, series: PowerSeries): Bill {
+  return billOf(planBill(tariff, series.startMs, series.seconds), series);
+}
+
+/** The same power over so many hours. */
+export function steady(from: string, hours: number, kw = 1, stepMinutes = 60): EvenRecord {
+  return { from, stepMinutes, kw: new Array<number>((hours * 60) / stepMinutes).fill(kw) };
+}
