@@ -23,3 +23,14 @@ export function efficiencyAt(partLoad: PartLoad, load: number): number {
   }
   return partLoad[partLoad.length - 1]!.efficiency;
 }
+
+/**
+ * Power [W] lost in a motor or a drive that passes on `output`, at a shaft power that is the load: output·(1/η − 1).
+ * At no load, where η(L) reads 0, the loss of the first point stands: a share of the rating.
+ */
+export function lossAt(partLoad: PartLoad, output: number, shaft: number, rated: number): number {
+  if (typeof partLoad === 'number') return output * (1 / partLoad - 1);
+  if (shaft > 0) return output * (1 / efficiencyAt(partLoad, shaft / rated) - 1);
+  const first = partLoad[0]!;
+  return rated * first.load * (1 / first.efficiency - 1);
+}

@@ -1,4 +1,4 @@
-import { efficiencyAt, type PartLoad } from '../drive/partLoad.ts';
+import { lossAt, type PartLoad } from '../drive/partLoad.ts';
 import { GRAVITY } from '../units.ts';
 import { type PumpCurve, speedCorrection } from './pumpCurve.ts';
 import { root } from './roots.ts';
@@ -41,6 +41,8 @@ export interface PumpPower {
  */
 export class Pump {
   readonly name: string;
+  /** Pumps of one make (one entry of a station file, or entries alike in every field) can stand in for each other. */
+  readonly make: string;
   readonly ratedSpeed: number | null;
   readonly machines: readonly Machine[];
   /** k_b in branch loss = k_b·q² [m/(m³/s)²]. */
@@ -52,17 +54,19 @@ export class Pump {
   readonly minSpeed: number;
   readonly maxSpeed: number;
   /** Where every curve is a parabola: H = A·s² + B − a·q². */
-  private readonly closed: { readonly driven: number; readonly fixed: number; readonly shape: number } | null;
+  readonly parabola: { readonly driven: number; readonly fixed: number; readonly shape: number } | null;
   private readonly single: Machine | null;
 
   constructor(p: {
     name: string;
+    make: string;
     ratedSpeed: number | null;
     machines: readonly Machine[];
     branchLoss: number;
     density: number;
   }) {
     this.name = p.name;
+    this.make = p.make;
     this.ratedSpeed = p.ratedSpeed;
     this.machines = p.machines;
     this.branchLoss = p.branchLoss;
@@ -82,8 +86,8 @@ export class Pump {
         else fixed += m.inSeries * m.curve.shutoffHead;
         shape += m.inSeries * m.curve.shape!;
       }
-      this.closed = { driven, fixed, shape };
-    } else this.closed = null;
+      this.parabola = { driven, fixed, shape };
+    } else this.parabola = null;
   }
 
   /** Speed of one machine when the train is set to s. */
@@ -101,7 +105,7 @@ export class Pump {
 
   /** Head at flow q and speed s, H(q, s) = Σ s²·h(q/s). */
   head(q: number, speed: number): number {
-    if (this.closed) return this.closed.driven * speed * speed + this.closed.fixed - this.closed.shape * q * q;
+    if (this.parabola) return this.parabola.driven * speed * speed + this.parabola.fixed - this.parabola.shape * q * q;
     let sum = 0;
     for (const m of this.machines) {
       const s = this.speedOf(m, speed);
@@ -115,14 +119,14 @@ export class Pump {
    * at which q is just its end: the head made is then higher, and a valve takes the excess. Infinity where no speed does it.
    */
   speedFor(q: number, head: number): number {
-    if (this.single && this.single.drive) return this.single.curve.speedFor(q, head);
+    if (this.single?.drive) return this.single.curve.speedFor(q, head);
     let least = 0;
     for (const m of this.machines) {
       if (m.drive) least = Math.max(least, q / m.curve.endFlow);
       else if (q > m.curve.endFlow) return Infinity;
     }
-    if (this.closed) {
-      const { driven, fixed, shape } = this.closed;
+    if (this.parabola) {
+      const { driven, fixed, shape } = this.parabola;
       if (driven === 0) return head <= fixed - shape * q * q ? 1 : Infinity;
       return Math.max(Math.sqrt(Math.max(0, head + shape * q * q - fixed) / driven), least);
     }
@@ -145,8 +149,8 @@ export class Pump {
   flowInto(header: number, speed: number): number {
     const k = this.branchLoss;
     const end = this.endFlow(speed);
-    if (this.closed) {
-      const { driven, fixed, shape } = this.closed;
+    if (this.parabola) {
+      const { driven, fixed, shape } = this.parabola;
       const spare = driven * speed * speed + fixed - header;
       if (spare <= 0) return 0;
       const fall = shape + k;
@@ -174,22 +178,11 @@ export class Pump {
       const driven = onDrive && m.drive !== null;
       const s = driven ? speed : 1;
       const shaft = this.shaftOf(m, q, s);
-      const load = m.motor.ratedPower === null ? 1 : shaft / m.motor.ratedPower;
-      let power = shaft / efficiencyAt(m.motor.efficiency, load);
-      if (driven) power /= efficiencyAt(m.drive!.efficiency, load);
-      sum += m.inSeries * (shaft === 0 ? this.idle(m, driven) : power);
+      const rated = m.motor.ratedPower ?? shaft;
+      const input = shaft + lossAt(m.motor.efficiency, shaft, shaft, rated);
+      sum += m.inSeries * (driven ? input + lossAt(m.drive!.efficiency, input, shaft, rated) : input);
     }
     return sum;
-  }
-
-  /** Power of a machine whose shaft turns without load: the loss below the first point of a table is held. */
-  private idle(m: Machine, driven: boolean): number {
-    // At a load of exactly 0 the formula η(L) = L/(L + c) reads 0/0; take a load so small that only c is left.
-    const rated = m.motor.ratedPower;
-    if (rated === null || typeof m.motor.efficiency === 'number') return 0;
-    const load = 1e-12;
-    const input = (load * rated) / efficiencyAt(m.motor.efficiency, load);
-    return driven ? input / efficiencyAt(m.drive!.efficiency, load) : input;
   }
 
   private shaftOf(m: Machine, q: number, s: number): number {
@@ -209,12 +202,12 @@ export class Pump {
       const shaft = this.shaftOf(m, q, s);
       const correction = m.curve.speedCorrection ? speedCorrection(m.curve.bestEfficiency, s) : 1;
       const eta = m.curve.efficiency(x) * correction;
-      const load = m.motor.ratedPower === null ? 1 : shaft / m.motor.ratedPower;
-      const motor = efficiencyAt(m.motor.efficiency, load);
+      const rated = m.motor.ratedPower ?? shaft;
+      const motorLoss = lossAt(m.motor.efficiency, shaft, shaft, rated);
       into.water += n * water;
       into.pumpLoss += n * (q > 0 && head > 0 ? water * (1 / eta - 1) : shaft);
-      into.motorLoss += n * shaft * (1 / motor - 1);
-      if (driven) into.driveLoss += n * (shaft / motor) * (1 / efficiencyAt(m.drive!.efficiency, load) - 1);
+      into.motorLoss += n * motorLoss;
+      if (driven) into.driveLoss += n * lossAt(m.drive!.efficiency, shaft + motorLoss, shaft, rated);
     }
   }
 

@@ -1,0 +1,223 @@
+import type { PowerSeries } from '../tariff/tariff.ts';
+import { energyKwh } from '../units.ts';
+import type { DemandRecord } from './demandRecord.ts';
+import type { EqualPumps } from './equalPumps.ts';
+import type { LedgerKwh } from './result.ts';
+import type { Rule } from './rule.ts';
+import type { Action, State } from './state.ts';
+
+/** What a rule did in each interval, by columns, and what that adds up to. */
+export interface Run {
+  readonly rule: Rule;
+  readonly series: PowerSeries;
+  /** Counts of the lower and the upper state, the time share of the upper, and the speed of its trimmed pumps. */
+  readonly lowCount: Uint8Array;
+  readonly highCount: Uint8Array;
+  readonly share: Float32Array;
+  readonly speed: Float32Array;
+  readonly totals: Totals;
+}
+
+export interface Totals {
+  readonly energyKwh: number;
+  readonly ledgerKwh: LedgerKwh;
+  readonly deliveredM3: number;
+  readonly shortfallM3: number;
+  readonly shortfallHours: number;
+  readonly peakW: number;
+  readonly peakStateW: number;
+  /** Seconds by pumps running, and by set of pumps (bits in the station's order). */
+  readonly secondsByCount: readonly number[];
+  readonly secondsBySet: ReadonlyMap<number, number>;
+  readonly outsidePreferredHours: number | null;
+  readonly outsideAllowableHours: number | null;
+  readonly nearDeadHeadHours: number;
+  readonly overloadHours: number;
+  readonly endOfCurveHours: number;
+  /** null where pumps cycle and the volume between start and stop is unknown. */
+  readonly starts: number | null;
+}
+
+/** Called for each interval with what the rule did in it, for those who want more than the sums. */
+export type OnAction = (interval: number, action: Action) => void;
+
+/**
+ * A rule over a record, interval by interval.
+ *
+ * @param pumps  what the station can do; its static head is set for each interval
+ */
+export function runRule(rule: Rule, pumps: EqualPumps, record: DemandRecord, onAction?: OnAction): Run {
+  const { station } = pumps;
+  const standby = station.standbyPower;
+  const n = record.flow.length;
+  const series = {
+    startMs: record.startMs,
+    seconds: record.seconds,
+    mean: new Float64Array(n),
+    low: new Float64Array(n),
+    high: new Float64Array(n),
+    lowFlow: new Float64Array(n),
+    highFlow: new Float64Array(n),
+    flow: new Float64Array(n),
+    activeVolume: station.storage.activeVolume,
+  };
+  const lowCount = new Uint8Array(n);
+  const highCount = new Uint8Array(n);
+  const share = new Float32Array(n);
+  const speed = new Float32Array(n);
+  const tally = new Tally(pumps);
+  const decide = rule.start(pumps);
+  const steady = typeof record.staticHead === 'number';
+  if (steady) pumps.at(record.staticHead as number);
+  let end = Number.NaN;
+  for (let i = 0; i < n; i++) {
+    if (!steady) pumps.at((record.staticHead as Float64Array)[i]!);
+    const flow = record.flow[i]!;
+    const seconds = record.seconds[i]!;
+    const action = decide(flow);
+    const { low, high } = action;
+    const start = record.startMs[i]!;
+    // Half a second of slack: starts are whole milliseconds, lengths seconds.
+    tally.add(action, flow, seconds, Math.abs(start - end) < 500);
+    end = start + seconds * 1000;
+    const rising = action.share;
+    series.low[i] = low.power + standby;
+    series.high[i] = high.power + standby;
+    series.mean[i] = low.power + rising * (high.power - low.power) + standby;
+    series.lowFlow[i] = low.flow;
+    series.highFlow[i] = high.flow;
+    series.flow[i] = action.low === action.high ? low.flow : flow;
+    lowCount[i] = low.count;
+    highCount[i] = high.count;
+    share[i] = rising;
+    speed[i] = high.speed;
+    onAction?.(i, action);
+  }
+  return { rule, series, lowCount, highCount, share, speed, totals: tally.totals() };
+}
+
+/** Sums over a record; every sum is of its own quantity, none is found as a remainder. */
+class Tally {
+  private readonly pumps: EqualPumps;
+  private readonly standby: number;
+  private readonly volume: number | null;
+  private energy = 0;
+  private lift = 0;
+  private pipeFriction = 0;
+  private branch = 0;
+  private valve = 0;
+  private pump = 0;
+  private motor = 0;
+  private drive = 0;
+  private seconds = 0;
+  private delivered = 0;
+  private shortfall = 0;
+  private shortfallSeconds = 0;
+  private peak = 0;
+  private peakState = 0;
+  private outsidePreferred = 0;
+  private outsideAllowable = 0;
+  private nearDeadHead = 0;
+  private overload = 0;
+  private endOfCurve = 0;
+  private starts = 0;
+  private startsKnown = true;
+  private before = -1;
+  private readonly byCount: number[];
+  private readonly bySet = new Map<number, number>();
+
+  constructor(pumps: EqualPumps) {
+    this.pumps = pumps;
+    this.standby = pumps.station.standbyPower;
+    this.volume = pumps.station.storage.activeVolume;
+    this.byCount = new Array(pumps.most + 1).fill(0);
+  }
+
+  add(action: Action, flow: number, seconds: number, adjacent: boolean): void {
+    const { low, high, share } = action;
+    const mean = low.power + share * (high.power - low.power) + this.standby;
+    this.seconds += seconds;
+    this.energy += mean * seconds;
+    if (mean > this.peak) this.peak = mean;
+    this.delivered += (low.flow + share * (high.flow - low.flow)) * seconds;
+    if (action.shortfall > 1e-12 * flow) {
+      this.shortfall += action.shortfall * seconds;
+      this.shortfallSeconds += seconds;
+    }
+    if (share < 1) this.addState(low, (1 - share) * seconds);
+    if (share > 0) this.addState(high, share * seconds);
+    this.addStarts(action, flow, seconds, adjacent);
+  }
+
+  private addState(state: State, seconds: number): void {
+    const { station } = this.pumps;
+    this.byCount[state.count]! += seconds;
+    this.bySet.set(state.set, (this.bySet.get(state.set) ?? 0) + seconds);
+    const power = state.power + this.standby;
+    if (power > this.peakState) this.peakState = power;
+    if (state.count === 0) return;
+    const { parts, doubts } = state;
+    this.lift += parts.lift * seconds;
+    this.pipeFriction += parts.pipeFriction * seconds;
+    this.branch += parts.branch * seconds;
+    this.valve += parts.valve * seconds;
+    this.pump += parts.pump * seconds;
+    this.motor += parts.motor * seconds;
+    this.drive += parts.drive * seconds;
+    if (doubts.overloaded) this.overload += seconds;
+    if (doubts.atEndOfCurve) this.endOfCurve += seconds;
+    if (doubts.outsidePreferred) this.outsidePreferred += seconds;
+    if (station.allowable) {
+      if (doubts.outsideAllowable) this.outsideAllowable += seconds;
+    } else if (doubts.nearDeadHead) this.nearDeadHead += seconds;
+  }
+
+  /**
+   * Starts: the rises of the count that keeps running (that of the lower state), and one start per cycle for each pump
+   * that two shared states differ by. The first interval and the first after a gap start free.
+   */
+  private addStarts(action: Action, flow: number, seconds: number, adjacent: boolean): void {
+    const { low, high, share } = action;
+    const base = share >= 1 ? high.count : low.count;
+    if (adjacent && this.before >= 0 && base > this.before) this.starts += base - this.before;
+    this.before = base;
+    if (share <= 0 || share >= 1 || high.count === low.count) return;
+    if (this.volume === null) {
+      this.startsKnown = false;
+      return;
+    }
+    const cycle = this.volume / (flow - low.flow) + this.volume / (high.flow - flow);
+    this.starts += (seconds / cycle) * (high.count - low.count);
+  }
+
+  totals(): Totals {
+    const kwh = (joules: number) => energyKwh(joules, 1);
+    const { station } = this.pumps;
+    return {
+      energyKwh: kwh(this.energy),
+      ledgerKwh: {
+        lift: kwh(this.lift),
+        pipeFriction: kwh(this.pipeFriction),
+        branch: kwh(this.branch),
+        valve: kwh(this.valve),
+        pump: kwh(this.pump),
+        motor: kwh(this.motor),
+        drive: kwh(this.drive),
+        standby: kwh(this.standby * this.seconds),
+      },
+      deliveredM3: this.delivered,
+      shortfallM3: this.shortfall,
+      shortfallHours: this.shortfallSeconds / 3600,
+      peakW: this.peak,
+      peakStateW: this.peakState,
+      secondsByCount: this.byCount,
+      secondsBySet: this.bySet,
+      outsidePreferredHours: station.preferred ? this.outsidePreferred / 3600 : null,
+      outsideAllowableHours: station.allowable ? this.outsideAllowable / 3600 : null,
+      nearDeadHeadHours: this.nearDeadHead / 3600,
+      overloadHours: this.overload / 3600,
+      endOfCurveHours: this.endOfCurve / 3600,
+      starts: this.startsKnown ? this.starts : null,
+    };
+  }
+}

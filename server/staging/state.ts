@@ -1,0 +1,165 @@
+import type { Pump, PumpPower } from '../hydraulics/pump.ts';
+import { systemHead } from '../hydraulics/systemCurve.ts';
+import type { FlowRange, Station } from '../station/station.ts';
+import { GRAVITY } from '../units.ts';
+
+/** Some equal pumps that run alike. Flow in m³/s and head in m, of each. */
+export interface Running {
+  readonly pump: Pump;
+  readonly count: number;
+  readonly flow: number;
+  /** Share of rated speed; 1 direct on line. */
+  readonly speed: number;
+  readonly onDrive: boolean;
+}
+
+/** Where the power goes [W], each part by its own formula (model.md §6). */
+export interface Parts {
+  readonly lift: number;
+  readonly pipeFriction: number;
+  readonly branch: number;
+  readonly valve: number;
+  readonly pump: number;
+  readonly motor: number;
+  readonly drive: number;
+}
+
+/** Below this share of best-efficiency flow a pump counts as near dead-head (common practice: 25 to 30 %). */
+export const NEAR_DEAD_HEAD = 0.3;
+
+/** A state found at the very edge of a limit counts as inside it: rounding decides nothing. */
+export const SLACK = 1e-9;
+
+/** What an engineer would doubt about a state; each counts where any running pump is so. */
+export interface Doubts {
+  /** A motor carries more than its rating × service factor. */
+  readonly overloaded: boolean;
+  /** A pump is held at the end of its curve. */
+  readonly atEndOfCurve: boolean;
+  readonly nearDeadHead: boolean;
+  readonly outsidePreferred: boolean;
+  readonly outsideAllowable: boolean;
+}
+
+/** Whether shares of best-efficiency flow, least to most, lie within a range. */
+export function isInside(range: FlowRange, least: number, most: number): boolean {
+  return least >= range.from * (1 - SLACK) && most <= range.to * (1 + SLACK);
+}
+
+/** What a running set does at one static head: its total flow [m³/s] and electric power [W], standby not included. */
+export class State {
+  readonly running: readonly Running[];
+  readonly flow: number;
+  readonly power: number;
+  readonly staticHead: number;
+  /** Pumps that run, and which: bit i stands for duty pump i in the station's order. */
+  readonly count: number;
+  readonly set: number;
+  private readonly station: Station;
+  private split: Parts | null = null;
+  private doubted: Doubts | null = null;
+
+  constructor(station: Station, staticHead: number, set: number, running: readonly Running[]) {
+    this.station = station;
+    this.staticHead = staticHead;
+    this.set = set;
+    this.running = running;
+    let count = 0;
+    let flow = 0;
+    let power = 0;
+    for (const r of running) {
+      count += r.count;
+      flow += r.count * r.flow;
+      power += r.count * r.pump.electric(r.flow, r.speed, r.onDrive);
+    }
+    this.count = count;
+    this.flow = flow;
+    this.power = power;
+  }
+
+  /** Speed of the pumps on drives, 1 where none is. */
+  get speed(): number {
+    for (const r of this.running) if (r.onDrive) return r.speed;
+    return 1;
+  }
+
+  get parts(): Parts {
+    if (this.split) return this.split;
+    const { friction, density } = this.station;
+    const system = systemHead(friction, this.staticHead, this.flow);
+    const weight = density * GRAVITY;
+    let branch = 0;
+    let valve = 0;
+    const powers: PumpPower = { water: 0, pumpLoss: 0, motorLoss: 0, driveLoss: 0 };
+    for (const r of this.running) {
+      const branchHead = r.pump.branchLoss * r.flow * r.flow;
+      const head = r.pump.head(r.flow, r.onDrive ? r.speed : 1);
+      branch += r.count * weight * r.flow * branchHead;
+      valve += r.count * weight * r.flow * (head - branchHead - system);
+      r.pump.addPowers(powers, r.count, r.flow, r.speed, r.onDrive);
+    }
+    this.split = {
+      lift: weight * this.flow * this.staticHead,
+      pipeFriction: weight * this.flow * friction.at(this.flow),
+      branch,
+      valve,
+      pump: powers.pumpLoss,
+      motor: powers.motorLoss,
+      drive: powers.driveLoss,
+    };
+    return this.split;
+  }
+
+  /** What an engineer would doubt about the state. */
+  get doubts(): Doubts {
+    this.doubted ??= this.findDoubts();
+    return this.doubted;
+  }
+
+  private findDoubts(): Doubts {
+    const { preferred, allowable } = this.station;
+    let overloaded = false;
+    let atEndOfCurve = false;
+    let least = Infinity;
+    let most = 0;
+    for (const { pump, flow, speed, onDrive } of this.running) {
+      if (pump.overload(flow, speed, onDrive) > 1 + SLACK) overloaded = true;
+      if (pump.atEnd(flow, speed, onDrive)) atEndOfCurve = true;
+      least = Math.min(least, pump.leastShareOfBest(flow, speed, onDrive));
+      most = Math.max(most, pump.greatestShareOfBest(flow, speed, onDrive));
+    }
+    return {
+      overloaded,
+      atEndOfCurve,
+      nearDeadHead: least < NEAR_DEAD_HEAD * (1 - SLACK),
+      outsidePreferred: preferred !== null && !isInside(preferred, least, most),
+      outsideAllowable: allowable !== null && !isInside(allowable, least, most),
+    };
+  }
+}
+
+/** What a rule does in one interval: two states that share it by time (the same twice where nothing is shared). */
+export interface Action {
+  readonly low: State;
+  readonly high: State;
+  /** Time share of `high`. */
+  readonly share: number;
+  /** Flow that the pumps cannot meet [m³/s]. */
+  readonly shortfall: number;
+}
+
+/** A state held for the whole interval. */
+export function held(state: State, shortfall = 0): Action {
+  return { low: state, high: state, share: 0, shortfall };
+}
+
+/** Two states shared so that their mean flow is Q, low.flow ≤ Q ≤ high.flow. */
+export function shared(low: State, high: State, flow: number): Action {
+  if (high.flow <= low.flow) return held(low);
+  return { low, high, share: (flow - low.flow) / (high.flow - low.flow), shortfall: 0 };
+}
+
+/** Mean electric power of an action [W], standby not included. */
+export function meanPower(action: Action): number {
+  return action.low.power + action.share * (action.high.power - action.low.power);
+}
