@@ -53,7 +53,11 @@ describe('migrate', () => {
       { '0001_a.sql': 'CREATE TABLE other (x TEXT) STRICT;' },
       /0001_a\.sql is not what was applied/,
     ],
-    ['a file put in between', { '0002_a2.sql': 'SELECT 1;' }, /0002_b\.sql breaks the numbering of migrations: number 0003/],
+    [
+      'a file put in between',
+      { '0002_a2.sql': 'SELECT 1;' },
+      /0002_b\.sql breaks the numbering of migrations: number 0003/,
+    ],
     ['a number left out', { '0004_d.sql': 'SELECT 1;' }, /0004_d\.sql breaks the numbering of migrations: number 0003/],
   ])('stops at %s and changes nothing', (_, changed, sentence) => {
     put('0001_a.sql', 'CREATE TABLE a (x INTEGER) STRICT;');
