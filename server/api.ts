@@ -1,0 +1,81 @@
+import { z } from 'zod';
+import type { QualityReport } from './ingest/log.ts';
+import { type ComparisonResult, RULE_IDS } from './staging/result.ts';
+import { FLOW_UNITS, type FlowUnit } from './units.ts';
+
+/** Requests and answers of the HTTP interface. Stations and tariffs are their files; see their own schemas. */
+
+const id = z.union([z.int(), z.string()]);
+
+/** Body of `POST /api/comparisons`. Whether rules and pumps are known, the comparison itself says. */
+export const comparisonRequest = z.strictObject({
+  stationId: id,
+  recordId: id,
+  tariffId: id.nullable().optional(),
+  /** Left out: every rule that the station can run. */
+  rules: z.array(z.string()).min(1).optional(),
+  /** Names of pumps taken out. */
+  without: z.array(z.string()).optional(),
+});
+
+/** Query of `GET /api/comparisons`. */
+export const comparisonQuery = z.strictObject({ stationId: z.string().optional() });
+
+/** Query of `POST /api/stations/:id/records`: names, and what the person says of the file where detection would guess. */
+export const recordQuery = z.strictObject({
+  name: z.string().min(1).optional(),
+  fileName: z.string().min(1).optional(),
+  timeColumn: z.string().min(1).optional(),
+  flowColumn: z.string().min(1).optional(),
+  flowUnit: z.enum(Object.keys(FLOW_UNITS) as [FlowUnit, ...FlowUnit[]]).optional(),
+  timeZone: z.string().min(1).optional(),
+  dateOrder: z.enum(['dmy', 'mdy']).optional(),
+  decimal: z.enum(['.', ',']).optional(),
+  delimiter: z.enum([',', ';', '\t', '|']).optional(),
+});
+
+/** Query of `GET /api/comparisons/:id/series`. */
+export const seriesQuery = z.strictObject({
+  rule: z.enum(RULE_IDS),
+  buckets: z.coerce.number().int().min(10).max(20_000).default(1500),
+  fromMs: z.coerce.number().int().default(0),
+  toMs: z.coerce.number().int().default(Number.MAX_SAFE_INTEGER),
+});
+
+export interface StationEntry {
+  readonly id: number;
+  readonly name: string;
+  readonly demo: boolean;
+  readonly records: number;
+  /** The tariff the station was last compared under. */
+  readonly tariffId: number | null;
+}
+
+export interface RecordEntry {
+  readonly id: number;
+  readonly stationId: number;
+  readonly name: string;
+  readonly fileName: string;
+  readonly sha256: string;
+  readonly createdAt: string;
+  readonly report: QualityReport;
+}
+
+export interface TariffEntry {
+  readonly id: number;
+  readonly name: string;
+  readonly demo: boolean;
+  readonly currency: string;
+  readonly timeZone: string;
+}
+
+export interface ComparisonEntry {
+  readonly id: number;
+  readonly stationId: number;
+  readonly recordId: number;
+  /** null where none was given, or where it has been removed since. */
+  readonly tariffId: number | null;
+  readonly createdAt: string;
+}
+
+export type ComparisonBody = ComparisonEntry & { readonly without: readonly string[] } & ComparisonResult;

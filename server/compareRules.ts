@@ -1,0 +1,94 @@
+import { findComparison, insertComparison, type StoredComparison } from '../db/comparisons.ts';
+import type { Db } from '../db/open.ts';
+import { findRecord, readLog } from '../db/records.ts';
+import { findStation, rememberTariff } from '../db/stations.ts';
+import { findTariff } from '../db/tariffs.ts';
+import { existing } from './context.ts';
+import { jsonDigest } from './digest.ts';
+import { refuse } from './errors.ts';
+import { publicHolidayDates } from './holidays.ts';
+import { type Comparison, compareRules, resultOf } from './staging/compare.ts';
+import type { RuleId } from './staging/result.ts';
+import { readStation } from './station/readStation.ts';
+import { readTariff } from './tariff/tariffFile.ts';
+
+/** What to compare: ids as they were sent, rules and pumps by name. */
+export interface StoredComparisonRequest {
+  readonly stationId: string | number;
+  readonly recordId: string | number;
+  readonly tariffId?: string | number | null | undefined;
+  readonly rules?: readonly string[] | undefined;
+  readonly without?: readonly string[] | undefined;
+}
+
+/**
+ * Compares staging rules on a stored station and record, and stores the result with the files it was made from.
+ *
+ * @param nowMs  when, UTC [ms]
+ * @throws       InputError for an id, rule or pump unknown, a record of another station, a tariff that does not fit
+ */
+export function compareStored(db: Db, request: StoredComparisonRequest, nowMs: number): StoredComparison {
+  const station = existing((id) => findStation(db, id), request.stationId, 'stationId', 'station');
+  const record = existing((id) => findRecord(db, id), request.recordId, 'recordId', 'record');
+  const tariff =
+    request.tariffId == null ? null : existing((id) => findTariff(db, id), request.tariffId, 'tariffId', 'tariff');
+  if (record.stationId !== station.id) {
+    refuse({
+      code: 'not_found',
+      file: 'request',
+      at: 'recordId',
+      found: `record ${record.id} of station ${record.stationId}`,
+      wanted: `a record of station ${station.id}`,
+    });
+  }
+  const choices = { rules: (request.rules as RuleId[] | undefined) ?? null, without: request.without ?? [] };
+  const files = { stationFile: station.file, tariffFile: tariff?.file ?? null };
+  const comparison = compute(db, { recordId: record.id, choices, ...files });
+  const result = resultOf(comparison, {
+    station: jsonDigest(station.file),
+    record: record.sha256,
+    tariff: tariff && jsonDigest(tariff.file),
+  });
+  const ids = { stationId: station.id, recordId: record.id, tariffId: tariff?.id ?? null };
+  const id = db.transaction(() => {
+    if (tariff) rememberTariff(db, station.id, tariff.id);
+    return insertComparison(db, { ...ids, ...files, choices, result, nowMs });
+  })();
+  return findComparison(db, id)!;
+}
+
+/** How many comparisons are kept in memory with all their columns: the one on the screen, and a few beside it. */
+const KEPT = 4;
+
+/**
+ * Stored comparisons worked out once more from the files they were made from, with the columns that pictures need. The
+ * last few are kept, so that the pictures of one comparison cost one computation.
+ */
+export function recomputer(db: Db): (stored: StoredComparison) => Comparison {
+  const kept = new Map<number, Comparison>();
+  return (stored) => {
+    const comparison = kept.get(stored.id) ?? compute(db, stored);
+    kept.delete(stored.id);
+    kept.set(stored.id, comparison);
+    for (const oldest of kept.keys()) if (kept.size > KEPT) kept.delete(oldest);
+    return comparison;
+  };
+}
+
+function compute(
+  db: Db,
+  {
+    recordId,
+    stationFile,
+    tariffFile,
+    choices,
+  }: Pick<StoredComparison, 'recordId' | 'stationFile' | 'tariffFile' | 'choices'>,
+): Comparison {
+  return compareRules({
+    station: readStation(stationFile, 'station.json'),
+    log: readLog(db, recordId)!,
+    tariff: tariffFile === null ? null : readTariff(tariffFile, 'tariff.json', publicHolidayDates),
+    rules: choices.rules ?? undefined,
+    without: choices.without,
+  });
+}
