@@ -1,0 +1,77 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { internalRate } from '../../server/economics/irr.ts';
+import { presentValue } from '../../server/economics/presentValue.ts';
+import reference from '../reference/present-value.json' with { type: 'json' };
+
+describe('the internal rate of return', () => {
+  it.each(reference.rates)('of $flows is $rate: $source', ({ flows, rate, tolerance }) => {
+    expect(Math.abs(internalRate(flows).rate! - rate)).toBeLessThan(tolerance);
+  });
+
+  it.each(reference.severalRates)('of $flows is not one: $source', ({ flows, rates, tolerance }) => {
+    const found = internalRate(flows);
+    if (found.rate !== null || found.reason !== 'several') throw new Error('one rate or none was found');
+    expect(found.rates.length).toBe(rates.length);
+    found.rates.forEach((rate, k) => {
+      expect(Math.abs(rate - rates[k]!)).toBeLessThan(tolerance);
+    });
+  });
+
+  it.each([[[-100, -1, -2]], [[100, 1, 2]], [[0, 0]], [[]], [[5]], [[-100, 0, 0]]])(
+    'does not exist for %j',
+    (flows) => {
+      expect(internalRate(flows)).toEqual({ rate: null, reason: 'none' });
+    },
+  );
+
+  // (x − 1/1.1)² has one root, at 10 %, where it touches zero and does not cross; raised by 0.01 it has none.
+  it('is found where the present value only touches zero, and not where it stays above', () => {
+    const x = 1 / 1.1;
+    expect(internalRate([x * x, -2 * x, 1]).rate).toBeCloseTo(0.1, 6);
+    expect(internalRate([x * x + 0.01, -2 * x, 1])).toEqual({ rate: null, reason: 'none' });
+  });
+
+  it('is every rate that the flows were built from', () => {
+    const rate = fc.integer({ min: -60, max: 300 }).map((percent) => percent / 100);
+    fc.assert(
+      fc.property(
+        fc.uniqueArray(rate, { minLength: 1, maxLength: 4 }),
+        fc.integer({ min: 1, max: 1e6 }),
+        (rates, scale) => {
+          // Π (x − 1/(1 + r)) times x² + 1, which has no real root.
+          let flows = [scale, 0, scale];
+          for (const r of rates) {
+            const factor = 1 / (1 + r);
+            flows = [...flows, 0].map((flow, t) => (t > 0 ? flows[t - 1]! : 0) - factor * flow);
+          }
+          const found = internalRate(flows);
+          const list = found.rate !== null ? [found.rate] : found.reason === 'several' ? found.rates : [];
+          expect(list.length).toBe(rates.length);
+          [...rates]
+            .sort((a, b) => a - b)
+            .forEach((r, k) => {
+              expect(list[k]).toBeCloseTo(r, 5);
+            });
+        },
+      ),
+      { numRuns: 300, seed: 7 },
+    );
+  });
+
+  it('makes the present value of a long plain investment zero', () => {
+    fc.assert(
+      fc.property(
+        fc.integer({ min: 1, max: 1e7 }),
+        fc.array(fc.integer({ min: 1, max: 1e6 }), { minLength: 1, maxLength: 100 }),
+        (capital, savings) => {
+          const flows = [-capital, ...savings];
+          const { rate } = internalRate(flows);
+          const size = savings.reduce((sum, saving, t) => sum + saving * (1 + rate!) ** -(t + 1), capital);
+          expect(Math.abs(presentValue(flows, rate!) / size)).toBeLessThan(1e-10);
+        },
+      ),
+      { numRuns: 200, seed: 7 },
+    );
+  });
+});
