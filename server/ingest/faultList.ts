@@ -39,6 +39,7 @@ export class FaultList {
   throwIfAny(): void {
     const last = this.#faults.at(-1);
     if (last === undefined) return;
+    this.#faults.sort((a, b) => lineNumber(a) - lineNumber(b));
     if (this.#unlisted === 0) throw new InputError(this.#faults);
     const rest = `${this.#unlisted} more faults`;
     throw new InputError([
@@ -46,4 +47,9 @@ export class FaultList {
       { code: last.code, file: this.#file, at: '', found: rest, wanted: 'these mended first' },
     ]);
   }
+}
+
+/** Faults come in the order of the checks; people mend a file from top to bottom. */
+function lineNumber(fault: Fault): number {
+  return Number(/^line (\d+)$/.exec(fault.at)?.[1] ?? 0);
 }

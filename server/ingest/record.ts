@@ -134,10 +134,13 @@ function startsWithBrace(data: Uint8Array | string): boolean {
 function dataRows(table: CsvTable, layout: Layout, faults: FaultList, notes: Note[]): Int32Array {
   const { firstRow, columnCount, timeColumn } = layout;
   let end = table.rowCount;
-  while (end > firstRow && isFooterRow(table, end - 1, timeColumn)) end--;
-  if (end < table.rowCount) {
-    notes.push({ code: 'footer', text: `${table.rowCount - end} rows at the end sum up others and were left out` });
+  let sums = 0;
+  for (; end > firstRow; end--) {
+    if (isEmptyRow(table, end - 1)) continue;
+    if (!isFooterRow(table, end - 1, timeColumn)) break;
+    sums++;
   }
+  if (sums > 0) notes.push({ code: 'footer', text: `${sums} rows at the end sum up others and were left out` });
   const rows = new Int32Array(Math.max(0, end - firstRow));
   let count = 0;
   let comments = 0;
@@ -162,7 +165,6 @@ function dataRows(table: CsvTable, layout: Layout, faults: FaultList, notes: Not
 }
 
 function isFooterRow(table: CsvTable, row: number, timeColumn: number): boolean {
-  if (isEmptyRow(table, row)) return true;
   const time = cellText(table, row, timeColumn);
   return (isFooter(time) || isFooter(cellText(table, row, 0))) && typeof parseTime(time, 'dmy') === 'string';
 }
