@@ -1,6 +1,6 @@
-import { InputError } from '../errors.ts';
+import { type Fault, InputError } from '../errors.ts';
 import { DAY_MS, HOUR_MS, MINUTE_MS, offsetSpans, SECOND_MS, startOfLocalDay } from '../time.ts';
-import type { Period, Tariff, Weekday } from './tariff.ts';
+import type { Period, Season, Tariff, Weekday } from './tariff.ts';
 
 /**
  * How a record's intervals fall into a tariff: worked out once, then used for the bill of every rule.
@@ -60,6 +60,7 @@ const MINUTES_PER_DAY = 24 * 60;
 const SPILL_MS = 0.01;
 /** Rounding of sums of seconds, relative; a window half covered counts. */
 const HALF = 0.5 - 1e-9;
+const RATE_WANTED = 'a rate for every hour; a last one without season, days or times covers the rest';
 
 /**
  * Plan of a record under a tariff.
@@ -218,22 +219,65 @@ function dayTables(tariff: Tariff): (day: number) => DayTable {
   const tables = new Map<string, DayTable>();
   return (day) => {
     const date = new Date(day * DAY_MS);
-    const monthDay = (date.getUTCMonth() + 1) * 100 + date.getUTCDate();
     const isHoliday = tariff.holidays.dates.has(date.toISOString().slice(0, 10));
     const weekday = isHoliday ? tariff.holidays.as : WEEKDAYS[date.getUTCDay()]!;
-    const inSeason = tariff.seasons.map(({ from, to }) =>
-      from <= to ? monthDay >= from && monthDay <= to : monthDay >= from || monthDay <= to,
-    );
-    const key = `${weekday} ${inSeason.join()}`;
+    const seasons = seasonsOn(tariff, (date.getUTCMonth() + 1) * 100 + date.getUTCDate());
+    const key = `${weekday} ${[...seasons].join('\n')}`;
     let table = tables.get(key);
     if (table === undefined) {
-      table = dayTableOf(tariff, weekday, new Set(tariff.seasons.filter((_, s) => inSeason[s]).map((s) => s.name)));
+      table = dayTableOf(tariff, weekday, seasons);
       tables.set(key, table);
     }
     return table;
   };
 }
 
+/** Names of the seasons that a day of the year, month × 100 + day, is in. */
+function seasonsOn(tariff: Tariff, monthDay: number): ReadonlySet<string> {
+  const within = ({ from, to }: Season) =>
+    from <= to ? monthDay >= from && monthDay <= to : monthDay >= from || monthDay <= to;
+  return new Set(tariff.seasons.filter(within).map((season) => season.name));
+}
+
+/**
+ * Faults of a tariff that leaves hours of the year without an energy rate, one for each day of the week that has some,
+ * naming its first; none where every hour has one. `planBill` asks no more than the hours of a record; this asks all,
+ * for a tariff that is kept for records to come.
+ */
+export function coverageFaults(tariff: Tariff, fileName: string): Fault[] {
+  const faults: Fault[] = [];
+  for (const weekday of WEEKDAYS) {
+    const gap = firstGap(tariff, weekday);
+    if (gap === null) continue;
+    faults.push({
+      code: 'uncovered_hours',
+      file: fileName,
+      at: 'energy',
+      found: `no rate on a ${weekday} of ${gap.day} from ${gap.time}`,
+      wanted: RATE_WANTED,
+    });
+  }
+  return faults;
+}
+
+function firstGap(tariff: Tariff, weekday: Weekday): { day: string; time: string } | null {
+  const seen = new Set<string>();
+  for (let day = 0; day < 366; day++) {
+    const date = new Date(Date.UTC(2024, 0, 1 + day)); // a year with a 29 February
+    const seasons = seasonsOn(tariff, (date.getUTCMonth() + 1) * 100 + date.getUTCDate());
+    const key = [...seasons].join('\n');
+    if (seen.has(key)) continue;
+    seen.add(key);
+    const table = dayTableOf(tariff, weekday, seasons);
+    const cell = table.rate.indexOf(-1);
+    if (cell < 0) continue;
+    const time = new Date(table.cuts[cell]!).toISOString().slice(11, 16);
+    return { day: date.toISOString().slice(5, 10), time };
+  }
+  return null;
+}
+
+/** Table of a day of the week in so many seasons. */
 function dayTableOf(tariff: Tariff, weekday: Weekday, seasons: ReadonlySet<string>): DayTable {
   const today = (period: Period) =>
     (period.season === null || seasons.has(period.season)) && (period.days === null || period.days.includes(weekday));
@@ -285,7 +329,7 @@ function refuseUncovered(firstLocalMs: number, seconds: number, file: string): n
       file,
       at: 'energy',
       found: `no rate from ${first.toISOString().slice(0, 16).replace('T', ' ')} (${weekday}); ${hours} h of the record in all`,
-      wanted: 'a rate for every hour; a last one without season, days or times covers the rest',
+      wanted: RATE_WANTED,
     },
   ]);
 }

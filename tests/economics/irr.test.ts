@@ -25,11 +25,14 @@ describe('the internal rate of return', () => {
     },
   );
 
-  // (x − 1/1.1)² has one root, at 10 %, where it touches zero and does not cross; raised by 0.01 it has none.
+  // (x − 1/(1 + r))² has one root, where it touches zero and does not cross; raised by 0.01 it has none. Sixty rates, for
+  // rounding puts some of them just above zero and some just below.
   it('is found where the present value only touches zero, and not where it stays above', () => {
-    const x = 1 / 1.1;
-    expect(internalRate([x * x, -2 * x, 1]).rate).toBeCloseTo(0.1, 6);
-    expect(internalRate([x * x + 0.01, -2 * x, 1])).toEqual({ rate: null, reason: 'none' });
+    for (let percent = 1; percent <= 60; percent++) {
+      const x = 1 / (1 + percent / 100);
+      expect(internalRate([x * x, -2 * x, 1]).rate).toBeCloseTo(percent / 100, 9);
+      expect(internalRate([x * x + 0.01, -2 * x, 1])).toEqual({ rate: null, reason: 'none' });
+    }
   });
 
   it('is every rate that the flows were built from', () => {

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { billOf, energyCosts, peakShare } from '../../server/tariff/bill.ts';
-import { planBill } from '../../server/tariff/plan.ts';
+import { coverageFaults, planBill } from '../../server/tariff/plan.ts';
 import type { PowerSeries } from '../../server/tariff/tariff.ts';
 import { readTariff } from '../../server/tariff/tariffFile.ts';
 import localDays from '../reference/local-days.json' with { type: 'json' };
@@ -188,6 +188,30 @@ describe('hours without a rate', () => {
     );
   });
 
+  it('of any record are told of a tariff by itself', () => {
+    const tariff = aTariff({
+      seasons: [
+        { name: 'winter', from: '11-01', to: '02-28' },
+        { name: 'summer', from: '04-01', to: '10-31' },
+      ],
+      energy: [
+        { name: 'winter', season: 'winter', rate: 0.3 },
+        { name: 'weekend', days: ['sat', 'sun'], rate: 0.1 },
+        { name: 'summer', season: 'summer', from: '06:00', to: '05:30', rate: 0.2 },
+      ],
+    });
+    // March is in no season; and the first summer day that lacks its half-hour comes after it.
+    expect(coverageFaults(tariff, 'rates.json').map((fault) => fault.found)).toEqual(
+      WORKDAYS.map((day) => `no rate on a ${day} of 03-01 from 00:00`),
+    );
+    const withMarch = { ...tariff, seasons: [...tariff.seasons, { name: 'march', from: 301, to: 331 }] };
+    const rate = { ...tariff.energy[0]!, name: 'march', season: 'march' };
+    expect(
+      coverageFaults({ ...withMarch, energy: [...tariff.energy, rate] }, 'rates.json').map((fault) => fault.found),
+    ).toEqual(WORKDAYS.map((day) => `no rate on a ${day} of 04-01 from 05:30`));
+    expect(coverageFaults(aTariff(), 'rates.json')).toEqual([]);
+  });
+
   it('outside the record do not matter', () => {
     const tariff = aTariff({ energy: [{ name: 'workdays', days: [...WORKDAYS], rate: 0.2 }] });
     expect(billFor(tariff, powerOf(steady('2025-06-02T00:00:00+01:00', 120))).energyCost).toBeCloseTo(24, 9);
@@ -269,6 +293,18 @@ describe('ratchets', () => {
     });
   });
 
+  it('looks back on months before, and on the record rather than on the history where both know a month', () => {
+    const ratchet = { fraction: 0.8, months: 11 };
+    const history = [{ month: '2025-01', kw: 1000 }];
+    const always = aTariff({ timeZone: 'UTC', demand: [{ name: 'all', rate: 1, ratchet, history }] });
+    const bill = billFor(always, monthly([100, 10], '2025-01-01T00:00:00Z'));
+    expect(bill.months.map((month) => month.demand[0]!.billedKw)).toEqual([expect.closeTo(100), expect.closeTo(80)]);
+    // A Tuesday has no window of a Sunday charge; January's own history is not a month before.
+    const sundays = aTariff({ timeZone: 'UTC', demand: [{ name: 'all', days: ['sun'], rate: 1, ratchet, history }] });
+    const tuesday = billFor(sundays, powerOf(steady('2025-01-07T00:00:00Z', 24)));
+    expect(tuesday.months[0]!.demand[0]).toMatchObject({ measuredKw: null, billedKw: 0 });
+  });
+
   it('looks back at what was measured, not at what was billed', () => {
     // Two months back: 100 kW, then 80 billed, then 80; a ratchet on billed demand would carry 0.8·80 into April.
     const tariff = aTariff({
@@ -311,6 +347,12 @@ describe('pumps that switch inside an interval', () => {
     expect(bill.months[0]!.demand[0]!.measuredKw).toBeCloseTo(kw, 12);
     expect(bill.notes).toEqual([]);
     expect(bill.months[0]!.energyKwh).toBeCloseTo(9, 12);
+  });
+
+  it('keep their mean power: a bill changes nothing of what it is given', () => {
+    const series = shared(18);
+    billFor(aTariff({ demand: [{ name: 'all', rate: 1 }] }), series);
+    expect(series.mean[0]).toBe(9000);
   });
 
   it('take their mean, with one note, where the active volume is unknown', () => {
