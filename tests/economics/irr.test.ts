@@ -25,13 +25,13 @@ describe('the internal rate of return', () => {
     },
   );
 
-  // (x − 1/(1 + r))² has one root, where it touches zero and does not cross; raised by 0.01 it has none. Sixty rates, for
-  // rounding puts some of them just above zero and some just below.
+  // (x − 1/(1 + r))²·(x + 1) has one positive root, where it touches zero and does not cross; raised by 0.01 it has none.
+  // Sixty rates, for rounding puts some of them just above zero and some just below.
   it('is found where the present value only touches zero, and not where it stays above', () => {
     for (let percent = 1; percent <= 60; percent++) {
       const x = 1 / (1 + percent / 100);
-      expect(internalRate([x * x, -2 * x, 1]).rate).toBeCloseTo(percent / 100, 9);
-      expect(internalRate([x * x + 0.01, -2 * x, 1])).toEqual({ rate: null, reason: 'none' });
+      expect(internalRate([x * x, x * x - 2 * x, 1 - 2 * x, 1]).rate).toBeCloseTo(percent / 100, 7);
+      expect(internalRate([x * x + 0.01, x * x - 2 * x, 1 - 2 * x, 1])).toEqual({ rate: null, reason: 'none' });
     }
   });
 
