@@ -163,7 +163,12 @@ function findHeader(input: LayoutInput): number | null {
       FLOW_NAMES.has(h.name) || LEVEL_NAMES.has(h.name) || h.name === wantedFlow || h.whole === wantedFlow;
     const named = headers.filter((h) => h.title !== '').length;
     const timeAt = headers.findIndex((h) => isTimeName(h) || h.name === wantedTime || h.whole === wantedTime);
-    if (timeAt >= 0 && (headers.some(isValue) || (named >= 2 && timesFollow(table, row, timeAt)))) return row;
+    if (
+      timeAt >= 0 &&
+      (headers.some(isValue) ||
+        (named >= 2 && !headers.some((h) => isTimeLike(h.title)) && timesFollow(table, row, timeAt)))
+    )
+      return row;
     if (fallback === null && (headers.some(isValue) || (timeAt >= 0 && headers.length === 1))) fallback = row;
   }
   return fallback;

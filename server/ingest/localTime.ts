@@ -29,8 +29,8 @@ export function fixedOffsetMs(zone: string): number | null {
 
 /**
  * Instants of local wall-clock times, row by row in chronological file order. The zone is asked once for the whole file.
- * In a repeated hour the order of the file decides: after the clock has stepped back (or beside a time already seen, for
- * files that write the two passes pairwise) a row belongs to the second pass.
+ * In a repeated hour the order of the file decides: where the clock fails to advance once, the second pass begins; where
+ * it does so several times the two passes are written pairwise, and a time already seen is of the second.
  *
  * @param zone   IANA zone, or a fixed offset `+01:00`
  * @param times  wall clock read as UTC [ms] where `local` is 1, instant elsewhere
@@ -109,7 +109,7 @@ function clockChanges(spans: readonly OffsetSpan[]): ClockChange[] {
 function secondPass(rows: readonly number[], times: Float64Array): Set<number> {
   const second = new Set<number>();
   const back: number[] = [];
-  for (let i = 1; i < rows.length; i++) if (times[rows[i]!]! < times[rows[i - 1]!]!) back.push(i);
+  for (let i = 1; i < rows.length; i++) if (times[rows[i]!]! <= times[rows[i - 1]!]!) back.push(i);
   if (back.length === 1) {
     for (const row of rows.slice(back[0])) second.add(row);
     return second;
