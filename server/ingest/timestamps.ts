@@ -22,8 +22,7 @@ export type TimeFault = 'not-a-time' | 'no-such-day' | 'needs-order';
 export function dayMs(year: number, month: number, day: number): number {
   if (month < 1 || month > 12 || day < 1 || day > 31) return Number.NaN;
   const ms = Date.UTC(year, month - 1, day);
-  const back = new Date(ms);
-  return back.getUTCDate() === day && back.getUTCMonth() === month - 1 ? ms : Number.NaN;
+  return new Date(ms).getUTCMonth() === month - 1 ? ms : Number.NaN;
 }
 
 /**

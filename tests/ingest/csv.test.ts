@@ -20,6 +20,8 @@ describe('readCsv', () => {
   it('keeps the line number of each row through blank lines and quoted line breaks', () => {
     const table = readCsv('f.csv', 'a,b\n\n1,"x\ny"\n2,z\n');
     expect(Array.from(table.lineOf.slice(0, table.rowCount))).toEqual([1, 3, 5]);
+    const windows = readCsv('f.csv', 'sep=,\r\na,b\r\n1,2\r\n3,4\r\n');
+    expect(Array.from(windows.lineOf.slice(0, windows.rowCount))).toEqual([2, 3, 4]);
   });
 
   it.each([
@@ -55,6 +57,7 @@ describe('readCsv', () => {
     [',', 'a,b\n1,2\n'],
     [';', 'a;b\n1,5;2,5\n3;4\n'],
     ['\t', 'a\tb\n1,5\t2,5\n'],
+    [';', 'a,1;b,2\n1,5;2,5\n'],
     ['|', 'a|b\n1|2\n'],
     [';', 'sep=;\na;b\n1;2\n'],
     [';', 'Station A, north, main\nexported, by hand\nt;q\n1,5;2\n2,5;3\n3,5;3\n'],

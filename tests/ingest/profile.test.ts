@@ -61,6 +61,12 @@ describe('a profile laid over a year', () => {
     expect(record.report.gapHours).toBe(0);
   });
 
+  it("cuts the clock hour that a change at 00:01 leaves a minute of (St John's until 2011, IANA tz database)", () => {
+    const { log } = read({ year: 2010 }, 'America/St_Johns');
+    const at = log.startMs.indexOf(Date.parse('2010-03-14T03:30:00Z')); // local midnight at -03:30; 00:01 becomes 01:01
+    expect(Array.from(log.seconds.slice(at, at + 3))).toEqual([60, 59 * 60, 3600]);
+  });
+
   it('prefers the holiday, then the day by name, then the kind of day', () => {
     const flow = { weekday: flat(1), weekend: flat(2), fri: flat(3), holiday: flat(4) };
     const record = read({ flow, holidays: ['2025-12-25'] });

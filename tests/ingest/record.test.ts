@@ -34,6 +34,13 @@ describe('the canonical form', () => {
     expect(log.level![1]).toBeNaN();
   });
 
+  it('believes a name that ends in kW, whatever else stands with it', () => {
+    const units = { flow: 'gpm', head: 'ft', power: 'hp' } as const;
+    const power = (title: string) => aRecord(hourly(['1,2', '1,2'], `time,flow,${title}`), { units }).log.power![0];
+    expect(power('power_kw (avg)')).toBe(2000);
+    expect(power('power')).toBeCloseTo(2 * 745.699872, 5); // NIST SP 811 table B.8: 550 ft·lbf/s × 7.456999 E+02 W
+  });
+
   it('takes levels with run states for a flow, and has no flow then', () => {
     const { log, report } = aRecord(hourly(['2,0', '2.5,1', ',1'], 'time,level,P1_on'));
     expect(log.flow).toBeNull();
@@ -222,10 +229,10 @@ describe('rows that do not fit', () => {
     expect(noteCodes(record)).toEqual(['negative-dust']);
   });
 
-  it('lists all faults of a file from top to bottom, and counts those beyond fifty', () => {
-    const text = `time,flow\nsoon,1\n${hour(1)},x1\n2025-02-30 00:00,1\n${hour(2)},-4\n`;
+  it('lists all faults of a file from top to bottom, one a line, and counts those beyond fifty', () => {
+    const text = `time,flow\nsoon,x\n${hour(1)},x1\n2025-02-30 00:00,1\n${hour(2)},-4\n`;
     expect(faultsOf(() => aRecord(text)).map((line) => line.slice(0, line.indexOf(': ')))).toEqual([
-      ...['not_a_time flow.csv line 2', 'not_a_number flow.csv line 3', 'not_a_time flow.csv line 4'],
+      ...['not_a_number flow.csv line 2', 'not_a_number flow.csv line 3', 'not_a_time flow.csv line 4'],
       'negative_flow flow.csv line 5',
     ]);
     const many = faultsOf(() =>
@@ -272,6 +279,7 @@ describe('the order of day and month', () => {
     expect(faultsOf(() => aRecord(text(['3/4/2025', '4/4/2025'])))).toEqual([
       expect.stringMatching(/^ambiguous_time flow.csv line 2: found time '3\/4\/2025 12:00'; wanted the date order/),
     ]);
+    expect(faultsOf(() => aRecord(text(['12/1/2025', '12/2/2025'])))[0]).toMatch(/^ambiguous_time /);
     expect(starts(aRecord(text(['3/4/2025', '4/4/2025']), { options: { dateOrder: 'dmy' } }))[0]).toBe(
       '2025-04-03T11:00',
     );

@@ -1,0 +1,148 @@
+import { describe, expect, it } from 'vitest';
+import { drawdownTests } from '../../server/ingest/drawdown.ts';
+import { type Inflow, inflowFromLevels } from '../../server/ingest/inflow.ts';
+import { FOOT, INCH, US_GALLON } from '../../server/units.ts';
+import { aRecord } from '../support/aRecord.ts';
+
+const at = (seconds: number): string => new Date(Date.UTC(2025, 0, 1) + seconds * 1000).toISOString();
+
+/** A record of levels [m] and run states, one row every `step` seconds. */
+const levels = (rows: readonly (readonly (number | string)[])[], step: number, header = 'time,level,P1_on,P2_on') =>
+  aRecord(`${header}\n${rows.map((row, k) => `${at(k * step)},${row.join(',')}`).join('\n')}\n`).log;
+
+const well = (area: number) => (level: number) => area * level;
+
+describe('a drawdown test with the influent shut', () => {
+  // Level falls evenly by `drop` in `minutes`, after a minute at rest with a level that stands still.
+  const pumped = (area: number, drop: number, minutes: number): number => {
+    const rows = Array.from({ length: minutes + 2 }, (_, k) => [
+      10 - (drop * Math.max(0, k - 1)) / minutes,
+      k === 0 ? 0 : 1,
+      0,
+    ]);
+    const [test] = drawdownTests(inflowFromLevels({ log: levels(rows, 60), volume: well(area), side: 'suction' }));
+    expect(test).toMatchObject({ seconds: minutes * 60, pumps: ['P1'], inflowM3s: 0 });
+    return test!.pumpedM3s / (US_GALLON / 60); // gpm
+  };
+
+  it.each([
+    // wastewater101.net 2019-08 "Time for math 33": printed with 7.48 gal/ft³ (exact 7.48052) and π = 3.14
+    ['10 ft across, 6 in in 2 min', Math.PI * (5 * FOOT) ** 2, 6 * INCH, 2, 146.8, 1e-3],
+    ['15 by 12 ft, 3 ft in 30 min', 15 * 12 * FOOT ** 2, 3 * FOOT, 30, 134.64, 1e-4],
+    // onsiteinstaller.com 2016-03, practice answers: 14.5 gal per inch
+    ['14.5 gal/in, 7.5 in in 3 min', (14.5 * US_GALLON) / INCH, 7.5 * INCH, 3, 36.25, 1e-9],
+    // F. Spellman, handbook example 11.1: inputs printed, 198 ft³ of 7.48 gal in 5 min worked by hand
+    ['10 by 9 ft, 2.2 ft in 5 min', 90 * FOOT ** 2, 2.2 * FOOT, 5, 296.2, 1e-4],
+  ])('%s', (_, area, drop, minutes, gpm, tolerance) => {
+    expect(Math.abs(pumped(area, drop, minutes) / gpm - 1)).toBeLessThan(tolerance);
+  });
+});
+
+it('measures a fill: 465 gpm into a well 18 ft across, 6 ft deep, takes 24.55 min', () => {
+  // wastewater101.net 2018-11 "Collection system study time 11", printed with 0.785·d² and 7.48 gal/ft³
+  const rows = Array.from({ length: 3 }, (_, k) => [(6 * FOOT * k) / 2, 0, 0]);
+  const log = levels(rows, 737); // 24.55 min in two steps, to the second
+  const { log: result } = inflowFromLevels({ log, volume: well(Math.PI * (9 * FOOT) ** 2), side: 'suction' });
+  expect(Math.abs(result.flow![0]! / (465 * (US_GALLON / 60)) - 1)).toBeLessThan(2e-3);
+});
+
+describe('with inflow running', () => {
+  it('adds the inflow of the fills to what is drawn down', () => {
+    // By hand: 4 m², up 0.60 m in 240 s is 10 L/s; down 0.60 m in 120 s is 20 L/s more out than in: 30 L/s.
+    const rows = [1, 1.15, 1.3, 1.45, 1.6, 1.3, 1, 1.15, 1.3].map((level, k) => [level, k === 4 || k === 5 ? 1 : 0, 0]);
+    const inflow = inflowFromLevels({ log: levels(rows, 60), volume: well(4), side: 'suction' });
+    expect(Array.from(inflow.log.flow!, (q) => Number((q * 1000).toFixed(9)))).toEqual(Array(8).fill(10));
+    expect(drawdownTests(inflow)).toEqual([
+      expect.objectContaining({ startMs: Date.UTC(2025, 0, 1, 0, 4), seconds: 120, pumps: ['P1'], pumpsOn: 1 }),
+    ]);
+    expect(drawdownTests(inflow)[0]!.pumpedM3s).toBeCloseTo(0.03, 12);
+    expect(drawdownTests(inflow)[0]!.drawnM3).toBeCloseTo(2.4, 12);
+  });
+
+  /** A well simulated second by second: inflow falls evenly, P1 gives 40 L/s, P1 and P2 together 70 L/s. */
+  const simulated = (inflowAt: (second: number) => number): { inflow: Inflow; true: number[] } => {
+    const rows: (number | string)[][] = [];
+    const truth: number[] = [];
+    let volume = 10;
+    for (let k = 0; k <= 120; k++) {
+      const phase = k % 40;
+      const [one, two] = [phase >= 20 && phase < 30 ? 1 : 0, phase >= 25 && phase < 30 ? 1 : 0];
+      rows.push([volume / 5, one, two]);
+      truth.push(inflowAt(k * 30 + 15));
+      volume += (inflowAt(k * 30 + 15) - (one === 0 ? 0 : two === 0 ? 0.04 : 0.07)) * 30;
+    }
+    return { inflow: inflowFromLevels({ log: levels(rows, 30), volume: well(5), side: 'suction' }), true: truth };
+  };
+
+  it('finds an inflow that changes evenly, and each set of pumps, exactly', () => {
+    const { inflow, true: truth } = simulated((second) => 0.02 - 2e-6 * second);
+    inflow.log.flow!.forEach((flow, i) => {
+      // The run after the last fill has only the fill before it; all else lies between two.
+      expect(flow).toBeCloseTo(truth[i]!, i < 100 ? 9 : 2);
+    });
+    const tests = drawdownTests(inflow).slice(0, 4);
+    expect(tests.map((test) => test.pumps)).toEqual([['P1'], ['P1', 'P2'], ['P1'], ['P1', 'P2']]);
+    for (const test of tests) expect(test.pumpedM3s).toBeCloseTo(test.pumpsOn === 1 ? 0.04 : 0.07, 9);
+  });
+
+  it('closes the balance: inflow − pumped = change in store', () => {
+    const { inflow } = simulated((second) => 0.02 + 0.005 * Math.sin(second / 300));
+    const { log, pumped } = inflow;
+    const net = log.flow!.reduce((sum, flow, i) => sum + (flow - pumped[i]!) * log.seconds[i]!, 0);
+    const stored = inflow.stretches.reduce((sum, stretch) => sum + stretch.gain, 0);
+    const last = 5 * log.level!.at(-1)! + (log.flow!.at(-1)! - pumped.at(-1)!) * 30; // volume at the end of the last row
+    expect(net).toBeCloseTo(last - 10, 9);
+    expect(net).toBeCloseTo(stored, 9);
+  });
+});
+
+it('mirrors for a tower: with the pumps at rest its fall is the demand', () => {
+  // 50 m²: down 0.06 m in 60 s is 50 L/s; up 0.03 m in 60 s is 25 L/s more in than out: 75 L/s.
+  const rows = [5, 4.94, 4.88, 4.91, 4.94, 4.88].map((level, k) => [level, k === 2 || k === 3 ? 1 : 0, 0]);
+  const inflow = inflowFromLevels({ log: levels(rows, 60), volume: well(50), side: 'discharge' });
+  for (const flow of inflow.log.flow!) expect(flow).toBeCloseTo(0.05, 12);
+  expect(drawdownTests(inflow)[0]!.pumpedM3s).toBeCloseTo(0.075, 12);
+});
+
+describe('what cannot be known', () => {
+  it('stays a gap where a level is missing, and is not bridged', () => {
+    const rows = [
+      [1, 0, 0],
+      [1.1, 0, 0],
+      ['', 0, 0],
+      [1.3, 0, 0],
+      [1.4, 0, 0],
+    ];
+    const { log } = inflowFromLevels({ log: levels(rows, 60), volume: well(6), side: 'suction' });
+    expect(Array.from(log.flow!, (q) => Number(q.toFixed(9)))).toEqual([0.01, Number.NaN, Number.NaN, 0.01]);
+  });
+
+  it('gives an uneven fill its mean, which keeps its volume', () => {
+    const rows = [1, 1.2, 1.15, 1.3].map((level) => [level, 0, 0]);
+    const inflow = inflowFromLevels({ log: levels(rows, 60), volume: well(6), side: 'suction' });
+    for (const flow of inflow.log.flow!) expect(flow).toBeCloseTo((6 * 0.3) / 180, 12);
+    expect(inflow.notes.map((note) => note.code)).toContain('fill-mean');
+  });
+
+  it('says that a store loses volume at rest, and gives no inflow there', () => {
+    const rows = [1.3, 1.2, 1.1].map((level) => [level, 0, 0]);
+    const inflow = inflowFromLevels({ log: levels(rows, 60), volume: well(6), side: 'suction' });
+    expect(Array.from(inflow.log.flow!)).toEqual([Number.NaN, Number.NaN]);
+    expect(inflow.notes.map((note) => note.code)).toEqual(['no-fills', 'loss-at-rest']);
+  });
+
+  it('is no test where a pump ran for part of an interval', () => {
+    const rows = [1, 1.1, 1.2, 1.1, 1.2].map((level, k) => [level, k === 2 ? 0.5 : 0, 0]);
+    const inflow = inflowFromLevels({ log: levels(rows, 60), volume: well(6), side: 'suction' });
+    expect(drawdownTests(inflow)).toEqual([]);
+    expect(inflow.log.flow![2]).toBeCloseTo(0.01, 12);
+  });
+
+  it('knows counts without names', () => {
+    const rows = [1, 1.1, 1.2, 1, 1.1].map((level, k) => [level, k === 2 ? 2 : 0]);
+    const inflow = inflowFromLevels({ log: levels(rows, 60, 'time,level,pumps_on'), volume: well(6), side: 'suction' });
+    // 10 L/s in, and 6 m² · 0.2 m in 60 s: 20 L/s more out
+    expect(drawdownTests(inflow)).toEqual([expect.objectContaining({ pumps: null, pumpsOn: 2 })]);
+    expect(drawdownTests(inflow)[0]!.pumpedM3s).toBeCloseTo(0.03, 12);
+  });
+});
