@@ -1,0 +1,28 @@
+import type { CaseFile } from '../economics/caseFile.ts';
+import type { StationFile } from '../station/stationFile.ts';
+import type { TariffFile } from '../tariff/tariffFile.ts';
+import { boosterStation } from './boosterStation.ts';
+import { hilltopLift } from './hilltopLift.ts';
+import { liftStation } from './liftStation.ts';
+
+/** The files that somebody with this station would bring. */
+export interface Demo {
+  readonly station: StationFile;
+  readonly tariff: TariffFile;
+  /** A year of hours. */
+  readonly recordCsv: string;
+  readonly caseFile: CaseFile;
+}
+
+/** Any other would do as well. */
+const SEED = 20_250_101;
+
+/**
+ * Three stations to play with, invented from names to flows: a wastewater lift station whose pumps are brought on too
+ * early, a drinking-water booster station that throttles, and a lift so high that drives cost more than they save.
+ *
+ * @param seed  the same seed gives the same bytes
+ */
+export function demoStations(seed = SEED): Demo[] {
+  return [liftStation(seed), boosterStation(seed + 1), hilltopLift(seed + 2)];
+}
