@@ -6,9 +6,11 @@ import { billOf } from '../tariff/bill.ts';
 import { type BillPlan, planBill } from '../tariff/plan.ts';
 import type { Bill, Tariff } from '../tariff/tariff.ts';
 import { isoUtc } from '../time.ts';
+import { energyKwh } from '../units.ts';
 import { type DemandRecord, demandRecord } from './demandRecord.ts';
 import { EqualPumps } from './equalPumps.ts';
 import { firmCapacity } from './firmCapacity.ts';
+import { floorPower } from './floorOverRecord.ts';
 import { type ComparisonResult, RULE_IDS, type RuleId, type RuleResult } from './result.ts';
 import type { Rule } from './rule.ts';
 import { RULES } from './rules/all.ts';
@@ -39,7 +41,15 @@ export interface Comparison {
   readonly runs: readonly Run[];
   readonly bills: readonly (Bill | null)[];
   readonly firmCapacity: number;
+  readonly floor: FloorFigures;
   readonly notes: readonly Note[];
+}
+
+/** What no rule can beat, over the record. */
+export interface FloorFigures {
+  /** At the record's own flow, and at the flow that each run delivers, in the order of the runs [kWh]. */
+  readonly energyKwh: number;
+  readonly atDeliveredKwh: readonly number[];
 }
 
 /** Hashes of what a result was computed from, so that two results can be told to have the same inputs. */
@@ -100,8 +110,38 @@ export function compareRules(request: ComparisonRequest): Comparison {
     plan,
     runs,
     bills,
+    floor: floorFigures(station, duty, record, runs),
     firmCapacity: firmCapacity(station, duty),
     notes: [...station.notes, ...record.notes, ...notes, ...recordNotes(record), ...runNotes(runs, bills)],
+  };
+}
+
+/** Each modelled rule is one of the ways the floor looks at, so where one is found lower by a rounding, it holds. */
+function floorFigures(
+  station: Station,
+  duty: readonly Pump[],
+  record: DemandRecord,
+  runs: readonly Run[],
+): FloorFigures {
+  const power = floorPower(station, duty, record);
+  const atDelivered = new Float64Array(runs.length);
+  let atRecord = 0;
+  for (let i = 0; i < record.flow.length; i++) {
+    const flow = record.flow[i]!;
+    const seconds = record.seconds[i]!;
+    const head = typeof record.staticHead === 'number' ? record.staticHead : record.staticHead[i]!;
+    let least = power(flow, head) + station.standbyPower;
+    for (const { series } of runs) if (series.flow[i]! >= flow) least = Math.min(least, series.mean[i]!);
+    atRecord += least * seconds;
+    runs.forEach(({ series }, r) => {
+      const delivered = series.flow[i]!;
+      const floor = delivered >= flow ? least : power(delivered, head) + station.standbyPower;
+      atDelivered[r]! += Math.min(floor, series.mean[i]!) * seconds;
+    });
+  }
+  return {
+    energyKwh: energyKwh(atRecord, 1),
+    atDeliveredKwh: Array.from(atDelivered, (joules) => energyKwh(joules, 1)),
   };
 }
 
@@ -238,18 +278,20 @@ export function resultOf(comparison: Comparison, sha256: InputHashes): Compariso
     },
     inputs: { station: station.name, tariff: tariff?.name ?? null, currency: station.currency, sha256 },
     firmCapacityM3s: comparison.firmCapacity,
-    rules: runs.map((run, i) => ruleResult(run, bills[i] ?? null, duty)),
+    floor: { energyKwh: comparison.floor.energyKwh },
+    rules: runs.map((run, i) => ruleResult(run, bills[i] ?? null, duty, comparison.floor.atDeliveredKwh[i]!)),
     notes: comparison.notes,
   };
 }
 
-function ruleResult(run: Run, bill: Bill | null, duty: readonly Pump[]): RuleResult {
+function ruleResult(run: Run, bill: Bill | null, duty: readonly Pump[], floorKwh: number): RuleResult {
   const { rule, totals: t } = run;
   return {
     rule: rule.id,
     needsDrives: rule.drives === 'all' ? duty.length : rule.drives === 'one' ? 1 : 0,
     energyKwh: t.energyKwh,
     kwhPerM3: t.deliveredM3 > 0 ? t.energyKwh / t.deliveredM3 : null,
+    ...(floorKwh > 0 && { aboveFloorPercent: 100 * (t.energyKwh / floorKwh - 1) }),
     ...(bill && {
       energyCost: bill.energyCost,
       demandCost: bill.demandCost,

@@ -102,7 +102,7 @@ export class EqualPumps {
   }
 
   /** n pumps at their least speed. */
-  private lowest(count: number): State {
+  lowest(count: number): State {
     this.lowStates[count] ??= this.atSpeed(count, this.pump.minSpeed);
     return this.lowStates[count]!;
   }
@@ -194,6 +194,21 @@ export class EqualPumps {
   action(trim: Trim, flow: number): Action {
     if (trim.rest) return shared(this.off, trim.rest, flow);
     return held(this.state(trim.count, flow / trim.count, trim.speed, true));
+  }
+
+  /** Least flow that n pumps hold on their drives without sharing; 0 where they can be slowed down to it. */
+  leastFlow(count: number): number {
+    return this.lowest(count).flow;
+  }
+
+  /** n pumps at equal speed that give exactly Q on the system curve; null where their speed limits do not allow it. */
+  trimmedState(count: number, flow: number): State | null {
+    const { pump, station } = this;
+    const q = flow / count;
+    const head = systemHead(station.friction, this.staticHead, flow) + pump.branchLoss * q * q;
+    const needed = pump.speedFor(q, head);
+    if (needed > pump.maxSpeed * (1 + 1e-9) || needed < pump.minSpeed * (1 - 1e-9)) return null;
+    return this.state(count, q, Math.min(Math.max(needed, pump.minSpeed), pump.maxSpeed), true);
   }
 
   /** n − 1 pumps direct on line and one on its drive at a speed, at their operating point. */

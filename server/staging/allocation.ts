@@ -1,0 +1,207 @@
+import { leastOn } from '../hydraulics/roots.ts';
+import type { LeastPower, Mode } from './leastPower.ts';
+
+/** Which pumps carry a total flow at a header head, and how: the least total power of any subset and any split. */
+export interface Allocation {
+  /** Electric power [W], standby not included; Infinity where no subset can carry the flow. */
+  readonly power: number;
+  readonly shares: readonly Share[];
+}
+
+/** Some pumps of one make in one mode, each at the same flow. */
+export interface Share {
+  readonly least: LeastPower;
+  readonly mode: Mode;
+  readonly count: number;
+  readonly flow: number;
+}
+
+/** Pumps of one make: what they can do, and how many there are. */
+export interface Make {
+  readonly least: LeastPower;
+  readonly count: number;
+}
+
+/** Divisible by every count up to six, so that equal splits lie on the grid. */
+const GRID = 120;
+
+/** So many tight arrangements are tried; a station of a few makes has fewer. */
+const MOST_TIGHT = 40;
+
+/**
+ * Separable allocation (model.md §3): minimise Σ P̃_i(q_i; H) over Σ q_i = Q. An exact search on a grid of Q finds who
+ * runs and roughly who carries what, whatever the shape of the P̃; the split is then polished between the groups. Equal
+ * splits, and all but one at their limit, are tried beside it, so that no simple arrangement is missed by the grid.
+ */
+export function allocate(makes: readonly Make[], flow: number, header: number): Allocation {
+  let best: Allocation = { power: Infinity, shares: [] };
+  const consider = (shares: readonly Share[]) => {
+    const power = powerOf(shares, header);
+    if (power < best.power) best = { power, shares };
+  };
+  for (const { least, count } of makes) {
+    for (const mode of ['line', 'drive'] as const) {
+      for (let n = 1; n <= count; n++) consider([{ least, mode, count: n, flow: flow / n }]);
+    }
+    const limit = least.mostFlow('line', header);
+    for (let n = 1; n < count && n * limit < flow; n++) {
+      consider([
+        { least, mode: 'line', count: n, flow: limit },
+        { least, mode: 'drive', count: 1, flow: flow - n * limit },
+      ]);
+    }
+  }
+  const found = onGrid(makes, flow, header);
+  if (found) consider(polished(found, (2 * flow) / GRID, header));
+  for (const tight of tightArrangements(makes, flow, header)) consider(polished(tight, flow, header));
+  return best;
+}
+
+/**
+ * Arrangements whose pumps must nearly all be at their limits to carry the flow: so little room is left between them
+ * that the grid may step over it. Each starts with its flows in proportion to the limits.
+ */
+function tightArrangements(makes: readonly Make[], flow: number, header: number): Share[][] {
+  const step = flow / GRID;
+  const options = makes.map(({ least, count }) => {
+    const limits = { line: least.mostFlow('line', header), drive: least.mostFlow('drive', header) };
+    const ways: { shares: Share[]; capacity: number; pumps: number }[] = [];
+    for (let line = 0; line <= count; line++) {
+      for (let drive = 0; drive + line <= count; drive++) {
+        if ((line > 0 && limits.line <= 0) || (drive > 0 && limits.drive <= 0)) continue;
+        const shares: Share[] = [];
+        if (line > 0) shares.push({ least, mode: 'line', count: line, flow: limits.line });
+        if (drive > 0) shares.push({ least, mode: 'drive', count: drive, flow: limits.drive });
+        ways.push({ shares, capacity: line * limits.line + drive * limits.drive, pumps: line + drive });
+      }
+    }
+    return ways;
+  });
+  const most = options.map((ways) => ways.reduce((best, way) => Math.max(best, way.capacity), 0));
+  const found: Share[][] = [];
+  const extend = (make: number, shares: Share[], capacity: number, pumps: number) => {
+    if (found.length >= MOST_TIGHT) return;
+    const left = most.slice(make).reduce((sum, each) => sum + each, 0);
+    if (capacity + left < flow || capacity > flow + 8 * step * Math.max(pumps, 1)) return;
+    if (make === makes.length) {
+      if (capacity <= 0 || capacity > flow + 2 * step * pumps) return;
+      found.push(shares.map((share) => ({ ...share, flow: (share.flow * flow) / capacity })));
+      return;
+    }
+    for (const way of options[make]!) {
+      extend(make + 1, [...shares, ...way.shares], capacity + way.capacity, pumps + way.pumps);
+    }
+  };
+  extend(0, [], 0, 0);
+  return found;
+}
+
+/** Names an arrangement: who runs in which mode and what holds them back. Power over flow is smooth while it stays. */
+export function arrangementOf({ shares }: Allocation, header: number): string {
+  return shares
+    .map((s) => `${s.least.pump.make}|${s.mode}|${s.count}|${s.least.heldBy(s.mode, s.flow, header)}`)
+    .sort()
+    .join('&');
+}
+
+function powerOf(shares: readonly Share[], header: number): number {
+  let sum = 0;
+  for (const { least, mode, count, flow } of shares) sum += count * least.inMode(mode, flow, header);
+  return sum;
+}
+
+/** The exact search: pumps one after another, the least power of carrying j/GRID of the flow with those so far. */
+function onGrid(makes: readonly Make[], flow: number, header: number): Share[] | null {
+  const step = flow / GRID;
+  let table = new Float64Array(GRID + 1).fill(Infinity);
+  table[0] = 0;
+  const choices: { make: Make; curve: Float64Array; modes: Mode[]; taken: Uint8Array }[] = [];
+  for (const make of makes) {
+    const curve = new Float64Array(GRID + 1).fill(Infinity);
+    const modes: Mode[] = new Array(GRID + 1).fill('line');
+    curve[0] = 0;
+    let top = 0;
+    for (let j = 1; j <= GRID; j++) {
+      const { power, mode } = make.least.at(j * step, header);
+      if (power === Infinity) continue;
+      curve[j] = power;
+      modes[j] = mode;
+      top = j;
+    }
+    for (let k = 0; k < make.count; k++) {
+      const next = new Float64Array(GRID + 1).fill(Infinity);
+      const taken = new Uint8Array(GRID + 1);
+      for (let j = 0; j <= GRID; j++) {
+        const most = Math.min(j, top);
+        for (let i = 0; i <= most; i++) {
+          const power = table[j - i]! + curve[i]!;
+          if (power < next[j]!) {
+            next[j] = power;
+            taken[j] = i;
+          }
+        }
+      }
+      table = next;
+      choices.push({ make, curve, modes, taken });
+    }
+  }
+  if (table[GRID] === Infinity) return null;
+  const shares: Share[] = [];
+  let left = GRID;
+  for (let c = choices.length - 1; c >= 0; c--) {
+    const { make, modes, taken } = choices[c]!;
+    const i = taken[left]!;
+    left -= i;
+    if (i > 0) shares.push({ least: make.least, mode: modes[i]!, count: 1, flow: i * step });
+  }
+  return shares;
+}
+
+/**
+ * The split made exact: pumps alike in make and mode are set to their mean flow where that costs no more, then each pair
+ * of groups passes flow to and fro until neither gains.
+ */
+function polished(found: Share[], reach: number, header: number): Share[] {
+  let shares = grouped(found, header);
+  for (let round = 0; round < 4; round++) {
+    let moved = 0;
+    for (let a = 0; a < shares.length; a++) {
+      for (let b = a + 1; b < shares.length; b++) {
+        const one = shares[a]!;
+        const two = shares[b]!;
+        const room = (s: Share) => s.count * (s.least.mostFlow(s.mode, header) - s.flow);
+        const low = -Math.min(reach, one.count * one.flow * 0.999, room(two));
+        const high = Math.min(reach, two.count * two.flow * 0.999, room(one));
+        if (!(high > low)) continue;
+        const pass = (d: number): [Share, Share] => [
+          { ...one, flow: one.flow + d / one.count },
+          { ...two, flow: two.flow - d / two.count },
+        ];
+        const d = leastOn((x) => powerOf(pass(x), header), low, high);
+        if (powerOf(pass(d), header) >= powerOf([one, two], header)) continue;
+        [shares[a], shares[b]] = pass(d);
+        moved = Math.max(moved, Math.abs(d));
+      }
+    }
+    if (moved <= 1e-9 * reach) break;
+  }
+  shares = shares.filter((share) => share.flow > 0);
+  return shares;
+}
+
+function grouped(found: readonly Share[], header: number): Share[] {
+  const groups: Share[] = [];
+  for (const share of found) {
+    const at = groups.findIndex((g) => g.least === share.least && g.mode === share.mode);
+    const group = groups[at];
+    if (!group) {
+      groups.push(share);
+      continue;
+    }
+    const count = group.count + share.count;
+    const merged = { ...group, count, flow: (group.count * group.flow + share.count * share.flow) / count };
+    if (powerOf([merged], header) <= powerOf([group, share], header) * (1 + 1e-12)) groups[at] = merged;
+    else groups.push(share);
+  }
+  return groups;
+}
