@@ -12,6 +12,8 @@ export const comparisonRequest = z.strictObject({
   stationId: id,
   recordId: id,
   tariffId: id.nullable().optional(),
+  /** A station file that stands for the stored one this once: a what-if. It is kept with the comparison only. */
+  station: z.record(z.string(), z.unknown()).optional(),
   /** Left out: every rule that the station can run. */
   rules: z.array(z.string()).min(1).optional(),
   /** Names of pumps taken out. */

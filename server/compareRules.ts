@@ -17,6 +17,8 @@ export interface StoredComparisonRequest {
   readonly stationId: string | number;
   readonly recordId: string | number;
   readonly tariffId?: string | number | null | undefined;
+  /** A station file to take instead of the stored one. */
+  readonly station?: Readonly<Record<string, unknown>> | undefined;
   readonly rules?: readonly string[] | undefined;
   readonly without?: readonly string[] | undefined;
 }
@@ -42,10 +44,10 @@ export function compareStored(db: Db, request: StoredComparisonRequest, nowMs: n
     });
   }
   const choices = { rules: (request.rules as RuleId[] | undefined) ?? null, without: request.without ?? [] };
-  const files = { stationFile: station.file, tariffFile: tariff?.file ?? null };
+  const files = { stationFile: request.station ?? station.file, tariffFile: tariff?.file ?? null };
   const comparison = compute(db, { recordId: record.id, choices, ...files });
   const result = resultOf(comparison, {
-    station: jsonDigest(station.file),
+    station: jsonDigest(files.stationFile),
     record: record.sha256,
     tariff: tariff && jsonDigest(tariff.file),
   });

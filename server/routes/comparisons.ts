@@ -9,6 +9,7 @@ import { refuse } from '../errors.ts';
 import { readAs } from '../readFile.ts';
 import { powerOverFlow, ruleSeries } from '../staging/pictures.ts';
 import { isoUtc } from '../time.ts';
+import { ownFields } from './ownFields.ts';
 
 /** Comparisons: made once, stored, and read back the same. */
 export function comparisonRoutes(router: Router, { db, now }: Context): void {
@@ -29,7 +30,8 @@ export function comparisonRoutes(router: Router, { db, now }: Context): void {
     post: [
       ...jsonBody('request'),
       (request, response) => {
-        const made = compareStored(db, readAs(comparisonRequest, request.body, 'request'), now());
+        const { station, ...asked } = readAs(comparisonRequest, request.body, 'request');
+        const made = compareStored(db, { ...asked, ...(station && { station: ownFields(station) }) }, now());
         response.status(201).location(`/api/comparisons/${made.id}`).json(bodyOf(made));
       },
     ],

@@ -85,6 +85,24 @@ describe('a comparison', () => {
     }
   });
 
+  it('of a what-if takes the station sent and leaves the stored one alone', async () => {
+    const changed = aStationFile({ system: { staticHead: 6, friction: { coefficient: 0.001 } } });
+    const { body } = await compare({ station: { id: 5, demo: true, ...changed } });
+    await api.http.put(`/api/stations/${ids.stationId}`).send(changed);
+    const stored = (await compare()).body;
+    expect(body.rules).toEqual(stored.rules);
+    expect(body.inputs).toEqual(stored.inputs);
+    expect((await api.http.get(`/api/comparisons/${body.id}/power-over-flow`)).body.staticHeadM).toBe(6);
+    await api.http.put(`/api/stations/${ids.stationId}`).send(aStationFile());
+    expect((await compare()).body.rules).not.toEqual(body.rules);
+    const negative = aStationFile({ system: { staticHead: -1, friction: { coefficient: 0.001 } } });
+    const refused = await api.http
+      .post('/api/comparisons')
+      .send({ ...ids, station: negative })
+      .expect(422);
+    expect(refused.body.errors).toEqual(['system.staticHead']);
+  });
+
   it('leaves pumps out', async () => {
     const { body } = await compare({ without: ['P-2'], rules: ['fixed-speed'] });
     expect(body.without).toEqual(['P-2']);
