@@ -4,7 +4,9 @@ import { fileURLToPath } from 'node:url';
 import { MigrationError, migrate } from '../db/migrate.ts';
 import { openDatabase } from '../db/open.ts';
 import { createApp } from './app.ts';
+import { demoStations } from './demo/demo.ts';
 import { isLoopback } from './guards.ts';
+import { loadDemo } from './loadDemo.ts';
 import { databasePath } from './settings.ts';
 
 /** The one file that reads the environment, opens the database and listens. Only the address goes to stdout. */
@@ -37,6 +39,8 @@ try {
   if (error instanceof MigrationError) stop(error.message);
   throw error;
 }
+const loaded = loadDemo(db, demoStations, Date.now());
+if (loaded > 0) say(`Loaded ${loaded} demo stations into the empty database.`);
 
 const clientFolder = inCheckout('.build/client');
 const { version } = JSON.parse(readFileSync(inCheckout('package.json'), 'utf8')) as { version: string };
