@@ -67,17 +67,6 @@ export interface InputHashes {
 export function compareRules(request: ComparisonRequest): Comparison {
   const { station, log, tariff } = request;
   const duty = dutyWithout(station, request.without ?? []);
-  if (!dutyPumpsAreEqual(duty)) {
-    throw new InputError([
-      {
-        code: 'unequal_pumps',
-        file: 'station',
-        at: 'pumps',
-        found: `duty pumps that differ: ${duty.map((p) => p.name).join(', ')}`,
-        wanted: 'equal duty pumps (one entry with a count)',
-      },
-    ]);
-  }
   if (tariff && tariff.currency !== station.currency) {
     throw new InputError([
       {
@@ -145,7 +134,12 @@ function floorFigures(
   };
 }
 
-function dutyWithout(station: Station, without: readonly string[]): readonly Pump[] {
+/**
+ * The duty pumps without those taken out by name.
+ *
+ * @throws InputError for a name unknown, or where no pump is left
+ */
+export function dutyWithout(station: Station, without: readonly string[]): readonly Pump[] {
   const names = new Set([...station.duty, ...station.standby].map((pump) => pump.name));
   for (const name of without) {
     if (!names.has(name)) {
@@ -164,6 +158,17 @@ function dutyWithout(station: Station, without: readonly string[]): readonly Pum
   if (duty.length === 0) {
     throw new InputError([
       { code: 'no_duty_pump', file: 'without', at: '', found: 'no duty pump left', wanted: 'at least one left to run' },
+    ]);
+  }
+  if (!dutyPumpsAreEqual(duty)) {
+    throw new InputError([
+      {
+        code: 'unequal_pumps',
+        file: 'station',
+        at: 'pumps',
+        found: `duty pumps that differ: ${duty.map((p) => p.name).join(', ')}`,
+        wanted: 'equal duty pumps (one entry with a count)',
+      },
     ]);
   }
   return duty;
