@@ -1,0 +1,277 @@
+import { useCallback, useEffect, useMemo, useRef, useState } from 'preact/hooks';
+import type { RecordEntry, StationEntry, TariffEntry } from '../server/api.ts';
+import { answersOf, QUESTIONS, type QuestionId } from './answers.ts';
+import { api, type ComparisonRequest, linesOf, type StationBody, type TariffBody } from './api.ts';
+import { PageContext, type QuestionProps } from './context.ts';
+import { Format, UNIT_CHOICES } from './format.ts';
+import { useComparison, useDark, usePrinting, useRemembered } from './hooks.ts';
+import type { Imported } from './importing.ts';
+import { latestRecord, tariffFor } from './opening.ts';
+import { AddFiles } from './parts/AddFiles.tsx';
+import { AdviceOnly } from './parts/Cautions.tsx';
+import { Draft } from './parts/Draft.tsx';
+import { Header } from './parts/Header.tsx';
+import { Rail } from './parts/Rail.tsx';
+import { Stations } from './parts/Stations.tsx';
+import { Basis } from './questions/basis/Basis.tsx';
+import { Change } from './questions/change/Change.tsx';
+import { Cost } from './questions/cost/Cost.tsx';
+import { Which } from './questions/which/Which.tsx';
+import { differences, type Path, stationFileOf, withNumber } from './station.ts';
+import { useVerdicts } from './useVerdicts.ts';
+
+const QUESTION_PARTS = { which: Which, cost: Cost, change: Change, basis: Basis };
+
+/** A stored station with what goes with it, as the server has it. */
+interface Loaded {
+  readonly station: StationBody;
+  readonly records: readonly RecordEntry[];
+  readonly tariffs: readonly TariffEntry[];
+}
+
+/** What to compare with, where the reader has said so. */
+interface Choice {
+  readonly recordId?: number;
+  readonly tariffId?: number | null;
+}
+
+export function App() {
+  const [entries, setEntries] = useState<readonly StationEntry[] | null>(null);
+  const [openId, setOpenId] = useState<number | null>(stationInAddress());
+  const [loaded, setLoaded] = useState<Loaded | null>(null);
+  const [choice, setChoice] = useState<Choice>({});
+  const [draft, setDraft] = useState<StationBody | null>(null);
+  const [question, setQuestion] = useState<QuestionId>(questionInAddress());
+  const [faults, setFaults] = useState<readonly string[]>([]);
+  const [keepFaults, setKeepFaults] = useState<readonly string[]>([]);
+  const [revision, setRevision] = useState(0);
+  const [units, setUnits] = useRemembered('units', UNIT_CHOICES, 'file');
+  const [digits, setDigits] = useRemembered('figures', ['three', 'all'] as const, 'three');
+  const printing = usePrinting();
+  const dark = useDark();
+
+  // A revision asks for everything anew.
+  useEffect(() => {
+    const asking = new AbortController();
+    api.stations(asking.signal).then(
+      (list) => {
+        setEntries(list);
+        setOpenId((id) => (list.some((each) => each.id === id) ? id : (list[0]?.id ?? null)));
+      },
+      (error) => asking.signal.aborted || setFaults(linesOf(error)),
+    );
+    return () => asking.abort();
+  }, [revision]);
+
+  useEffect(() => {
+    if (openId === null) return setLoaded(null);
+    const asking = new AbortController();
+    const { signal } = asking;
+    Promise.all([api.station(openId, signal), api.records(openId, signal), api.tariffs(signal)]).then(
+      ([station, records, tariffs]) => {
+        setLoaded({ station, records, tariffs });
+        setFaults([]);
+      },
+      (error) => signal.aborted || setFaults(linesOf(error)),
+    );
+    return () => asking.abort();
+  }, [openId, revision]);
+
+  const saved = loaded?.station.id === openId ? loaded.station : null;
+  const record = loaded?.records.find((each) => each.id === choice.recordId) ?? latestRecord(loaded?.records ?? []);
+  const entry = entries?.find((each) => each.id === openId);
+  const tariffId =
+    choice.tariffId !== undefined ? choice.tariffId : saved && loaded ? tariffFor(saved, entry, loaded.tariffs) : null;
+  const tariff = useTariff(tariffId);
+  const changes = useMemo(() => (saved && draft ? differences(saved, draft) : []), [saved, draft]);
+
+  const request = useMemo<ComparisonRequest | null>(() => {
+    if (saved === null || record === null || record.stationId !== saved.id) return null;
+    const whatIf = draft && changes.length > 0 ? { station: stationFileOf(draft) } : {};
+    return { stationId: saved.id, recordId: record.id, tariffId, ...whatIf };
+  }, [saved, record?.id, tariffId, draft, changes]);
+  const compared = useComparison(request);
+
+  const format = useMemo(() => (saved ? formatFor(saved, units) : null), [saved, units]);
+  const open = useMemo<QuestionProps['open'] | null>(() => {
+    const { made } = compared;
+    if (made === null || saved === null || made.request.stationId !== saved.id) return null;
+    const { comparison, power } = made;
+    const fixedPerMonth = tariff?.id === made.request.tariffId ? (tariff?.fixedPerMonth ?? 0) : 0;
+    return { station: made.request.station ?? stationFileOf(saved), comparison, power, fixedPerMonth };
+  }, [compared.made, saved, tariff]);
+  const answers = useMemo(() => (open && format ? answersOf(open, format) : null), [open, format]);
+  const others = useVerdicts(entries ?? [], { openId, ready: answers !== null, choice: units });
+  const verdicts = useMemo(
+    () => (answers && openId !== null ? new Map([...others, [openId, answers.change]]) : others),
+    [others, answers, openId],
+  );
+
+  const openStation = (id: number) => {
+    setOpenId(id);
+    setChoice({});
+    setDraft(null);
+    setKeepFaults([]);
+    history.replaceState(null, '', `?station=${id}${location.hash}`);
+  };
+  const imported = ({ station, tariff, record }: Imported) => {
+    if (station) openStation(station.id);
+    setChoice((before) => ({
+      ...(station ? {} : before),
+      ...(record && { recordId: record.id }),
+      ...(tariff && { tariffId: tariff.id }),
+    }));
+    setRevision((n) => n + 1);
+  };
+  const touch = useCallback(
+    (path: Path, value: number) => setDraft((before) => (saved ? withNumber(before ?? saved, path, value) : before)),
+    [saved],
+  );
+  const keep = async () => {
+    if (saved === null || draft === null) return;
+    try {
+      const station = await api.keepStation(saved.id, stationFileOf(draft));
+      setLoaded((before) => before && { ...before, station });
+      setDraft(null);
+      setKeepFaults([]);
+    } catch (error) {
+      setKeepFaults(linesOf(error));
+    }
+  };
+  const heading = useRef<HTMLHeadingElement>(null);
+  const openQuestion = (id: QuestionId) => {
+    setQuestion(id);
+    history.replaceState(null, '', `${location.search}#${id}`);
+    requestAnimationFrame(() => heading.current?.focus());
+  };
+
+  const shown = printing ? QUESTIONS : QUESTIONS.filter(({ id }) => id === question);
+  const questionProps: QuestionProps | null =
+    open && saved && record ? { open, record, saved, draft: draft ?? saved, touch } : null;
+  return (
+    <>
+      <a class="skip" href="#answer">
+        Skip to the answer
+      </a>
+      <Header units={units} onUnits={setUnits} digits={digits} onDigits={setDigits} />
+      {entries && entries.length > 0 && (
+        <Stations entries={entries} openId={openId} verdicts={verdicts} onOpen={openStation} />
+      )}
+      <AddFiles open={saved} onImported={imported} first={entries?.length === 0} />
+      {faults.length > 0 && (
+        <p class="faults" role="alert">
+          {faults.join(' ')}
+        </p>
+      )}
+      {saved && loaded && (
+        <section class="subject" aria-label="Station">
+          <h1>{saved.name}</h1>
+          <p class="with">
+            <Choose
+              label="Record"
+              value={record?.id ?? null}
+              options={loaded.records.map(({ id, name }) => ({ id, name }))}
+              none={loaded.records.length === 0 ? 'none yet: add a CSV file' : null}
+              onChoose={(id) => setChoice((before) => ({ ...before, ...(id !== null && { recordId: id }) }))}
+            />
+            <Choose
+              label="Tariff"
+              value={tariffId}
+              options={loaded.tariffs.map(({ id, name, currency }) => ({ id, name: `${name} (${currency})` }))}
+              none="none: energy only"
+              onChoose={(id) => setChoice((before) => ({ ...before, tariffId: id }))}
+            />
+          </p>
+          <Draft changes={changes} onKeep={keep} onDrop={() => setDraft(null)} faults={keepFaults} />
+          {compared.faults.length > 0 && (
+            <ul class="faults" role="alert">
+              {compared.faults.map((line) => (
+                <li key={line}>{line}</li>
+              ))}
+            </ul>
+          )}
+        </section>
+      )}
+      {saved && record && (
+        <div class="columns">
+          <Rail answers={answers} current={question} busy={compared.busy} onOpen={openQuestion} />
+          <main id="answer" tabIndex={-1} aria-busy={compared.busy} class={compared.busy && open ? 'stale' : undefined}>
+            {format && questionProps ? (
+              <PageContext.Provider value={{ format, allFigures: digits === 'all', printing, dark }}>
+                {shown.map(({ id, title }) => {
+                  const Part = QUESTION_PARTS[id];
+                  return (
+                    <section key={`${id} ${saved.id}`} class={`question-open ${id}`} aria-labelledby={`${id}-title`}>
+                      <h2 id={`${id}-title`} tabIndex={-1} ref={id === question ? heading : null}>
+                        {title}
+                      </h2>
+                      <Part {...questionProps} />
+                    </section>
+                  );
+                })}
+              </PageContext.Provider>
+            ) : (
+              compared.busy && <p role="status">Comparing the rules over the record…</p>
+            )}
+          </main>
+        </div>
+      )}
+      <footer>
+        <AdviceOnly />
+      </footer>
+    </>
+  );
+}
+
+function useTariff(id: number | null): TariffBody | null {
+  const [tariff, setTariff] = useState<TariffBody | null>(null);
+  useEffect(() => {
+    if (id === null) return setTariff(null);
+    const asking = new AbortController();
+    // Without it the figures per year lack the fixed charge alone; the comparison itself says if the tariff is gone.
+    api.tariff(id, asking.signal).then(setTariff, () => asking.signal.aborted || setTariff(null));
+    return () => asking.abort();
+  }, [id]);
+  return tariff;
+}
+
+interface ChooseProps {
+  readonly label: string;
+  readonly value: number | null;
+  readonly options: readonly { readonly id: number; readonly name: string }[];
+  /** What no choice is called; null where one must be made. */
+  readonly none: string | null;
+  readonly onChoose: (id: number | null) => void;
+}
+
+function Choose({ label, value, options, none, onChoose }: ChooseProps) {
+  return (
+    <label>
+      <span class="label">{label}</span>
+      <select
+        value={value ?? ''}
+        onChange={(event) => onChoose(event.currentTarget.value === '' ? null : Number(event.currentTarget.value))}
+      >
+        {none !== null && <option value="">{none}</option>}
+        {options.map(({ id, name }) => (
+          <option key={id} value={id}>
+            {name}
+          </option>
+        ))}
+      </select>
+    </label>
+  );
+}
+
+function formatFor({ units, currency, timeZone }: StationBody, choice: (typeof UNIT_CHOICES)[number]): Format {
+  return new Format({ file: units, choice, currency, timeZone });
+}
+
+function stationInAddress(): number | null {
+  const id = new URLSearchParams(location.search).get('station');
+  return id !== null && /^\d+$/.test(id) ? Number(id) : null;
+}
+
+function questionInAddress(): QuestionId {
+  return QUESTIONS.find(({ id }) => `#${id}` === location.hash)?.id ?? 'which';
+}

@@ -1,0 +1,467 @@
+import {
+  BarController,
+  BarElement,
+  CategoryScale,
+  Chart,
+  type ChartConfiguration,
+  type ChartType,
+  Filler,
+  LinearScale,
+  LineController,
+  LineElement,
+  type Plugin,
+  PointElement,
+  type ScaleOptionsByType,
+  Tooltip,
+  type TooltipItem,
+} from 'chart.js';
+import { pumps } from './format.ts';
+import type { Axis, Bars, Curves, HoursByFlow, Point, RecordSteps, Ticks } from './series.ts';
+
+/** The one file that knows the chart library: a picture's data in, a drawn canvas out. */
+
+Chart.register(
+  BarController,
+  BarElement,
+  CategoryScale,
+  Filler,
+  LinearScale,
+  LineController,
+  LineElement,
+  PointElement,
+  Tooltip,
+);
+
+/** Colours and type of a picture, taken from the style sheet so that light, dark and print have one source. */
+export interface Look {
+  readonly ink: string;
+  readonly faint: string;
+  readonly line: string;
+  readonly paper: string;
+  readonly warm: string;
+  readonly plain: string;
+  readonly countFirst: string;
+  readonly countLast: string;
+  readonly font: string;
+  /** Fixed size for paper; on the screen a picture follows its box. */
+  readonly size: { readonly width: number; readonly height: number } | null;
+}
+
+export interface Drawn {
+  destroy(): void;
+}
+
+/** The look of the page where an element stands. */
+export function lookOf(element: Element, size: Look['size']): Look {
+  const style = getComputedStyle(element);
+  const colour = (name: string) => style.getPropertyValue(`--${name}`).trim();
+  return {
+    ink: colour('ink'),
+    faint: colour('faint'),
+    line: colour('line'),
+    paper: colour('paper'),
+    warm: colour('warm'),
+    plain: colour('plain'),
+    countFirst: colour('count-first'),
+    countLast: colour('count-last'),
+    font: style.fontFamily,
+    size,
+  };
+}
+
+/** The shade of a pump count among `most`: one hue, and more pumps are darker. */
+export function countColour(count: number, most: number, { countFirst, countLast }: Look): string {
+  const share = most < 2 ? 0.5 : Math.min(1, Math.max(0, (count - 1) / (most - 1)));
+  const [a, b] = [channels(countFirst), channels(countLast)];
+  return `rgb(${a.map((from, i) => Math.round(from + (b[i]! - from) * share)).join(' ')})`;
+}
+
+function channels(hex: string): [number, number, number] {
+  const value = Number.parseInt(hex.slice(1), 16);
+  return [(value >> 16) & 255, (value >> 8) & 255, value & 255];
+}
+
+/** Pictures that stand one over the other share their left edge: room for a figure of five digits. */
+const AXIS_WIDTH = 62;
+const RIGHT = 18;
+
+/** Power over flow: each count a line, heavy where it draws least, named where it ends; crossings stand on the axis. */
+export function drawCurves(canvas: HTMLCanvasElement, curves: Curves, look: Look): Drawn {
+  const most = curves.lines.at(-1)?.count ?? 1;
+  return draw(canvas, look, {
+    type: 'line',
+    data: {
+      datasets: curves.lines.map(({ count, points, least }) => {
+        const colour = countColour(count, most, look);
+        return {
+          label: pumps(count),
+          data: plotted(points),
+          borderColor: colour,
+          backgroundColor: colour,
+          borderWidth: 1.5,
+          pointRadius: 0,
+          segment: { borderWidth: ({ p1DataIndex }: { p1DataIndex: number }) => (least[p1DataIndex] ? 4 : 1.5) },
+        };
+      }),
+    },
+    options: {
+      parsing: false,
+      layout: { padding: { top: 18, right: RIGHT } },
+      interaction: { mode: 'index', intersect: false, axis: 'x' },
+      scales: { x: linear(curves.x, look, { grid: false }), y: fixedWidth(linear(curves.y, look)) },
+      plugins: {
+        tooltip: tip(look, {
+          title: (x) => `${figures(x)} ${unitOf(curves.x.title)}`,
+          label: (name, y) => `${name}: ${figures(y)} ${unitOf(curves.y.title)}`,
+        }),
+      },
+    },
+    plugins: [crossingMarks(curves, most, look, true), lineNames(curves, look)],
+  });
+}
+
+/** Hours at each flow, in the shade of the count that draws least there. */
+export function drawHours(canvas: HTMLCanvasElement, hours: HoursByFlow, curves: Curves, look: Look): Drawn {
+  const most = curves.lines.at(-1)?.count ?? 1;
+  return draw(canvas, look, {
+    type: 'bar',
+    data: {
+      datasets: [
+        {
+          data: hours.bars.map((bar) => ({ x: (bar.from + bar.to) / 2, y: bar.hours })),
+          backgroundColor: hours.bars.map(({ count }) => (count === null ? look.warm : countColour(count, most, look))),
+          barPercentage: 0.92,
+          categoryPercentage: 1,
+          grouped: false,
+        },
+      ],
+    },
+    options: {
+      parsing: false,
+      layout: { padding: { top: 6, right: RIGHT } },
+      interaction: { mode: 'nearest', intersect: false, axis: 'x' },
+      scales: {
+        x: { ...linear(hours.x, look, { grid: false }), offset: false },
+        y: fixedWidth(linear(hours.y, look, { ticks: 4 })),
+      },
+      plugins: {
+        tooltip: tip(look, {
+          title: (x) => `About ${figures(x)} ${unitOf(hours.x.title)}`,
+          label: (_name, y) => `${figures(y)} h`,
+        }),
+      },
+    },
+    plugins: [crossingMarks(curves, most, look, false)],
+  });
+}
+
+/** Rules as bars from one base; what lies above the least is in the accent for what could be saved. */
+export function drawBars(canvas: HTMLCanvasElement, bars: Bars, look: Look): Drawn {
+  const longest = Math.max(...bars.bars.map((bar) => bar.base + bar.above), 0);
+  return draw(canvas, look, {
+    type: 'bar',
+    data: {
+      labels: bars.bars.map((bar) => bar.label),
+      datasets: [
+        { label: 'least', data: bars.bars.map((bar) => bar.base), backgroundColor: look.plain, barThickness: 18 },
+        { label: 'above', data: bars.bars.map((bar) => bar.above), backgroundColor: look.warm, barThickness: 18 },
+      ],
+    },
+    options: {
+      indexAxis: 'y',
+      layout: { padding: { right: 4 } },
+      scales: {
+        x: {
+          ...linear({ title: bars.title, min: 0, max: longest * 1.24 || 1 }, look),
+          stacked: true,
+        },
+        y: {
+          stacked: true,
+          grid: { display: false },
+          border: { color: look.ink },
+          ticks: { color: look.ink, font: { family: look.font, size: 13 } },
+        },
+      },
+      plugins: { tooltip: { enabled: false } },
+    },
+    plugins: [barTexts(bars, look)],
+  });
+}
+
+/** The record over time: flow above, the count of pumps below, both as steps. */
+export function drawRecord(
+  canvas: HTMLCanvasElement,
+  record: RecordSteps,
+  { ticks, tickText, instantText }: RecordTexts,
+  look: Look,
+): Drawn {
+  const stepped = { stepped: 'before', pointRadius: 0, spanGaps: false, borderWidth: 1.25 } as const;
+  const { band, counts, mostCount } = record;
+  const bandSets = band
+    ? [
+        { ...stepped, data: plotted(band.least), yAxisID: 'flow', borderWidth: 0, label: '' },
+        {
+          ...stepped,
+          data: plotted(band.most),
+          yAxisID: 'flow',
+          borderWidth: 0,
+          fill: '-1',
+          backgroundColor: look.line,
+          label: '',
+        },
+      ]
+    : [];
+  return draw(canvas, look, {
+    type: 'line',
+    data: {
+      datasets: [
+        ...bandSets,
+        { ...stepped, data: plotted(record.flow), yAxisID: 'flow', borderColor: look.ink, label: 'Flow' },
+        ...counts.map((points, k) => {
+          const colour = countColour(k + 1, mostCount, look);
+          return {
+            ...stepped,
+            data: plotted(points),
+            yAxisID: 'count',
+            borderWidth: k === mostCount - 1 ? 1.25 : 0,
+            borderColor: look.ink,
+            backgroundColor: colour,
+            fill: k === 0 ? 'origin' : '-1',
+            label: k === mostCount - 1 ? 'Pumps' : '',
+          } as const;
+        }),
+      ],
+    },
+    options: {
+      parsing: false,
+      normalized: true,
+      layout: { padding: { top: 6, right: RIGHT } },
+      interaction: { mode: 'nearest', intersect: false, axis: 'x' },
+      scales: {
+        x: {
+          type: 'linear',
+          min: record.fromMs,
+          max: record.toMs,
+          grid: { color: look.line },
+          border: { color: look.ink },
+          afterBuildTicks: (axis) => {
+            axis.ticks = ticks.atMs.map((value) => ({ value }));
+          },
+          ticks: {
+            color: look.ink,
+            font: { family: look.font, size: 12 },
+            maxRotation: 0,
+            autoSkip: true,
+            callback: (value) => tickText(Number(value)),
+          },
+        },
+        flow: {
+          ...fixedWidth(linear(record.flowAxis, look, { ticks: 4 })),
+          stack: 'both',
+          stackWeight: 3,
+          position: 'left',
+        },
+        count: {
+          ...fixedWidth(linear({ title: 'Pumps', min: 0, max: mostCount }, look)),
+          stack: 'both',
+          stackWeight: 2,
+          position: 'left',
+          ticks: { color: look.ink, stepSize: 1, precision: 0, font: { family: look.font, size: 12 } },
+        },
+      },
+      plugins: {
+        tooltip: {
+          ...tip(look, {
+            title: (x) => instantText(x),
+            label: (name, y) =>
+              name === 'Flow' ? `${figures(y)} ${unitOf(record.flowAxis.title)}` : `${figures(y)} pumps`,
+          }),
+          filter: (item) => item.dataset.label !== '',
+        },
+      },
+    },
+  });
+}
+
+/** What the record's picture says in words and local time. */
+export interface RecordTexts {
+  readonly ticks: Ticks;
+  readonly tickText: (ms: number) => string;
+  readonly instantText: (ms: number) => string;
+}
+
+function draw<T extends ChartType>(canvas: HTMLCanvasElement, look: Look, config: ChartConfiguration<T>): Drawn {
+  const options = {
+    ...config.options,
+    animation: false,
+    maintainAspectRatio: false,
+    responsive: look.size === null,
+    ...(look.size && { devicePixelRatio: 3 }),
+  };
+  if (look.size) {
+    canvas.width = look.size.width;
+    canvas.height = look.size.height;
+  }
+  const chart = new Chart(canvas, { ...config, options } as ChartConfiguration<T>);
+  return { destroy: () => chart.destroy() };
+}
+
+/** A gap has y null, which the library draws as a gap though its types do not say so. */
+function plotted(points: readonly Point[]): { x: number; y: number }[] {
+  return points as { x: number; y: number }[];
+}
+
+type Linear = Partial<ScaleOptionsByType<'linear'>> & { type: 'linear' };
+
+function linear(axis: Axis, look: Look, { grid = true, ticks = 8 }: { grid?: boolean; ticks?: number } = {}): Linear {
+  return {
+    type: 'linear',
+    min: axis.min,
+    max: axis.max,
+    title: { display: true, text: axis.title, color: look.ink, font: { family: look.font, size: 12 } },
+    grid: { display: grid, color: look.line, drawTicks: true },
+    border: { color: look.ink },
+    ticks: {
+      color: look.ink,
+      maxTicksLimit: ticks,
+      maxRotation: 0,
+      includeBounds: false,
+      font: { family: look.font, size: 12 },
+    },
+  } as unknown as Linear;
+}
+
+function fixedWidth(scale: Linear): Linear {
+  return {
+    ...scale,
+    afterFit: (axis) => {
+      axis.width = AXIS_WIDTH;
+    },
+  };
+}
+
+interface Tip {
+  readonly title: (x: number) => string;
+  readonly label: (name: string, y: number) => string;
+}
+
+function tip(look: Look, { title, label }: Tip) {
+  type Item = TooltipItem<'line'> | TooltipItem<'bar'>;
+  return {
+    backgroundColor: look.paper,
+    titleColor: look.ink,
+    bodyColor: look.ink,
+    borderColor: look.ink,
+    borderWidth: 1,
+    cornerRadius: 0,
+    displayColors: false,
+    callbacks: {
+      title: (items: Item[]) => title(items[0]?.parsed.x ?? Number.NaN),
+      label: ({ dataset, parsed }: Item) => (parsed.y === null ? '' : label(dataset.label ?? '', parsed.y)),
+    },
+  };
+}
+
+/** Vertical lines where counts cross; named at the foot where there is room beside the line. */
+function crossingMarks(curves: Curves, most: number, look: Look, named: boolean): Plugin<'line' | 'bar'> {
+  return {
+    id: 'crossings',
+    afterDatasetsDraw({ ctx, scales, chartArea }) {
+      const { x, y } = scales;
+      if (!x || !y) return;
+      ctx.save();
+      ctx.font = `600 12px ${look.font}`;
+      ctx.textBaseline = 'bottom';
+      for (const crossing of curves.crossings) {
+        const at = x.getPixelForValue(crossing.x);
+        const from = named ? y.getPixelForValue(crossing.y) : chartArea.top;
+        ctx.strokeStyle = look.ink;
+        ctx.lineWidth = 1;
+        ctx.setLineDash([3, 3]);
+        ctx.beginPath();
+        ctx.moveTo(at, from);
+        ctx.lineTo(at, chartArea.bottom);
+        ctx.stroke();
+        if (!named) continue;
+        ctx.setLineDash([]);
+        ctx.fillStyle = look.paper;
+        ctx.strokeStyle = countColour(crossing.to, most, look);
+        ctx.lineWidth = 3;
+        ctx.beginPath();
+        ctx.arc(at, from, 5, 0, 2 * Math.PI);
+        ctx.fill();
+        ctx.stroke();
+        label(ctx, crossing.label, { x: at, y: chartArea.bottom - 4, right: chartArea.right }, look);
+      }
+      ctx.restore();
+    },
+  };
+}
+
+/** Text beside a point, on a ground of paper so that what it covers does not blur it. */
+function label(
+  ctx: CanvasRenderingContext2D,
+  text: string,
+  { x, y, right }: { x: number; y: number; right: number },
+  look: Look,
+): void {
+  const { width } = ctx.measureText(text);
+  const left = x + 6 + width > right ? x - 6 - width : x + 6;
+  ctx.fillStyle = look.paper;
+  ctx.fillRect(left - 2, y - 14, width + 4, 16);
+  ctx.fillStyle = look.ink;
+  ctx.fillText(text, left, y);
+}
+
+/** The name of each line above its end. */
+function lineNames(curves: Curves, look: Look): Plugin<'line'> {
+  return {
+    id: 'names',
+    afterDatasetsDraw({ ctx, scales, chartArea }) {
+      const { x, y } = scales;
+      if (!x || !y) return;
+      ctx.save();
+      ctx.font = `600 12px ${look.font}`;
+      ctx.fillStyle = look.ink;
+      ctx.textAlign = 'center';
+      ctx.textBaseline = 'bottom';
+      for (const { count, points } of curves.lines) {
+        const end = points.findLast((point) => point.y !== null);
+        if (end?.y == null) continue;
+        const text = pumps(count);
+        const half = ctx.measureText(text).width / 2;
+        const at = Math.min(Math.max(x.getPixelForValue(end.x), chartArea.left + half), chartArea.right + RIGHT - half);
+        ctx.fillText(text, at, y.getPixelForValue(end.y) - 6);
+      }
+      ctx.restore();
+    },
+  };
+}
+
+/** What each bar comes to, behind its end. */
+function barTexts(bars: Bars, look: Look): Plugin<'bar'> {
+  return {
+    id: 'texts',
+    afterDatasetsDraw({ ctx, scales }) {
+      const { x, y } = scales;
+      if (!x || !y) return;
+      ctx.save();
+      ctx.font = `12px ${look.font}`;
+      ctx.fillStyle = look.ink;
+      ctx.textBaseline = 'middle';
+      bars.bars.forEach((bar, i) => {
+        ctx.fillText(bar.text, x.getPixelForValue(bar.base + bar.above) + 6, y.getPixelForValue(i));
+      });
+      ctx.restore();
+    },
+  };
+}
+
+/** Tool tips show four figures in the reader's locale; the table beside the picture has all of them. */
+function figures(value: number): string {
+  return value.toLocaleString(undefined, { maximumSignificantDigits: 4 });
+}
+
+function unitOf(title: string): string {
+  return title.split(', ').at(-1) ?? '';
+}

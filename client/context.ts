@@ -1,0 +1,35 @@
+import { createContext } from 'preact';
+import { useContext } from 'preact/hooks';
+import type { ComparisonBody, RecordEntry } from '../server/api.ts';
+import type { Opened } from './answers.ts';
+import type { StationBody } from './api.ts';
+import type { Format } from './format.ts';
+import type { Path } from './station.ts';
+
+/** What is open on the page, for all that shows a part of it. */
+export interface Page {
+  readonly format: Format;
+  /** Whether every number shows all its figures. */
+  readonly allFigures: boolean;
+  readonly printing: boolean;
+  readonly dark: boolean;
+}
+
+export const PageContext = createContext<Page | null>(null);
+
+export function usePage(): Page {
+  const page = useContext(PageContext);
+  if (page === null) throw new Error('a part of the page was rendered outside it');
+  return page;
+}
+
+/** What a question is given. */
+export interface QuestionProps {
+  readonly open: Opened & { readonly comparison: ComparisonBody };
+  readonly record: RecordEntry;
+  /** As stored, and as the reader has changed it. */
+  readonly saved: StationBody;
+  readonly touch: (path: Path, value: number) => void;
+  /** The draft the reader is looking at: `open.station` is the one that is computed. */
+  readonly draft: StationBody;
+}

@@ -1,0 +1,4 @@
+import { render } from 'preact';
+import { App } from './App.tsx';
+
+render(<App />, document.getElementById('page')!);

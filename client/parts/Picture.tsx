@@ -1,0 +1,54 @@
+import type { ComponentChildren } from 'preact';
+import { useLayoutEffect, useRef, useState } from 'preact/hooks';
+import { type Drawn, type Look, lookOf } from '../chart.ts';
+import { usePage } from '../context.ts';
+
+interface PictureProps {
+  /** A sentence that says what is to be seen. */
+  readonly title: string;
+  readonly draw: (canvas: HTMLCanvasElement, look: Look) => Drawn;
+  /** The same numbers as a table. */
+  readonly numbers: () => ComponentChildren;
+  readonly height: 'tall' | 'low' | { readonly rows: number };
+  /** What stands between title and picture: choices that belong to it. */
+  readonly children?: ComponentChildren;
+}
+
+/** Width of a printed picture, and what a height comes to on paper [CSS px]. */
+const PAPER_WIDTH = 660;
+const PAPER_HEIGHT = { tall: 210, low: 96 };
+const ROW_HEIGHT = 34;
+const FRAME_HEIGHT = 52;
+
+/** A picture under its sentence, with its numbers one press away. */
+export function Picture({ title, draw, numbers, height, children }: PictureProps) {
+  const { printing, dark } = usePage();
+  const canvas = useRef<HTMLCanvasElement>(null);
+  const [open, setOpen] = useState(false);
+  const rows = typeof height === 'object' ? height.rows * ROW_HEIGHT + FRAME_HEIGHT : null;
+  const paperHeight = typeof height === 'object' ? rows! : PAPER_HEIGHT[height];
+  // Colours are read from the style sheet when drawn, so a change of scheme draws anew.
+  useLayoutEffect(() => {
+    const look = lookOf(canvas.current!, printing ? { width: PAPER_WIDTH, height: paperHeight } : null);
+    const drawn = draw(canvas.current!, look);
+    return () => drawn.destroy();
+  }, [draw, printing, dark, paperHeight]);
+  return (
+    <figure class="picture">
+      <figcaption>
+        <h3>{title}</h3>
+      </figcaption>
+      {children}
+      <div class={`plot ${rows === null ? height : ''}`} style={rows === null ? {} : { height: `${rows}px` }}>
+        {/* A canvas that changes between paper and screen is a new one: its size belongs to its drawer. */}
+        <canvas key={printing ? 'paper' : 'screen'} ref={canvas} role="img" aria-label={title} />
+      </div>
+      <div class="no-print">
+        <button type="button" class="quiet numbers" aria-expanded={open} onClick={() => setOpen(!open)}>
+          Numbers
+        </button>
+        {open && numbers()}
+      </div>
+    </figure>
+  );
+}

@@ -1,0 +1,116 @@
+import { useCallback, useMemo } from 'preact/hooks';
+import type { PowerOverFlow } from '../../../server/staging/pictures.ts';
+import { HEAD_UNITS } from '../../../server/units.ts';
+import { stepsText } from '../../answers.ts';
+import { drawCurves, drawHours } from '../../chart.ts';
+import { type QuestionProps, usePage } from '../../context.ts';
+import { pumps } from '../../format.ts';
+import { Cautions } from '../../parts/Cautions.tsx';
+import { Figure } from '../../parts/Figure.tsx';
+import { Picture } from '../../parts/Picture.tsx';
+import { Table } from '../../parts/Table.tsx';
+import { Touch } from '../../parts/Touch.tsx';
+import { curvesOf, hoursByFlow, leastCounts } from '../../series.ts';
+import { hoursSentence } from './hoursSentence.ts';
+
+/** Which pump, when: power over flow for each count, and under it the hours that the record spends at each flow. */
+export function Which({ open, saved, draft, touch }: QuestionProps) {
+  const { format } = usePage();
+  const { power, comparison } = open;
+  const curves = useMemo(() => curvesOf(power, format), [power, format]);
+  const hours = useMemo(() => hoursByFlow(power, format), [power, format]);
+  const varies = comparison.notes.find((note) => note.code.startsWith('static-head-from'));
+  return (
+    <>
+      <div class="touches">
+        <Touch
+          label="Static head"
+          measure={format.head}
+          fileFactor={HEAD_UNITS[draft.units.head]}
+          value={draft.system.staticHead}
+          saved={saved.system.staticHead}
+          onChange={(value) => touch(['system', 'staticHead'], value)}
+        />
+        <p class="aside">{varies ? varies.text : 'Change it: curves, crossings, table and bill follow.'}</p>
+      </div>
+      <Picture
+        title={stepsText(power, format)}
+        height="tall"
+        draw={useCallback((canvas, look) => drawCurves(canvas, curves, look), [curves])}
+        numbers={() => <PowerNumbers power={power} />}
+      />
+      <Picture
+        title={hoursSentence(comparison, format)}
+        height="low"
+        draw={useCallback((canvas, look) => drawHours(canvas, hours, curves, look), [hours, curves])}
+        numbers={() => <HoursNumbers power={power} />}
+      />
+      <p class="aside">{howDrawn(power, draft.surplus)}</p>
+      <Cautions ids={['minimumFlow', 'minimumSpeed', 'surge', 'solids']} />
+    </>
+  );
+}
+
+/** How power is reckoned in the picture, in words. */
+function howDrawn({ onDrives }: PowerOverFlow, surplus: 'storage' | 'throttle'): string {
+  if (onDrives) return 'All running pumps turn at one speed, trimmed to the flow. Standby power is included.';
+  if (surplus === 'throttle') return 'Pumps at full speed; a valve takes up the rest. Standby power is included.';
+  return 'Pumps at full speed, sharing time with one pump fewer. Standby power is included.';
+}
+
+function PowerNumbers({ power }: { readonly power: PowerOverFlow }) {
+  const { format } = usePage();
+  const least = useMemo(() => leastCounts(power), [power]);
+  return (
+    <>
+      <Table
+        caption="Where counts cross"
+        rows={power.crossings}
+        keyOf={(row) => `${row.from}-${row.flowM3s}`}
+        name={{ head: 'Step', cell: (row) => `${pumps(row.from)} to ${row.to}` }}
+        columns={[
+          { head: 'Flow', unit: format.flow.unit, cell: (row) => format.bare(format.flow, row.flowM3s).full },
+          { head: 'Mean power', unit: 'kW', cell: (row) => format.bare(format.power, row.powerKw).full },
+          { head: 'Cheaper above', cell: (row) => pumps(row.rising ? row.to : row.from) },
+        ]}
+      />
+      <Table
+        caption="Mean power over flow"
+        tall
+        rows={power.flowM3s.map((flow, i) => ({ flow, i }))}
+        keyOf={(row) => String(row.i)}
+        name={{
+          head: 'Flow',
+          unit: format.flow.unit,
+          cell: (row) => format.bare(format.flow, row.flow).full,
+        }}
+        columns={[
+          ...power.counts.map(({ count, powerKw }) => ({
+            head: pumps(count),
+            unit: 'kW',
+            cell: ({ i }: { i: number }) =>
+              powerKw[i] == null ? 'cannot' : format.bare(format.power, powerKw[i]).full,
+          })),
+          { head: 'Draws least', cell: ({ i }) => (least[i] === null ? 'none' : pumps(least[i]!)) },
+        ]}
+      />
+    </>
+  );
+}
+
+function HoursNumbers({ power }: { readonly power: PowerOverFlow }) {
+  const { format } = usePage();
+  return (
+    <Table
+      caption="Hours of the record by flow"
+      tall
+      rows={power.hours}
+      keyOf={(row) => String(row.fromM3s)}
+      name={{ head: 'From', unit: format.flow.unit, cell: (row) => format.bare(format.flow, row.fromM3s).full }}
+      columns={[
+        { head: 'To', unit: format.flow.unit, cell: (row) => format.bare(format.flow, row.toM3s).full },
+        { head: 'Hours', unit: 'h', cell: (row) => <Figure of={format.hours} value={row.hours} bare /> },
+      ]}
+    />
+  );
+}
