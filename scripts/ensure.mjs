@@ -86,14 +86,22 @@ function sha256(bytes) {
 }
 
 /**
- * Runs a TypeScript file of this checkout in a Node of its own, and ends as it ends. Signals are handed on, so that
- * whoever stops this process stops that one too.
+ * Runs a TypeScript file of this checkout in a Node of its own, and ends as it ends. Whoever stops this process stops
+ * that one too; npm told to stop ends with its shell and tells nobody, so the parent is watched where npm is one.
  */
 export function runTypeScript(file, args) {
   const child = spawn(process.execPath, ['--import', import.meta.resolve('tsx'), at(file), ...args], {
     stdio: 'inherit',
   });
   for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, () => child.kill(signal));
+  const parent = process.ppid;
+  if (process.env.npm_lifecycle_event !== undefined) {
+    const watch = setInterval(() => {
+      if (process.ppid === parent) return;
+      clearInterval(watch);
+      child.kill('SIGTERM');
+    }, 250);
+  }
   child.on('exit', (code, signal) => {
     process.exit(code ?? (signal === 'SIGINT' ? 130 : 1));
   });
