@@ -214,11 +214,16 @@ function timeColumns(
   if (dateAt >= 0 && clockAt >= 0 && clockOnly(table, headerRow, clockAt)) {
     return { timeColumn: dateAt, clockColumn: clockAt };
   }
-  const timeAt = headers.findIndex((h) => TIME_NAMES.has(h.name) || TIME_NAMES.has(h.whole));
-  if (timeAt >= 0 && !(dateAt >= 0 && headers[timeAt]!.name === 'index')) {
-    return { timeColumn: timeAt, clockColumn: null };
+  if (dateAt >= 0 && clockAt >= 0 && headers[clockAt]!.name !== 'time' && !timesFollow(table, headerRow, clockAt)) {
+    // A column of bare hours: 1 may be the hour that begins at 1:00 or the one that ends there.
+    const found = `column ${headers[clockAt]!.title} beside ${headers[dateAt]!.title} without times of day in it`;
+    input.faults.atLine(table.lineOf[headerRow]!, 'ambiguous_time', found, 'times of day such as 13:00');
+    input.faults.throwIfAny();
   }
-  if (dateAt >= 0) return { timeColumn: dateAt, clockColumn: null };
+  // A row number is often called index and stands beside the time: what holds times comes first.
+  const named = headers.flatMap((h, index) => (isTimeName(h) ? [index] : []));
+  const timeAt = named.find((index) => timesFollow(table, headerRow, index)) ?? named[0];
+  if (timeAt !== undefined) return { timeColumn: timeAt, clockColumn: null };
   const unnamed = headers.findIndex((h) => h.title === '');
   if (unnamed >= 0 && holdsDates(table, headerRow, unnamed)) return { timeColumn: unnamed, clockColumn: null };
   return null;
@@ -354,7 +359,8 @@ function refuseHeaderless({ table, faults }: LayoutInput): never {
     faults.atLine(table.lineOf[row]!, 'missing_column', `columns ${shown}`, "a header row with 'time' and 'flow'");
     break;
   }
-  if (faults.isEmpty) faults.add('line 1', 'not_csv', `'${rowCells(table, 0).join(' ').slice(0, 60)}'`, 'a header row');
+  if (faults.isEmpty)
+    faults.add('line 1', 'not_csv', `'${rowCells(table, 0).join(table.delimiter).slice(0, 60)}'`, 'a header row');
   faults.throwIfAny();
   throw new Error('unreachable: a fault was added');
 }

@@ -125,6 +125,8 @@ describe('the hour that spring skips (Dublin 2025-03-30, 01:00 to 02:00)', () =>
       expect(starts(aRecord(text, { options: { timeZone } }))).toEqual(expected);
     }
     expect(starts(aRecord(text.replace('time', 'Time (UTC+1)')))).toEqual(expected);
+    const contradicted = aRecord(text.replace('time', 'time_utc'), { options: { timeZone: '+01:00' } });
+    expect(starts(contradicted)).toEqual(expected); // what a person says overrides what a header says
     expect(starts(aRecord(text.replace('time', 'time_utc')))).toEqual([
       ...['2025-03-30T00:00', '2025-03-30T01:00', '2025-03-30T02:00'],
     ]);

@@ -85,6 +85,22 @@ describe('with inflow running', () => {
     for (const test of tests) expect(test.pumpedM3s).toBeCloseTo(test.pumpsOn === 1 ? 0.04 : 0.07, 9);
   });
 
+  it('takes the run of one pump straight after another for two tests', () => {
+    // 6 m² with no inflow: P1 draws 0.6 m³ in a minute, then P2 0.3 m³
+    const rows = [
+      [2, 0, 0],
+      [2, 1, 0],
+      [1.9, 0, 1],
+      [1.85, 0, 0],
+      [1.85, 0, 0],
+    ];
+    const tests = drawdownTests(inflowFromLevels({ log: levels(rows, 60), volume: well(6), side: 'suction' }));
+    expect(tests.map(({ pumps, pumpedM3s }) => [pumps, Number(pumpedM3s.toFixed(9))])).toEqual([
+      [['P1'], 0.01],
+      [['P2'], 0.005],
+    ]);
+  });
+
   it('closes the balance: inflow − pumped = change in store', () => {
     const { inflow } = simulated((second) => 0.02 + 0.005 * Math.sin(second / 300));
     const { log, pumped } = inflow;
@@ -115,6 +131,13 @@ describe('what cannot be known', () => {
     ];
     const { log } = inflowFromLevels({ log: levels(rows, 60), volume: well(6), side: 'suction' });
     expect(Array.from(log.flow!, (q) => Number(q.toFixed(9)))).toEqual([0.01, Number.NaN, Number.NaN, 0.01]);
+  });
+
+  it('stays a gap where rows are missing', () => {
+    const rows = [0, 60, 120, 600, 660, 720].map((second) => `${at(second)},${1 + second / 600},0`);
+    const { log } = aRecord(`time,level,P1_on\n${rows.join('\n')}\n`);
+    const inflow = inflowFromLevels({ log, volume: well(6), side: 'suction' });
+    expect(Array.from(inflow.log.flow!, (q) => Number(q.toFixed(9)))).toEqual([0.01, 0.01, Number.NaN, 0.01, 0.01]);
   });
 
   it('gives an uneven fill its mean, which keeps its volume', () => {

@@ -128,6 +128,17 @@ describe('where the header stands and what it is called', () => {
     expect(starts(record)).toEqual(['2025-01-13T00:00', '2025-01-13T01:00', '2025-01-13T14:00']);
   });
 
+  it('with a row number called index beside the time', () => {
+    expect(litres(aRecord(`index,time,flow\n0,${hour(0)},1\n1,${hour(1)},2\n`))).toEqual([1, 2]);
+  });
+
+  it('but refuses bare hours beside a date, which may count from 0 or from 1', () => {
+    expect(faultsOf(() => aRecord('Date;Hour;Flow\n13.01.2025;1;10\n13.01.2025;2;10\n'))).toEqual([
+      'ambiguous_time flow.csv line 1: found column Hour beside Date without times of day in it; ' +
+        'wanted times of day such as 13:00',
+    ]);
+  });
+
   it('by an unnamed first column of times, and by a mark inside the quotes', () => {
     expect(litres(aRecord(`,flow\n${hour(0)},1\n${hour(1)},2\n`))).toEqual([1, 2]);
     expect(litres(aRecord(`"\uFEFFtime",flow\n${hour(0)},1\n${hour(1)},2\n`))).toEqual([1, 2]);
