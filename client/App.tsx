@@ -4,11 +4,11 @@ import { answersOf, QUESTIONS, type QuestionId } from './answers.ts';
 import { api, type ComparisonRequest, linesOf, type StationBody, type TariffBody } from './api.ts';
 import { PageContext, type QuestionProps } from './context.ts';
 import { Format, UNIT_CHOICES } from './format.ts';
-import { useComparison, useDark, usePrinting, useRemembered } from './hooks.ts';
+import { useComparison, useMedia, usePrinting, useRemembered } from './hooks.ts';
 import type { Imported } from './importing.ts';
 import { latestRecord, tariffFor } from './opening.ts';
 import { AddFiles } from './parts/AddFiles.tsx';
-import { AdviceOnly } from './parts/Cautions.tsx';
+import { AdviceOnly, AllCautions } from './parts/Cautions.tsx';
 import { Draft } from './parts/Draft.tsx';
 import { Header } from './parts/Header.tsx';
 import { Rail } from './parts/Rail.tsx';
@@ -48,7 +48,8 @@ export function App() {
   const [units, setUnits] = useRemembered('units', UNIT_CHOICES, 'file');
   const [digits, setDigits] = useRemembered('figures', ['three', 'all'] as const, 'three');
   const printing = usePrinting();
-  const dark = useDark();
+  const dark = useMedia('(prefers-color-scheme: dark)');
+  const narrow = useMedia('(max-width: 48rem)');
 
   // A revision asks for everything anew.
   useEffect(() => {
@@ -155,7 +156,7 @@ export function App() {
       </a>
       <Header units={units} onUnits={setUnits} digits={digits} onDigits={setDigits} />
       {entries && entries.length > 0 && (
-        <Stations entries={entries} openId={openId} verdicts={verdicts} onOpen={openStation} />
+        <Stations entries={entries} openId={openId} verdicts={verdicts} folded={narrow} onOpen={openStation} />
       )}
       <AddFiles open={saved} onImported={imported} first={entries?.length === 0} />
       {faults.length > 0 && (
@@ -209,6 +210,7 @@ export function App() {
                     </section>
                   );
                 })}
+                {printing && <AllCautions />}
               </PageContext.Provider>
             ) : (
               compared.busy && <p role="status">Comparing the rules over the record…</p>

@@ -1,7 +1,7 @@
 import type { PowerOverFlow } from '../server/staging/pictures.ts';
 import type { ComparisonResult, RuleId, RuleResult } from '../server/staging/result.ts';
 import type { StationFile } from '../server/station/stationFile.ts';
-import { type Format, list, ordinal, pumps, sentence } from './format.ts';
+import { type Format, inWords, list, ordinal, pumps, sentence } from './format.ts';
 import { ruleName } from './rules.ts';
 import { equipmentOf } from './station.ts';
 import { isScaled, type Weighing, weighingOf, yearCost, yearEnergy } from './yearly.ts';
@@ -63,7 +63,7 @@ export function stepsText(power: PowerOverFlow, format: Format): string {
 function stepText(power: PowerOverFlow, count: number, format: Format): string {
   const crossings = power.crossings.filter((each) => each.to === count);
   const capacity = power.counts.find((each) => each.count === count - 1)?.capacityM3s ?? 0;
-  if (crossings.length === 0) return `only beyond ${format.say(format.flow, capacity)}, when ${needed(count - 1)}`;
+  if (crossings.length === 0) return `beyond ${format.say(format.flow, capacity)}, where ${fallsShort(count - 1)}`;
   const parts: string[] = [];
   for (const [i, crossing] of crossings.entries()) {
     if (!crossing.rising) continue;
@@ -77,8 +77,8 @@ function stepText(power: PowerOverFlow, count: number, format: Format): string {
   return list(parts);
 }
 
-function needed(count: number): string {
-  return count === 1 ? 'one cannot meet the flow' : `${count} cannot meet the flow`;
+function fallsShort(count: number): string {
+  return count === 1 ? 'one falls short' : `${inWords(count)} fall short`;
 }
 
 // What does it cost?
@@ -248,6 +248,7 @@ export function basisAnswer({ comparison, station }: Subject, format: Format): s
   const tariff = comparison.inputs.tariff ?? 'no tariff';
   const covered =
     gapHours > 0 ? `${format.whole(hours)} of ${format.whole(hours + gapHours)} hours` : `${format.whole(hours)} hours`;
-  const gaps = gapHours > 0 ? `. ${format.say(format.hours, gapHours)} have no value and are left out` : '';
+  const missing = format.bare(format.hours, gapHours).text;
+  const gaps = gapHours > 0 ? `. ${missing} ${missing === '1' ? 'hour has' : 'hours have'} no value, left out` : '';
   return `${covered}, ${pumps(duty)}, ${tariff}${gaps}`;
 }

@@ -16,6 +16,7 @@ import {
   type TooltipItem,
 } from 'chart.js';
 import { pumps } from './format.ts';
+import { type Box, placeNames, raiseClear } from './labels.ts';
 import type { Axis, Bars, Curves, HoursByFlow, Point, RecordSteps, Ticks } from './series.ts';
 
 /** The one file that knows the chart library: a picture's data in, a drawn canvas out. */
@@ -82,8 +83,11 @@ function channels(hex: string): [number, number, number] {
 }
 
 /** Pictures that stand one over the other share their left edge: room for a figure of five digits. */
-const AXIS_WIDTH = 62;
+const AXIS_WIDTH = 70;
 const RIGHT = 18;
+
+/** Room behind the longest bar for what it comes to. */
+const BAR_TEXT = 84;
 
 /** Power over flow: each count a line, heavy where it draws least, named where it ends; crossings stand on the axis. */
 export function drawCurves(canvas: HTMLCanvasElement, curves: Curves, look: Look): Drawn {
@@ -163,16 +167,16 @@ export function drawBars(canvas: HTMLCanvasElement, bars: Bars, look: Look): Dra
     data: {
       labels: bars.bars.map((bar) => bar.label),
       datasets: [
-        { label: 'least', data: bars.bars.map((bar) => bar.base), backgroundColor: look.plain, barThickness: 18 },
-        { label: 'above', data: bars.bars.map((bar) => bar.above), backgroundColor: look.warm, barThickness: 18 },
+        { label: 'least', data: bars.bars.map((bar) => bar.base), backgroundColor: look.plain, maxBarThickness: 18 },
+        { label: 'above', data: bars.bars.map((bar) => bar.above), backgroundColor: look.warm, maxBarThickness: 18 },
       ],
     },
     options: {
       indexAxis: 'y',
-      layout: { padding: { right: 4 } },
+      layout: { padding: { right: BAR_TEXT } },
       scales: {
         x: {
-          ...linear({ title: bars.title, min: 0, max: longest * 1.24 || 1 }, look),
+          ...linear({ title: bars.title, min: 0, max: longest || 1 }, look),
           stacked: true,
         },
         y: {
@@ -255,18 +259,18 @@ export function drawRecord(
             callback: (value) => tickText(Number(value)),
           },
         },
+        count: {
+          ...fixedWidth(linear({ title: 'Pumps', min: 0, max: mostCount + 0.4 }, look)),
+          stack: 'both',
+          stackWeight: 2,
+          position: 'left',
+          ticks: { color: look.ink, stepSize: 1, precision: 0, font: { family: look.font, size: 12 } },
+        },
         flow: {
           ...fixedWidth(linear(record.flowAxis, look, { ticks: 4 })),
           stack: 'both',
           stackWeight: 3,
           position: 'left',
-        },
-        count: {
-          ...fixedWidth(linear({ title: 'Pumps', min: 0, max: mostCount }, look)),
-          stack: 'both',
-          stackWeight: 2,
-          position: 'left',
-          ticks: { color: look.ink, stepSize: 1, precision: 0, font: { family: look.font, size: 12 } },
         },
       },
       plugins: {
@@ -362,7 +366,7 @@ function tip(look: Look, { title, label }: Tip) {
   };
 }
 
-/** Vertical lines where counts cross; named at the foot where there is room beside the line. */
+/** Vertical lines where counts cross; where `named`, the flow is written at the foot. */
 function crossingMarks(curves: Curves, most: number, look: Look, named: boolean): Plugin<'line' | 'bar'> {
   return {
     id: 'crossings',
@@ -370,72 +374,96 @@ function crossingMarks(curves: Curves, most: number, look: Look, named: boolean)
       const { x, y } = scales;
       if (!x || !y) return;
       ctx.save();
-      ctx.font = `600 12px ${look.font}`;
-      ctx.textBaseline = 'bottom';
-      for (const crossing of curves.crossings) {
-        const at = x.getPixelForValue(crossing.x);
-        const from = named ? y.getPixelForValue(crossing.y) : chartArea.top;
-        ctx.strokeStyle = look.ink;
-        ctx.lineWidth = 1;
-        ctx.setLineDash([3, 3]);
+      const marks = curves.crossings.map((crossing) => ({
+        ...crossing,
+        at: x.getPixelForValue(crossing.x),
+        top: named ? y.getPixelForValue(crossing.y) : chartArea.top,
+      }));
+      ctx.strokeStyle = look.ink;
+      ctx.lineWidth = 1;
+      ctx.setLineDash([3, 3]);
+      for (const { at, top } of marks) {
         ctx.beginPath();
-        ctx.moveTo(at, from);
+        ctx.moveTo(at, top);
         ctx.lineTo(at, chartArea.bottom);
         ctx.stroke();
-        if (!named) continue;
-        ctx.setLineDash([]);
-        ctx.fillStyle = look.paper;
-        ctx.strokeStyle = countColour(crossing.to, most, look);
-        ctx.lineWidth = 3;
+      }
+      ctx.setLineDash([]);
+      ctx.lineWidth = 3;
+      ctx.fillStyle = look.paper;
+      for (const { at, top, to } of named ? marks : []) {
+        ctx.strokeStyle = countColour(to, most, look);
         ctx.beginPath();
-        ctx.arc(at, from, 5, 0, 2 * Math.PI);
+        ctx.arc(at, top, 5, 0, 2 * Math.PI);
         ctx.fill();
         ctx.stroke();
-        label(ctx, crossing.label, { x: at, y: chartArea.bottom - 4, right: chartArea.right }, look);
+      }
+      const taken: Box[] = [];
+      ctx.font = `600 12px ${look.font}`;
+      ctx.textBaseline = 'top';
+      for (const { at, label } of named ? marks : []) {
+        const { width } = ctx.measureText(label);
+        const left = at + 6 + width > chartArea.right ? at - 6 - width : at + 6;
+        const foot = { left, right: left + width, top: chartArea.bottom - 18, bottom: chartArea.bottom - 3 };
+        const box = raiseClear(foot, taken);
+        taken.push(box);
+        // On a ground of paper, so that what it covers does not blur it.
+        ctx.fillStyle = look.paper;
+        ctx.fillRect(box.left - 2, box.top, width + 4, box.bottom - box.top);
+        ctx.fillStyle = look.ink;
+        ctx.fillText(label, box.left, box.top + 2);
       }
       ctx.restore();
     },
   };
 }
 
-/** Text beside a point, on a ground of paper so that what it covers does not blur it. */
-function label(
-  ctx: CanvasRenderingContext2D,
-  text: string,
-  { x, y, right }: { x: number; y: number; right: number },
-  look: Look,
-): void {
-  const { width } = ctx.measureText(text);
-  const left = x + 6 + width > right ? x - 6 - width : x + 6;
-  ctx.fillStyle = look.paper;
-  ctx.fillRect(left - 2, y - 14, width + 4, 16);
-  ctx.fillStyle = look.ink;
-  ctx.fillText(text, left, y);
-}
-
-/** The name of each line above its end. */
+/** The name of each line beside it, where it covers no other. */
 function lineNames(curves: Curves, look: Look): Plugin<'line'> {
   return {
     id: 'names',
     afterDatasetsDraw({ ctx, scales, chartArea }) {
       const { x, y } = scales;
       if (!x || !y) return;
+      const spot = (at: { x: number; y: number }) => ({ x: x.getPixelForValue(at.x), y: y.getPixelForValue(at.y) });
       ctx.save();
       ctx.font = `600 12px ${look.font}`;
       ctx.fillStyle = look.ink;
-      ctx.textAlign = 'center';
-      ctx.textBaseline = 'bottom';
-      for (const { count, points } of curves.lines) {
-        const end = points.findLast((point) => point.y !== null);
-        if (end?.y == null) continue;
-        const text = pumps(count);
-        const half = ctx.measureText(text).width / 2;
-        const at = Math.min(Math.max(x.getPixelForValue(end.x), chartArea.left + half), chartArea.right + RIGHT - half);
-        ctx.fillText(text, at, y.getPixelForValue(end.y) - 6);
-      }
+      ctx.textBaseline = 'top';
+      const names = curves.lines.map(({ count }) => pumps(count));
+      const boxes = placeNames({
+        lines: curves.lines.map(({ points }) => plotted(points.filter((point) => point.y !== null)).map(spot)),
+        sizes: names.map((name) => ({ width: ctx.measureText(name).width, height: 12 })),
+        // A mark stands from its crossing down to the axis, where its flow is written.
+        marks: curves.crossings.flatMap((crossing) => [spot(crossing), spot({ x: crossing.x, y: curves.y.min })]),
+        area: { ...chartArea, top: 0, right: chartArea.right + RIGHT },
+      });
+      boxes.forEach((box, i) => {
+        if (box) ctx.fillText(names[i]!, box.left, box.top);
+        else numberOnLine(ctx, curves.lines[i]!, spot, look);
+      });
       ctx.restore();
     },
   };
+}
+
+/** Where a name has no room beside its line, its number stands on the line where that is heavy. */
+function numberOnLine(
+  ctx: CanvasRenderingContext2D,
+  { count, points, least }: Curves['lines'][number],
+  spot: (at: { x: number; y: number }) => { x: number; y: number },
+  look: Look,
+): void {
+  const drawn = points.filter((point, i) => point.y !== null && least[i]);
+  const middle = drawn[Math.floor(drawn.length / 2)] ?? points.findLast((point) => point.y !== null);
+  if (middle?.y == null) return;
+  const { x, y } = spot({ x: middle.x, y: middle.y });
+  const text = String(count);
+  const { width } = ctx.measureText(text);
+  ctx.fillStyle = look.paper;
+  ctx.fillRect(x - width / 2 - 2, y - 7, width + 4, 14);
+  ctx.fillStyle = look.ink;
+  ctx.fillText(text, x - width / 2, y - 5);
 }
 
 /** What each bar comes to, behind its end. */

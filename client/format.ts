@@ -127,7 +127,7 @@ export class Format {
   }
 
   #moneyText(value: number, currency: string): string {
-    const style = { style: 'currency', currency, currencyDisplay: 'narrowSymbol' } as const;
+    const style = { style: 'currency', currency } as const;
     // Under a hundred the smaller coin counts; above, three figures and no decimals.
     if (Math.abs(value) < 99.995) return this.#number(style).format(value);
     return this.#number({ ...style, maximumSignificantDigits: 3 }).format(value);
@@ -180,6 +180,18 @@ export function ordinal(n: number): string {
   if (word !== undefined) return word;
   const tail = n % 100 >= 11 && n % 100 <= 13 ? 'th' : (['th', 'st', 'nd', 'rd'][n % 10] ?? 'th');
   return `${n}${tail}`;
+}
+
+/** Small numbers in a sentence as words: `two`; larger ones in figures. */
+export function inWords(n: number): string {
+  return ['none', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine'][n] ?? String(n);
+}
+
+/** `1 h`, `15 min`, `30 s`: a step of a record in its largest whole unit. */
+export function stepText(seconds: number): string {
+  if (seconds % 3600 === 0) return `${seconds / 3600}\u00a0h`;
+  if (seconds % 60 === 0) return `${seconds / 60}\u00a0min`;
+  return `${seconds}\u00a0s`;
 }
 
 /** `1 pump`, `2 pumps` */

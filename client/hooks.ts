@@ -83,16 +83,16 @@ function atOnce(change: () => void): void {
   else delete options.debounceRendering;
 }
 
-/** Whether the reader's system asks for a dark page. */
-export function useDark(): boolean {
-  const [query] = useState(() => matchMedia('(prefers-color-scheme: dark)'));
-  const [dark, setDark] = useState(query.matches);
+/** Whether a media query holds, followed as it changes. */
+export function useMedia(text: string): boolean {
+  const [query] = useState(() => matchMedia(text));
+  const [holds, setHolds] = useState(query.matches);
   useEffect(() => {
-    const changed = () => setDark(query.matches);
+    const changed = () => setHolds(query.matches);
     query.addEventListener('change', changed);
     return () => query.removeEventListener('change', changed);
   }, [query]);
-  return dark;
+  return holds;
 }
 
 /** A choice that this browser remembers. */

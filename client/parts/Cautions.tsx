@@ -1,3 +1,5 @@
+import { usePage } from '../context.ts';
+
 /** What the program cannot see and a person on site must. The keys say what calls for it. */
 const CAUTIONS = {
   minimumFlow: {
@@ -40,8 +42,17 @@ const CAUTIONS = {
 
 export type CautionId = keyof typeof CAUTIONS;
 
-/** Cautions, beside what calls for them. */
+/** Cautions, beside what calls for them. On paper they stand together at the end, each once. */
 export function Cautions({ ids }: { readonly ids: readonly CautionId[] }) {
+  return usePage().printing ? null : <CautionList ids={ids} />;
+}
+
+/** Every caution, for the end of a printed page. */
+export function AllCautions() {
+  return <CautionList ids={Object.keys(CAUTIONS) as CautionId[]} />;
+}
+
+function CautionList({ ids }: { readonly ids: readonly CautionId[] }) {
   return (
     <aside class="cautions" aria-label="Cautions">
       {ids.map((id) => (

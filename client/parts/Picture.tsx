@@ -16,8 +16,8 @@ interface PictureProps {
 
 /** Width of a printed picture, and what a height comes to on paper [CSS px]. */
 const PAPER_WIDTH = 660;
-const PAPER_HEIGHT = { tall: 210, low: 96 };
-const ROW_HEIGHT = 34;
+const PAPER_HEIGHT = { tall: 190, low: 92 };
+const ROW_HEIGHT = { screen: 34, paper: 22 };
 const FRAME_HEIGHT = 52;
 
 /** A picture under its sentence, with its numbers one press away. */
@@ -25,7 +25,8 @@ export function Picture({ title, draw, numbers, height, children }: PictureProps
   const { printing, dark } = usePage();
   const canvas = useRef<HTMLCanvasElement>(null);
   const [open, setOpen] = useState(false);
-  const rows = typeof height === 'object' ? height.rows * ROW_HEIGHT + FRAME_HEIGHT : null;
+  const rows =
+    typeof height === 'object' ? height.rows * ROW_HEIGHT[printing ? 'paper' : 'screen'] + FRAME_HEIGHT : null;
   const paperHeight = typeof height === 'object' ? rows! : PAPER_HEIGHT[height];
   // Colours are read from the style sheet when drawn, so a change of scheme draws anew.
   useLayoutEffect(() => {

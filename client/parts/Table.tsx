@@ -32,7 +32,7 @@ export function Table<Row>({ caption, rows, name, columns, keyOf, mark, details,
         <thead>
           <tr>
             {[name, ...columns].map((column) => (
-              <th key={column.head} scope="col" class={column.wide ? 'wide' : undefined}>
+              <th key={`${column.head} ${column.unit}`} scope="col" class={column.wide ? 'wide' : undefined}>
                 {column.head}
                 {column.unit && <span class="unit">{column.unit}</span>}
               </th>
@@ -80,7 +80,7 @@ function Row<R>({ row, name, columns, mark, details }: RowProps<R>) {
           {mark && <span class="mark">{mark}</span>}
         </th>
         {columns.map((column) => (
-          <td key={column.head} class={column.wide ? 'wide' : undefined}>
+          <td key={`${column.head} ${column.unit}`} class={column.wide ? 'wide' : undefined}>
             {column.cell(row)}
           </td>
         ))}

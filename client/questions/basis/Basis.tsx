@@ -1,5 +1,6 @@
 import type { QuestionProps } from '../../context.ts';
 import { usePage } from '../../context.ts';
+import { stepText } from '../../format.ts';
 import { Cautions } from '../../parts/Cautions.tsx';
 import { Figure } from '../../parts/Figure.tsx';
 import { Table } from '../../parts/Table.tsx';
@@ -7,26 +8,27 @@ import { equipmentOf } from '../../station.ts';
 import { RecordPicture } from './RecordPicture.tsx';
 import { StationNumbers } from './StationNumbers.tsx';
 
+/** A longer list of gaps stays off the paper; their hours are in the facts. */
+const PRINTED_GAPS = 6;
+
 /** What the answers are based on: the record, its gaps and doubts, the station's numbers, the exact inputs. */
 export function Basis({ open, record, saved, draft, touch }: QuestionProps) {
-  const { format } = usePage();
+  const { format, printing } = usePage();
   const { comparison } = open;
   const { report } = record;
   const equipment = equipmentOf(open.station);
   const span = { fromMs: Date.parse(comparison.record.from), toMs: Date.parse(comparison.record.to) };
   return (
     <>
-      <RecordPicture comparison={comparison} whole={span} duty={equipment.duty} />
+      {!printing && <RecordPicture comparison={comparison} whole={span} duty={equipment.duty} />}
       <dl class="facts">
         <Fact name="Record">
           {record.name}, {format.day(span.fromMs)} to {format.day(span.toMs)}
         </Fact>
         <Fact name="Intervals">
-          {format.whole(comparison.record.intervals)}, mostly of <Figure of={seconds} value={report.stepSeconds} />
+          {format.whole(comparison.record.intervals)}, mostly of {stepText(report.stepSeconds)}
         </Fact>
-        <Fact name="Hours with a value">
-          <Figure of={format.hours} value={comparison.record.hours} />
-        </Fact>
+        <Fact name="Hours with a value">{format.whole(comparison.record.hours)} h</Fact>
         <Fact name="Hours without">
           <Figure of={format.hours} value={comparison.record.gapHours} />
         </Fact>
@@ -49,7 +51,7 @@ export function Basis({ open, record, saved, draft, touch }: QuestionProps) {
       </dl>
       <h3>Notes</h3>
       <Notes notes={[...comparison.notes, ...report.notes]} />
-      {report.gaps.length > 0 && (
+      {report.gaps.length > 0 && !(printing && report.gaps.length > PRINTED_GAPS) && (
         <Table
           caption="Gaps: left out of every figure, never filled"
           tall={report.gaps.length > 12}
@@ -82,8 +84,6 @@ export function Basis({ open, record, saved, draft, touch }: QuestionProps) {
     </>
   );
 }
-
-const seconds = { unit: 's', factor: 1 };
 
 function Fact({ name, children }: { readonly name: string; readonly children: preact.ComponentChildren }) {
   return (

@@ -20,8 +20,8 @@ export function StationNumbers({ saved, draft, touch }: Pick<QuestionProps, 'sav
   );
   return (
     <>
-      <h3>The station's own numbers</h3>
-      <div class="touches">
+      <h3 class="no-print">The station's own numbers</h3>
+      <div class="touches no-print">
         {numbers.map(({ path, ...rest }) => (
           <Touch
             key={path.join('.')}

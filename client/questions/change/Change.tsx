@@ -8,11 +8,11 @@ import { Touch } from '../../parts/Touch.tsx';
 import { RULE_TEXT } from '../../rules.ts';
 import { equipmentOf } from '../../station.ts';
 import { isScaled } from '../../yearly.ts';
-import { LEDGER_PARTS } from '../cost/ledger.ts';
+import { LEDGER_PARTS, partOf, withoutDust } from '../cost/ledger.ts';
 
 /** Whether a change is worth it: each possible change against what the station can do as it is equipped. */
 export function Change({ open, saved, draft, touch }: QuestionProps) {
-  const { format } = usePage();
+  const { format, printing } = usePage();
   const found = changesOf(open);
   const weighed = weigh(open);
   if (found === null || weighed === null || found.changes.length === 0) {
@@ -34,7 +34,7 @@ export function Change({ open, saved, draft, touch }: QuestionProps) {
         ))}
       </ul>
       <p>{liftText(deciding.from, format)}</p>
-      <div class="touches">
+      <div class="touches no-print">
         <Touch
           label="Static head"
           measure={format.head}
@@ -73,7 +73,8 @@ export function Change({ open, saved, draft, touch }: QuestionProps) {
           { head: 'Drives needed', cell: ({ to }) => String(to.needsDrives) },
         ]}
       />
-      <LedgerDifference change={deciding} />
+      {/* On paper the ledger of all rules stands under what it costs. */}
+      {!printing && <LedgerDifference change={deciding} />}
       <p class="aside">
         What a change costs to make, its payback and how sure it is are not in these figures. Less than a year of record
         has not seen every season.
@@ -87,14 +88,14 @@ function LedgerDifference({ change: { from, to } }: { readonly change: ChangeFou
   const { format } = usePage();
   const rows = LEDGER_PARTS.map(({ part, name }) => ({
     name,
-    before: from.ledgerKwh[part],
-    after: to.ledgerKwh[part],
+    before: partOf(from, part),
+    after: partOf(to, part),
   }));
   const total = { name: 'Total', before: from.energyKwh, after: to.energyKwh };
   const column = (head: string, value: (row: typeof total) => number) => ({
     head,
     unit: format.energy.unit,
-    cell: (row: typeof total) => <Figure of={format.energy} value={value(row)} bare />,
+    cell: (row: typeof total) => <Figure of={format.energy} value={withoutDust(value(row), total.before)} bare />,
   });
   return (
     <Table

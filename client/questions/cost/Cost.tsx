@@ -39,7 +39,12 @@ export function Cost({ open }: QuestionProps) {
   );
   return (
     <>
-      <Picture title={barsSentence(weighed, format)} height={{ rows: rules.length }} draw={draw} numbers={() => null}>
+      <Picture
+        title={barsSentence(weighed, format)}
+        height={{ rows: rules.length }}
+        draw={draw}
+        numbers={() => <YearNumbers weighed={weighed} />}
+      >
         {table}
       </Picture>
       <HoursTable rules={rules} />
@@ -99,6 +104,9 @@ function columnsOf(rules: readonly RuleResult[], format: Format): Column<RuleRes
     column('Energy', format.energy, (rule) => rule.energyKwh),
     column('Per volume', format.specific, (rule) => rule.kwhPerM3, true),
     ...money,
+    ...(rules.some((rule) => rule.aboveFloorPercent !== undefined)
+      ? [column('Above least energy', format.percent, (rule) => rule.aboveFloorPercent, true)]
+      : []),
     column('Peak', format.power, (rule) => rule.peakKw, true),
     column('Shortfall', format.volume, (rule) => rule.shortfallM3, true),
     column('Starts', format.plain, (rule) => rule.starts, true),
@@ -120,6 +128,27 @@ function HoursTable({ rules }: { readonly rules: readonly RuleResult[] }) {
           cell: (rule) => <Figure of={format.hours} value={rule.hoursByCount[count] ?? 0} bare />,
         }),
       )}
+    />
+  );
+}
+
+function YearNumbers({ weighed: { rules, least, weighing } }: { readonly weighed: Weighed }) {
+  const { format } = usePage();
+  const measure = weighing === 'money' ? format.money : format.energy;
+  return (
+    <Table
+      caption="A year"
+      rows={rules}
+      keyOf={({ rule }) => rule.rule}
+      name={{ head: 'Rule', cell: ({ rule }) => RULE_TEXT[rule.rule].name }}
+      columns={[
+        { head: 'A year', unit: measure.unit, cell: (each) => format.bare(measure, each.perYear).full },
+        {
+          head: 'Above the least',
+          unit: measure.unit,
+          cell: (each) => format.bare(measure, each.perYear - least.perYear).full,
+        },
+      ]}
     />
   );
 }

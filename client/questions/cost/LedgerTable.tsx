@@ -3,7 +3,7 @@ import { usePage } from '../../context.ts';
 import { Figure } from '../../parts/Figure.tsx';
 import { type Column, Table } from '../../parts/Table.tsx';
 import { RULE_TEXT } from '../../rules.ts';
-import { LEDGER_PARTS } from './ledger.ts';
+import { LEDGER_PARTS, partOf } from './ledger.ts';
 
 /** Where the kWh of each rule go; the parts add up to its energy. */
 export function LedgerTable({ rules }: { readonly rules: readonly RuleResult[] }) {
@@ -18,7 +18,7 @@ export function LedgerTable({ rules }: { readonly rules: readonly RuleResult[] }
         ({ part, name }): Column<RuleResult> => ({
           head: name,
           unit: format.energy.unit,
-          cell: (rule) => <Figure of={format.energy} value={rule.ledgerKwh[part]} bare />,
+          cell: (rule) => <Figure of={format.energy} value={partOf(rule, part)} bare />,
         }),
       )}
     />

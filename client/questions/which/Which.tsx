@@ -22,7 +22,7 @@ export function Which({ open, saved, draft, touch }: QuestionProps) {
   const varies = comparison.notes.find((note) => note.code.startsWith('static-head-from'));
   return (
     <>
-      <div class="touches">
+      <div class="touches no-print">
         <Touch
           label="Static head"
           measure={format.head}
