@@ -25,6 +25,9 @@ interface Placing {
 /** Between a name and what it must not touch. */
 const CLEAR = 5;
 
+/** How far from its line a name may stand, nearest first: a steep line needs more. */
+const AWAY = [CLEAR + 1, CLEAR + 5, CLEAR + 10];
+
 /** A name at the foot of a mark, raised by as many rows as it takes to clear those before it. */
 export function raiseClear(box: Box, taken: readonly Box[]): Box {
   const height = box.bottom - box.top;
@@ -44,7 +47,7 @@ export function placeNames({ lines, sizes, marks, area }: Placing): (Box | null)
   return lines.map((line, i) => {
     const { width, height } = sizes[i]!;
     for (const at of [...dense(line)].reverse()) {
-      for (const top of [at.y - height - CLEAR - 2, at.y + CLEAR + 2]) {
+      for (const top of AWAY.flatMap((away) => [at.y - height - away, at.y + away])) {
         const left = Math.min(at.x - width / 2, area.right - width);
         const box = { left, top, right: left + width, bottom: top + height };
         const inside = box.left >= area.left && box.top >= area.top && box.bottom <= area.bottom;
