@@ -33,6 +33,19 @@ export const caseFileSchema = z.strictObject({
   discountRate: perYear,
   energyEscalation: perYear.optional(),
   targetPaybackYears: z.number().gt(0).optional(),
+  /** Other changes to look at beside `proposed`, under the same years and rates. */
+  options: z
+    .array(
+      z.strictObject({
+        name: z.string().min(1),
+        rule,
+        capital: z.number().min(0).optional(),
+        incentive: z.number().min(0).optional(),
+        maintenanceSavingPerYear: z.number().optional(),
+        residualValue: z.number().optional(),
+      }),
+    )
+    .optional(),
   uncertainty: z
     .strictObject({
       seed: z.int().min(0),
@@ -54,7 +67,18 @@ export interface Case extends InvestmentTerms {
   readonly proposed: RuleId;
   readonly rates: 'real' | 'nominal' | null;
   readonly targetPaybackYears: number | null;
+  readonly options: readonly CaseOption[];
   readonly uncertainty: NonNullable<CaseFile['uncertainty']> | null;
+}
+
+/** One change among those looked at side by side: a rule, what it asks for and what it brings beside energy. */
+export interface CaseOption {
+  readonly name: string;
+  readonly rule: RuleId;
+  readonly capital: number;
+  readonly incentive: number;
+  readonly maintenanceSavingPerYear: number;
+  readonly residualValue: number;
 }
 
 /**
@@ -86,6 +110,14 @@ export function readCase(value: unknown, fileName: string): Case {
     discountRate: file.discountRate,
     energyEscalation: file.energyEscalation ?? 0,
     targetPaybackYears: file.targetPaybackYears ?? null,
+    options: (file.options ?? []).map((option) => ({
+      name: option.name,
+      rule: option.rule as RuleId,
+      capital: option.capital ?? 0,
+      incentive: option.incentive ?? 0,
+      maintenanceSavingPerYear: option.maintenanceSavingPerYear ?? 0,
+      residualValue: option.residualValue ?? 0,
+    })),
     uncertainty: file.uncertainty ?? null,
   };
 }
