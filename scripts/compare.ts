@@ -3,6 +3,7 @@ import { jsonDigest, sha256 } from '../server/digest.ts';
 import { refuse } from '../server/errors.ts';
 import { compareRules, resultOf } from '../server/staging/compare.ts';
 import { demandRecord } from '../server/staging/demandRecord.ts';
+import { flowOfLog } from '../server/staging/flowOfLog.ts';
 import type { ComparisonResult, RuleId } from '../server/staging/result.ts';
 import { list, optional, recordFrom, required, runCommand, stationFrom, tariffFrom } from './support/command.ts';
 import { IntervalsFile } from './support/intervalsFile.ts';
@@ -36,7 +37,7 @@ runCommand(
 
     const intervalsPath = optional(given, 'intervals');
     const intervals = intervalsPath === null ? null : open(intervalsPath);
-    const record = intervals && demandRecord(station, log);
+    const record = intervals && demandRecord(station, flowOfLog(station, log).log);
     const without = list(given, 'without');
     const duty = station.duty.filter((pump) => !without?.includes(pump.name));
     const comparison = compareRules({

@@ -44,6 +44,43 @@ export const seriesQuery = z.strictObject({
   toMs: z.coerce.number().int().default(Number.MAX_SAFE_INTEGER),
 });
 
+/** Query of the operator's card: static head in the station's unit of head, band in percent, pumps out as `P2,P3`. */
+export const cardQuery = z.strictObject({
+  staticHead: z.coerce.number().optional(),
+  bandPercent: z.coerce.number().optional(),
+  without: z.string().optional(),
+});
+
+/** Body of `POST /api/stations/:id/spot-readings`: gauge readings, in the station's units (power in kW). */
+export const spotRequest = z.strictObject({
+  readings: z
+    .array(
+      z.strictObject({
+        flow: z.number().min(0).nullable().optional(),
+        head: z.number().min(0).nullable().optional(),
+        powerKw: z.number().min(0).nullable().optional(),
+        pumpsOn: z.int().min(1).max(20),
+      }),
+    )
+    .min(1)
+    .max(500),
+  without: z.array(z.string()).optional(),
+});
+
+/** Body of `POST /api/cases`: a case file, on a stored comparison or on stored files. */
+export const caseRequest = z.union([
+  z.strictObject({ comparisonId: id, case: z.unknown() }),
+  z.strictObject({
+    stationId: id,
+    recordId: id,
+    tariffId: id,
+    without: z.array(z.string()).optional(),
+    case: z.unknown(),
+  }),
+]);
+
+export type CaseRequest = z.infer<typeof caseRequest>;
+
 export interface StationEntry {
   readonly id: number;
   readonly name: string;

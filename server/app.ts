@@ -3,6 +3,7 @@ import { resource } from './body.ts';
 import type { Context } from './context.ts';
 import { loopbackNamesOnly, requireToken, safeHeaders, sameOriginWrites } from './guards.ts';
 import { problemHandler, sendProblem } from './problem.ts';
+import { answerRoutes } from './routes/answers.ts';
 import { comparisonRoutes } from './routes/comparisons.ts';
 import { recordRoutes } from './routes/records.ts';
 import { stationRoutes } from './routes/stations.ts';
@@ -42,6 +43,7 @@ export function createApp(options: AppOptions): Express {
   recordRoutes(api, options);
   tariffRoutes(api, options);
   comparisonRoutes(api, options);
+  answerRoutes(api, options);
   api.use((request, response) => sendProblem(response, 404, `There is nothing at ${request.originalUrl}.`));
   app.use('/api', api);
 

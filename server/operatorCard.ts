@@ -2,6 +2,7 @@ import { type Note, refuse } from './errors.ts';
 import type { Pump } from './hydraulics/pump.ts';
 import { type CardStep, headerPressure, operatorCard, type StepReason } from './staging/card.ts';
 import { dutyWithout } from './staging/compare.ts';
+import type { ComparisonResult } from './staging/result.ts';
 import type { Station } from './station/station.ts';
 import { type FileUnits, FLOW_UNITS, HEAD_UNITS } from './units.ts';
 
@@ -140,5 +141,26 @@ export function cardOf(
     moves: card.moves && { low: moved(card.moves.low), high: moved(card.moves.high) },
     notes: [...station.notes, ...card.notes],
     cautions: CARD_CAUTIONS,
+  };
+}
+
+/** What adding pumps only when the running ones are flat out costs over a record, against the best count. */
+export interface LateStagingCost {
+  readonly energyKwh: number;
+  /** null without a tariff. */
+  readonly cost: number | null;
+  readonly hours: number;
+}
+
+/** null where the comparison did not run both rules. */
+export function lateStagingCost(result: ComparisonResult): LateStagingCost | null {
+  const late = result.rules.find((rule) => rule.rule === 'late-staging');
+  const best = result.rules.find((rule) => rule.rule === 'best-count');
+  if (!late || !best) return null;
+  const priced = late.totalCost !== undefined && best.totalCost !== undefined;
+  return {
+    energyKwh: late.energyKwh - best.energyKwh,
+    cost: priced ? late.totalCost! - best.totalCost! : null,
+    hours: result.record.hours,
   };
 }

@@ -11,6 +11,7 @@ import { type DemandRecord, demandRecord } from './demandRecord.ts';
 import { EqualPumps } from './equalPumps.ts';
 import { firmCapacity } from './firmCapacity.ts';
 import { floorPower } from './floorOverRecord.ts';
+import { flowOfLog } from './flowOfLog.ts';
 import { type ComparisonResult, RULE_IDS, type RuleId, type RuleResult } from './result.ts';
 import type { Rule } from './rule.ts';
 import { RULES } from './rules/all.ts';
@@ -78,7 +79,8 @@ export function compareRules(request: ComparisonRequest): Comparison {
       },
     ]);
   }
-  const record = demandRecord(station, log);
+  const flowLog = flowOfLog(station, log);
+  const record = demandRecord(station, flowLog.log);
   const plan = tariff ? planBill(tariff, record.startMs, record.seconds) : null;
   const { rules, notes } = rulesToRun(station, duty, request.rules);
   const pumps = new EqualPumps(station, duty);
@@ -101,7 +103,14 @@ export function compareRules(request: ComparisonRequest): Comparison {
     bills,
     floor: floorFigures(station, duty, record, runs),
     firmCapacity: firmCapacity(station, duty),
-    notes: [...station.notes, ...record.notes, ...notes, ...recordNotes(record), ...runNotes(runs, bills)],
+    notes: [
+      ...station.notes,
+      ...flowLog.notes,
+      ...record.notes,
+      ...notes,
+      ...recordNotes(record),
+      ...runNotes(runs, bills),
+    ],
   };
 }
 
