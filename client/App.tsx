@@ -41,6 +41,7 @@ export function App() {
   const [loaded, setLoaded] = useState<Loaded | null>(null);
   const [choice, setChoice] = useState<Choice>({});
   const [draft, setDraft] = useState<StationBody | null>(null);
+  const [without, setWithout] = useState<readonly string[]>([]);
   const [question, setQuestion] = useState<QuestionId>(questionInAddress());
   const [faults, setFaults] = useState<readonly string[]>([]);
   const [keepFaults, setKeepFaults] = useState<readonly string[]>([]);
@@ -86,11 +87,14 @@ export function App() {
   const tariff = useTariff(tariffId);
   const changes = useMemo(() => (saved && draft ? differences(saved, draft) : []), [saved, draft]);
 
+  const isWhatIf = changes.length > 0 || without.length > 0;
+
   const request = useMemo<ComparisonRequest | null>(() => {
     if (saved === null || record === null || record.stationId !== saved.id) return null;
     const whatIf = draft && changes.length > 0 ? { station: stationFileOf(draft) } : {};
-    return { stationId: saved.id, recordId: record.id, tariffId, ...whatIf };
-  }, [saved, record?.id, tariffId, draft, changes]);
+    const out = without.length > 0 ? { without } : {};
+    return { stationId: saved.id, recordId: record.id, tariffId, ...whatIf, ...out };
+  }, [saved, record?.id, tariffId, draft, changes, without]);
   const compared = useComparison(request);
 
   const format = useMemo(() => (saved ? formatFor(saved, units) : null), [saved, units]);
@@ -104,14 +108,18 @@ export function App() {
   const answers = useMemo(() => (open && format ? answersOf(open, format) : null), [open, format]);
   const others = useVerdicts(entries ?? [], { openId, ready: answers !== null, choice: units });
   const verdicts = useMemo(
-    () => (answers && openId !== null ? new Map([...others, [openId, answers.change]]) : others),
-    [others, answers, openId],
+    () =>
+      answers && openId !== null
+        ? new Map([...others, [openId, `${isWhatIf ? 'What if: ' : ''}${answers.change}`]])
+        : others,
+    [others, answers, openId, isWhatIf],
   );
 
   const openStation = (id: number) => {
     setOpenId(id);
     setChoice({});
     setDraft(null);
+    setWithout([]);
     setKeepFaults([]);
     history.replaceState(null, '', `?station=${id}${location.hash}`);
   };
@@ -148,7 +156,9 @@ export function App() {
 
   const shown = printing ? QUESTIONS : QUESTIONS.filter(({ id }) => id === question);
   const questionProps: QuestionProps | null =
-    open && saved && record ? { open, record, saved, draft: draft ?? saved, touch } : null;
+    open && saved && record
+      ? { open, record, saved, draft: draft ?? saved, touch, without, onWithout: setWithout }
+      : null;
   return (
     <>
       <a class="skip" href="#answer">
@@ -183,7 +193,20 @@ export function App() {
               onChoose={(id) => setChoice((before) => ({ ...before, tariffId: id }))}
             />
           </p>
-          <Draft changes={changes} onKeep={keep} onDrop={() => setDraft(null)} faults={keepFaults} />
+          {format && (
+            <Draft
+              saved={saved}
+              format={format}
+              changes={changes}
+              onKeep={keep}
+              without={without}
+              onDrop={() => {
+                setDraft(null);
+                setWithout([]);
+              }}
+              faults={keepFaults}
+            />
+          )}
           {compared.faults.length > 0 && (
             <ul class="faults" role="alert">
               {compared.faults.map((line) => (

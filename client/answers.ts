@@ -129,18 +129,23 @@ export function asRun(rule: RuleId): string {
 export function costAnswer(open: Subject, format: Format): string {
   const weighed = weigh(open);
   if (weighed === null) return 'No rule could be run: see the notes';
-  const { today, least, weighing, rules } = weighed;
+  const { today, weighing } = weighed;
   const amount = `${perYearText(weighing, today.perYear, format)} ${asRun(today.rule.rule)}`;
   const scaled = isScaled(open.comparison.record.hours) ? ' (scaled to a year)' : '';
-  const { aboveFloorPercent } = today.rule;
   const tariff = weighing === 'energy' ? ', no tariff given' : '';
+  const { shortfallM3 } = today.rule;
+  const unmet = shortfallM3 > 0 ? `. ${format.say(format.volume, shortfallM3)} of the flow is not met` : '';
+  return `${amount}${scaled}${tariff}; ${besideLeast(weighed, format)}${unmet}`;
+}
+
+function besideLeast({ today, least, weighing, rules }: Weighed, format: Format): string {
+  const { aboveFloorPercent } = today.rule;
   if (aboveFloorPercent !== undefined) {
-    return `${amount}${scaled}${tariff}; ${format.say(format.percent, aboveFloorPercent)} above the least possible energy`;
+    return `${format.say(format.percent, aboveFloorPercent)} above the least possible energy`;
   }
-  if (least === today) return `${amount}${scaled}${tariff}; the least of ${rules.length} rules`;
-  const less = (100 * (today.perYear - least.perYear)) / today.perYear;
-  const verb = weighing === 'money' ? 'costs' : 'takes';
-  return `${amount}${scaled}${tariff}; ${ruleName(least.rule.rule)} ${verb} ${format.say(format.percent, less)} less`;
+  if (least === today) return `the least of ${rules.length} rules`;
+  const less = format.say(format.percent, (100 * (today.perYear - least.perYear)) / today.perYear);
+  return `${ruleName(least.rule.rule)} ${weighing === 'money' ? 'costs' : 'takes'} ${less} less`;
 }
 
 // Is a change worth it?
@@ -189,16 +194,17 @@ export function changeText(change: Change, weighing: Weighing, { fitted, duty }:
   const { kind, from, to, gainPerYear, gainPercent } = change;
   const amount = perYearText(weighing, Math.abs(gainPerYear), format);
   const telling = Math.abs(gainPercent) >= TELLING_PERCENT;
+  const little = gainPerYear === 0 ? '' : ` (${amount})`;
   const against = `against ${ruleName(from.rule)}`;
   if (kind === 'restage') {
-    if (!telling) return `Restaging to ${ruleName(to.rule)} changes next to nothing (${amount})`;
+    if (!telling) return `Restaging to ${ruleName(to.rule)} changes next to nothing${little}`;
     return `Restaging to ${ruleName(to.rule)} saves ${amount} for nothing`;
   }
   const who = kind === 'one-drive' ? 'One drive' : duty === 1 ? 'A drive' : 'Drives';
   const there = kind === 'drives' && fitted >= duty;
   const several = who === 'Drives';
   if (!telling)
-    return `${who} ${there ? verb('make', several) : 'would make'} next to no difference ${against} (${amount})`;
+    return `${who} ${there ? verb('make', several) : 'would make'} next to no difference ${against}${little}`;
   const word = gainPerYear > 0 ? 'save' : 'lose';
   const said = `${who} ${there ? verb(word, several) : `would ${word}`} ${amount} ${against}`;
   return gainPerYear > 0 && !there
@@ -226,7 +232,23 @@ export function changeAnswer(open: Subject, format: Format): string {
       ? 'Unknown: the station file proposes no drives and has no steps to restage'
       : 'Unknown: only one rule could be run';
   }
-  return told.map((change) => changeText(change, found.weighing, drives, format)).join('. ');
+  const unlike = unlikeText(told, format);
+  const texts = told.map((change) => changeText(change, found.weighing, drives, format));
+  return [...texts, ...(unlike === null ? [] : [unlike])].join('. ');
+}
+
+/** Volumes that differ by less than this share are taken for the same. */
+const ALIKE = 1e-3;
+
+/** Warns where rules that are set against each other do not deliver the same; null where they do. */
+export function unlikeText(changes: readonly Pick<Change, 'from' | 'to'>[], format: Format): string | null {
+  const differs = ({ from, to }: Pick<Change, 'from' | 'to'>) =>
+    Math.abs(from.deliveredM3 - to.deliveredM3) > ALIKE * Math.max(from.deliveredM3, to.deliveredM3);
+  const change = changes.find(differs);
+  if (change === undefined) return null;
+  const unmet = ({ rule, shortfallM3 }: RuleResult) =>
+    `${ruleName(rule)} leaves ${shortfallM3 > 0 ? format.say(format.volume, shortfallM3) : 'nothing'} unmet`;
+  return `Not like for like: ${unmet(change.from)}, ${unmet(change.to)}`;
 }
 
 /** What decides it, from the ledger: how much is lift that no drive can save. */

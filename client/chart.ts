@@ -167,8 +167,22 @@ export function drawBars(canvas: HTMLCanvasElement, bars: Bars, look: Look): Dra
     data: {
       labels: bars.bars.map((bar) => bar.label),
       datasets: [
-        { label: 'least', data: bars.bars.map((bar) => bar.base), backgroundColor: look.plain, maxBarThickness: 18 },
-        { label: 'above', data: bars.bars.map((bar) => bar.above), backgroundColor: look.warm, maxBarThickness: 18 },
+        {
+          label: 'least',
+          data: bars.bars.map((bar) => bar.base),
+          backgroundColor: look.plain,
+          maxBarThickness: 18,
+          categoryPercentage: 0.8,
+          barPercentage: 0.9,
+        },
+        {
+          label: 'above',
+          data: bars.bars.map((bar) => bar.above),
+          backgroundColor: look.warm,
+          maxBarThickness: 18,
+          categoryPercentage: 0.8,
+          barPercentage: 0.9,
+        },
       ],
     },
     options: {
@@ -264,6 +278,9 @@ export function drawRecord(
           stack: 'both',
           stackWeight: 2,
           position: 'left',
+          afterBuildTicks: (axis: { ticks: { value: number }[] }) => {
+            axis.ticks = Array.from({ length: mostCount + 1 }, (_, value) => ({ value }));
+          },
           ticks: { color: look.ink, stepSize: 1, precision: 0, font: { family: look.font, size: 12 } },
         },
         flow: {

@@ -30,6 +30,9 @@ export interface QuestionProps {
   /** As stored, and as the reader has changed it. */
   readonly saved: StationBody;
   readonly touch: (path: Path, value: number) => void;
+  /** Pumps taken out, to see how the others manage. */
+  readonly without: readonly string[];
+  readonly onWithout: (names: readonly string[]) => void;
   /** The draft the reader is looking at: `open.station` is the one that is computed. */
   readonly draft: StationBody;
 }

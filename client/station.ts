@@ -26,6 +26,15 @@ export function equipmentOf(station: StationFile): Equipment {
   return sum;
 }
 
+/** Names of the duty pumps; one that stands for several has them numbered, as everywhere. */
+export function dutyNames(station: StationFile): string[] {
+  return station.pumps
+    .filter((entry) => entry.role !== 'standby')
+    .flatMap(({ name, count = 1 }) =>
+      count === 1 ? [name] : Array.from({ length: count }, (_, i) => `${name}-${i + 1}`),
+    );
+}
+
 function drivesOf(entry: PumpEntry) {
   const parts = 'train' in entry ? entry.train : [entry];
   return parts.flatMap((part) => (part.drive ? [part.drive] : []));

@@ -105,6 +105,12 @@ export function AddFiles({ open, onImported, first }: AddFilesProps) {
           <span class="aside"> or drop them on the page: station, record, tariff</span>
         )}
       </p>
+      {first && (
+        <p class="aside">
+          The station file has the pumps, motors and the system they pump into; the record has times and flows; the
+          tariff may be left out, and the answers are then in kWh. The README shows each of them.
+        </p>
+      )}
       <div role="status">
         {doing && (
           <p>

@@ -16,8 +16,8 @@ interface PictureProps {
 
 /** Width of a printed picture, and what a height comes to on paper [CSS px]. */
 const PAPER_WIDTH = 660;
-const PAPER_HEIGHT = { tall: 190, low: 92 };
-const ROW_HEIGHT = { screen: 34, paper: 22 };
+const PAPER_HEIGHT = { tall: 165, low: 84 };
+const ROW_HEIGHT = { screen: 34, paper: 18 };
 const FRAME_HEIGHT = 52;
 
 /** A picture under its sentence, with its numbers one press away. */

@@ -81,6 +81,13 @@ describe('what it costs', () => {
     );
   });
 
+  it('never hides what is not met', () => {
+    const rules = [aBilledRule('fixed-speed', 1000, { shortfallM3: 1234 })];
+    expect(plain(costAnswer(anOpened({ rules }), format))).toMatch(
+      /; the least of 1 rules. 1,230 m³ of the flow is not met$/,
+    );
+  });
+
   it('speaks of energy without a tariff, and says that it scaled', () => {
     const rules = [aRule('fixed-speed', { energyKwh: 100 }), aRule('best-count', { energyKwh: 120 })];
     expect(plain(costAnswer(anOpened({ rules, hours: 876, tariff: null }), format))).toBe(
@@ -116,6 +123,17 @@ describe('whether a change is worth it', () => {
     expect(plain(changeAnswer(anOpened({ rules }), format))).toBe(
       'Restaging to fixed speed saves €300 a year for nothing. ' +
         'Drives would save €100 a year against fixed speed, before what they cost',
+    );
+  });
+
+  it('warns where two rules do not deliver the same', () => {
+    const rules = [
+      aBilledRule('fixed-speed', 1000, { shortfallM3: 500, deliveredM3: 9500 }),
+      aBilledRule('best-count', 1100),
+    ];
+    expect(plain(changeAnswer(anOpened({ rules }), format))).toBe(
+      'Drives would lose €100 a year against fixed speed. ' +
+        'Not like for like: fixed speed leaves 500 m³ unmet, best count leaves nothing unmet',
     );
   });
 

@@ -1,23 +1,12 @@
-import { FLOW_UNITS, HEAD_UNITS, POWER_UNITS, volumeUnit } from '../../../server/units.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
-import type { Format, Measure } from '../../format.ts';
 import { Touch } from '../../parts/Touch.tsx';
-import { numberAt, type Path } from '../../station.ts';
-
-interface Touchable {
-  readonly label: string;
-  readonly path: Path;
-  readonly measure: Measure;
-  readonly fileFactor: number;
-  readonly step: number;
-}
+import { numberAt } from '../../station.ts';
+import { touchables } from '../../touchables.ts';
 
 /** Numbers of the station file that can be tried out, where the file has them. */
 export function StationNumbers({ saved, draft, touch }: Pick<QuestionProps, 'saved' | 'draft' | 'touch'>) {
   const { format } = usePage();
-  const numbers = touchables(saved.units, saved.pumps.length, format).filter(
-    ({ path }) => numberAt(saved, path) !== null,
-  );
+  const numbers = touchables(saved, format).filter(({ path }) => numberAt(saved, path) !== null);
   return (
     <>
       <h3 class="no-print">The station's own numbers</h3>
@@ -34,66 +23,4 @@ export function StationNumbers({ saved, draft, touch }: Pick<QuestionProps, 'sav
       </div>
     </>
   );
-}
-
-function touchables(units: QuestionProps['saved']['units'], pumps: number, format: Format): Touchable[] {
-  const head = HEAD_UNITS[units.head];
-  const all: Touchable[] = [
-    { label: 'Static head', path: ['system', 'staticHead'], measure: format.head, fileFactor: head, step: 1 },
-    {
-      label: 'Friction coefficient',
-      path: ['system', 'friction', 'coefficient'],
-      measure: { unit: `${units.head} at 1 ${units.flow}`, factor: 1 },
-      fileFactor: 1,
-      step: 1e-5,
-    },
-    {
-      label: 'Standby power',
-      path: ['standbyPower'],
-      measure: format.power,
-      fileFactor: POWER_UNITS[units.power] / 1000,
-      step: 0.1,
-    },
-    {
-      label: 'Active volume',
-      path: ['storage', 'activeVolume'],
-      measure: format.volume,
-      fileFactor: volumeUnit(units.flow),
-      step: 1,
-    },
-  ];
-  for (let i = 0; i < pumps; i++) {
-    const of = pumps === 1 ? '' : `, entry ${i + 1}`;
-    all.push(
-      {
-        label: `Flow at best efficiency${of}`,
-        path: ['pumps', i, 'curve', 'bestFlow'],
-        measure: format.flow,
-        fileFactor: FLOW_UNITS[units.flow],
-        step: 1,
-      },
-      {
-        label: `Best efficiency${of}`,
-        path: ['pumps', i, 'curve', 'bestEfficiency'],
-        measure: format.percent,
-        fileFactor: 100,
-        step: 1,
-      },
-      {
-        label: `Least speed of a drive${of}`,
-        path: ['pumps', i, 'drive', 'minSpeed'],
-        measure: { unit: '% of rated', factor: 1 },
-        fileFactor: 100,
-        step: 5,
-      },
-      {
-        label: `Efficiency of a drive${of}`,
-        path: ['pumps', i, 'drive', 'efficiency'],
-        measure: format.percent,
-        fileFactor: 100,
-        step: 0.5,
-      },
-    );
-  }
-  return all;
 }

@@ -1,5 +1,5 @@
 import { HEAD_UNITS } from '../../../server/units.ts';
-import { type Change as ChangeFound, changesOf, changeText, liftText, weigh } from '../../answers.ts';
+import { type Change as ChangeFound, changesOf, changeText, liftText, unlikeText, weigh } from '../../answers.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
 import { Cautions } from '../../parts/Cautions.tsx';
 import { Figure } from '../../parts/Figure.tsx';
@@ -24,6 +24,7 @@ export function Change({ open, saved, draft, touch }: QuestionProps) {
   const perYear = (rule: ChangeFound['from']) => weighed.rules.find((each) => each.rule === rule)!.perYear;
   const deciding = changes.find((change) => change.kind === 'drives') ?? changes[0]!;
   const { hours } = open.comparison.record;
+  const unlike = unlikeText(changes, format);
   return (
     <>
       <ul class="verdicts">
@@ -33,6 +34,7 @@ export function Change({ open, saved, draft, touch }: QuestionProps) {
           </li>
         ))}
       </ul>
+      {unlike && <p>{unlike}.</p>}
       <p>{liftText(deciding.from, format)}</p>
       <div class="touches no-print">
         <Touch

@@ -15,7 +15,7 @@ import { RuleDetails } from './RuleDetails.tsx';
 
 /** What it costs: the rules side by side, and what each takes above the least. */
 export function Cost({ open }: QuestionProps) {
-  const { format } = usePage();
+  const { format, printing } = usePage();
   const weighed = useMemo(() => weigh(open), [open]);
   const { rules, record, inputs } = open.comparison;
   const bars = useMemo(() => (weighed ? barsOf(weighed, format) : null), [weighed, format]);
@@ -47,7 +47,8 @@ export function Cost({ open }: QuestionProps) {
       >
         {table}
       </Picture>
-      <HoursTable rules={rules} />
+      {/* Paper has room for two sides; the shares of the best count are under its picture. */}
+      {!printing && <HoursTable rules={rules} />}
       <LedgerTable rules={rules} />
       <Cautions ids={['starts', 'suction']} />
     </>

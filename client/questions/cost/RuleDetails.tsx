@@ -20,7 +20,7 @@ export function RuleDetails({ rule, columns }: RuleDetailsProps) {
           <div key={column.head}>
             <dt>{column.head}</dt>
             <dd>
-              {column.cell(rule)} {column.unit}
+              {column.cell(rule)} {column.unit === format.money.unit ? '' : column.unit}
             </dd>
           </div>
         ))}

@@ -11,10 +11,11 @@ import { Picture } from '../../parts/Picture.tsx';
 import { Table } from '../../parts/Table.tsx';
 import { Touch } from '../../parts/Touch.tsx';
 import { curvesOf, hoursByFlow, leastCounts } from '../../series.ts';
+import { dutyNames } from '../../station.ts';
 import { hoursSentence } from './hoursSentence.ts';
 
 /** Which pump, when: power over flow for each count, and under it the hours that the record spends at each flow. */
-export function Which({ open, saved, draft, touch }: QuestionProps) {
+export function Which({ open, saved, draft, touch, without, onWithout }: QuestionProps) {
   const { format } = usePage();
   const { power, comparison } = open;
   const curves = useMemo(() => curvesOf(power, format), [power, format]);
@@ -31,7 +32,8 @@ export function Which({ open, saved, draft, touch }: QuestionProps) {
           saved={saved.system.staticHead}
           onChange={(value) => touch(['system', 'staticHead'], value)}
         />
-        <p class="aside">{varies ? varies.text : 'Change it: curves, crossings, table and bill follow.'}</p>
+        <TakenOut names={dutyNames(saved)} without={without} onWithout={onWithout} />
+        <p class="aside">{varies ? varies.text : 'Curves, crossings, table and bill follow.'}</p>
       </div>
       <Picture
         title={stepsText(power, format)}
@@ -48,6 +50,35 @@ export function Which({ open, saved, draft, touch }: QuestionProps) {
       <p class="aside">{howDrawn(power, draft.surplus)}</p>
       <Cautions ids={['minimumFlow', 'minimumSpeed', 'surge', 'solids']} />
     </>
+  );
+}
+
+interface TakenOutProps extends Pick<QuestionProps, 'without' | 'onWithout'> {
+  readonly names: readonly string[];
+}
+
+/** Pumps that can be taken out, one after the other; the last one stays. */
+function TakenOut({ names, without, onWithout }: TakenOutProps) {
+  if (names.length < 2) return null;
+  const left = names.length - without.length;
+  return (
+    <fieldset class="out">
+      <legend class="label">Taken out</legend>
+      {names.map((name) => {
+        const out = without.includes(name);
+        return (
+          <label key={name}>
+            <input
+              type="checkbox"
+              checked={out}
+              disabled={!out && left === 1}
+              onChange={() => onWithout(out ? without.filter((each) => each !== name) : [...without, name])}
+            />{' '}
+            {name}
+          </label>
+        );
+      })}
+    </fieldset>
   );
 }
 
