@@ -5,7 +5,7 @@ import { lifeCycleCost } from './economics/lifeCycle.ts';
 import { escalatedPresentValue, uniformPresentValue } from './economics/presentValue.ts';
 import { type Note, refuse } from './errors.ts';
 import type { Log } from './ingest/log.ts';
-import { type Comparison, compareRules } from './staging/compare.ts';
+import { type Comparison, compareRules, drivesNeeded } from './staging/compare.ts';
 import type { LedgerKwh, RuleId } from './staging/result.ts';
 import { RULES } from './staging/rules/all.ts';
 import type { Station } from './station/station.ts';
@@ -156,7 +156,7 @@ function optionResult(comparison: Comparison, terms: Case, option: CaseOption, b
   return {
     name: option.name,
     rule: option.rule,
-    needsDrives: run.rule.drives === 'all' ? comparison.duty.length : run.rule.drives === 'one' ? 1 : 0,
+    needsDrives: drivesNeeded(run.rule, comparison.duty),
     capital: option.capital,
     incentive: option.incentive,
     maintenanceSavingPerYear: option.maintenanceSavingPerYear,

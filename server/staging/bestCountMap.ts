@@ -1,8 +1,8 @@
 import type { Comparison } from './compare.ts';
 import { capacityOf } from './crossings.ts';
-import { EqualPumps } from './equalPumps.ts';
 import { fixedSpeed } from './rules/fixedSpeed.ts';
 import { bestCount } from './rules/trimmedCounts.ts';
+import { stagedPumps } from './stagedPumps.ts';
 
 /** Which count of pumps is best over flow and static head, and the hours the record spends in each cell. */
 export interface BestCountMap {
@@ -21,12 +21,12 @@ const ROWS = 24;
 /** Where the record's static head does not vary, the map spans ±25 % of it, so that one sees where the steps would move. */
 export function bestCountMap(comparison: Comparison): BestCountMap {
   const { station, duty, record } = comparison;
-  const pumps = new EqualPumps(station, duty);
+  const pumps = stagedPumps(station, duty);
   const { low, high } = headSpan(comparison);
   const top = record.flow.reduce((most, flow) => Math.max(most, flow), capacityOf(pumps, pumps.most)) * 1.001;
   const flowM3s = Array.from({ length: COLUMNS }, (_, i) => (top * (i + 0.5)) / COLUMNS);
   const staticHeadM = Array.from({ length: ROWS }, (_, i) => low + ((high - low) * (i + 0.5)) / ROWS);
-  const decide = (pumps.pump.hasDrive ? bestCount : fixedSpeed).start(pumps);
+  const decide = (pumps.onDrives ? bestCount : fixedSpeed).start(pumps);
   const count = staticHeadM.map((head) => {
     pumps.at(head);
     return flowM3s.map((flow) => {

@@ -5,8 +5,8 @@ import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { Station } from '../station/station.ts';
 import { GRAVITY } from '../units.ts';
 import { type Crossing, capacityOf, crossingsBetween, powerOfCount } from './crossings.ts';
-import { EqualPumps } from './equalPumps.ts';
-import { NEAR_DEAD_HEAD } from './state.ts';
+import { type StagedPumps, stagedPumps } from './stagedPumps.ts';
+import { NEAR_DEAD_HEAD, type State } from './state.ts';
 
 /** Staying on n may cost this share more than n + 1 before the next pump is brought on, and the other way round. */
 export const DEFAULT_BAND = 0.01;
@@ -80,9 +80,8 @@ export function operatorCard(
     range = levelRange(station),
   }: { staticHead?: number; band?: number; range?: { readonly low: number; readonly high: number } | null } = {},
 ): OperatorCard {
-  const pumps = new EqualPumps(station, duty);
+  const pumps = stagedPumps(station, duty);
   pumps.at(staticHead);
-  const { pump } = pumps;
   const steps: CardStep[] = [];
   for (let n = 1; n < pumps.most; n++) {
     const step = cardStep(pumps, n, band);
@@ -90,7 +89,7 @@ export function operatorCard(
   }
   const capacities = Array.from({ length: pumps.most }, (_, i) => capacityOf(pumps, i + 1));
   const flowsAt = (head: number) => {
-    const moved = new EqualPumps(station, duty);
+    const moved = stagedPumps(station, duty);
     moved.at(head);
     return {
       staticHead: head,
@@ -103,10 +102,14 @@ export function operatorCard(
   return {
     staticHead,
     band,
-    basis: !pump.hasDrive ? 'direct-on-line' : pump.driveFitted ? 'drives' : 'proposed-drives',
+    basis: !pumps.onDrives
+      ? 'direct-on-line'
+      : duty.some((pump) => pump.hasDrive && !pump.driveFitted)
+        ? 'proposed-drives'
+        : 'drives',
     steps,
     capacities,
-    ratedSpeedRpm: pump.ratedSpeed,
+    ratedSpeedRpm: duty[0]!.ratedSpeed,
     levels: station.storage.levels,
     moves: range && range.high > range.low ? { low: flowsAt(range.low), high: flowsAt(range.high) } : null,
     notes: cardNotes(capacities, staticHead),
@@ -138,7 +141,7 @@ function mainCrossing(crossings: readonly Crossing[]): Crossing | null {
   return crossings.filter((crossing) => crossing.rising).at(-1) ?? null;
 }
 
-function cardStep(pumps: EqualPumps, from: number, band: number): CardStep | null {
+function cardStep(pumps: StagedPumps, from: number, band: number): CardStep | null {
   const to = from + 1;
   const capacity = capacityOf(pumps, from);
   if (capacity <= 0) return null;
@@ -153,7 +156,7 @@ function cardStep(pumps: EqualPumps, from: number, band: number): CardStep | nul
   let flow: number;
   let bringOn: number;
   let dropOff: number;
-  if (!pumps.pump.hasDrive) {
+  if (!pumps.onDrives) {
     reason = 'no-drives';
     flow = capacity;
     bringOn = capacity;
@@ -223,38 +226,41 @@ function reasonText(reason: StepReason, n: number): string {
   }
 }
 
-function speedOf(pumps: EqualPumps, count: number, flow: number): number {
-  if (!pumps.pump.hasDrive) return 1;
+function speedOf(pumps: StagedPumps, count: number, flow: number): number {
+  if (!pumps.onDrives) return 1;
   const trim = pumps.trim(count, flow);
-  return trim.feasible ? trim.speed : pumps.pump.maxSpeed;
+  return trim.feasible ? trim.speed : pumps.flatOut(count).speed;
 }
 
-/** Share of best-efficiency flow that n pumps run at when they give Q. */
-function shareOfBest(pumps: EqualPumps, count: number, flow: number, which: 'least' | 'greatest'): number {
-  const { pump } = pumps;
-  const speed = speedOf(pumps, count, flow);
-  const q = flow / count;
-  return which === 'least' ? pump.leastShareOfBest(q, speed, true) : pump.greatestShareOfBest(q, speed, true);
+/** What n pumps are in when they give Q: their own state, or the one that shares the time with rest. */
+function stateOf(pumps: StagedPumps, count: number, flow: number): State {
+  const trim = pumps.trim(count, flow);
+  return trim.feasible ? pumps.action(trim, flow).high : pumps.flatOut(count);
 }
 
-/** Least flow at which n pumps are inside the allowable range, or at 0.3 of best where none is given. */
-function leastFlow(pumps: EqualPumps, count: number): number {
-  const limit = pumps.station.allowable?.from ?? NEAR_DEAD_HEAD;
+/** Least flow at which n pumps hold without rest inside the allowable range, or at 0.3 of best where none is given. */
+function leastFlow(pumps: StagedPumps, count: number): number {
+  if (!pumps.onDrives) return 0;
+  const { allowable } = pumps.station;
+  const limit = allowable?.from ?? NEAR_DEAD_HEAD;
   const capacity = capacityOf(pumps, count);
-  const lacks = (flow: number) => shareOfBest(pumps, count, flow, 'least') - limit;
   const low = capacity * 1e-6;
+  const rest = pumps.trim(count, low).rest;
+  if (allowable && rest) return Math.min(rest.flow, capacity);
+  const lacks = (flow: number) => stateOf(pumps, count, flow).leastShareOfBest - limit;
   if (lacks(low) >= 0) return 0;
   if (lacks(capacity) < 0) return capacity;
-  return root(lacks, low, capacity);
+  return root(lacks, low, capacity, 1e-12);
 }
 
 /** Largest flow at which n pumps are inside the allowable range and overload no motor. */
-function mostFlow(pumps: EqualPumps, count: number): number {
+function mostFlow(pumps: StagedPumps, count: number): number {
+  if (!pumps.onDrives) return Infinity;
   const to = pumps.station.allowable?.to ?? Infinity;
   const capacity = capacityOf(pumps, count) * (1 - 1e-9);
   const fits = (flow: number) => {
-    if (shareOfBest(pumps, count, flow, 'greatest') > to) return false;
-    return !pumps.pump.hasDrive || !pumps.trim(count, flow).overloaded;
+    const state = stateOf(pumps, count, flow);
+    return state.greatestShareOfBest <= to && !state.doubts.overloaded;
   };
   return fits(capacity) ? Infinity : lastWithin(capacity * 1e-3, capacity, fits);
 }

@@ -1,14 +1,13 @@
 import { InputError, type Note } from '../errors.ts';
 import type { Pump } from '../hydraulics/pump.ts';
 import type { Log } from '../ingest/log.ts';
-import { dutyPumpsAreEqual, type Station } from '../station/station.ts';
+import type { Station } from '../station/station.ts';
 import { billOf } from '../tariff/bill.ts';
 import { type BillPlan, planBill } from '../tariff/plan.ts';
 import type { Bill, Tariff } from '../tariff/tariff.ts';
 import { isoUtc } from '../time.ts';
 import { energyKwh } from '../units.ts';
 import { type DemandRecord, demandRecord } from './demandRecord.ts';
-import { EqualPumps } from './equalPumps.ts';
 import { firmCapacity } from './firmCapacity.ts';
 import { floorPower } from './floorOverRecord.ts';
 import { flowOfLog } from './flowOfLog.ts';
@@ -16,6 +15,7 @@ import { type ComparisonResult, RULE_IDS, type RuleId, type RuleResult } from '.
 import type { Rule } from './rule.ts';
 import { RULES } from './rules/all.ts';
 import { type OnAction, type Run, runRule } from './run.ts';
+import { stagedPumps } from './stagedPumps.ts';
 
 export interface ComparisonRequest {
   readonly station: Station;
@@ -83,7 +83,7 @@ export function compareRules(request: ComparisonRequest): Comparison {
   const record = demandRecord(station, flowLog.log);
   const plan = tariff ? planBill(tariff, record.startMs, record.seconds) : null;
   const { rules, notes } = rulesToRun(station, duty, request.rules);
-  const pumps = new EqualPumps(station, duty);
+  const pumps = stagedPumps(station, duty);
   const runs: Run[] = [];
   const bills: (Bill | null)[] = [];
   for (const rule of rules) {
@@ -169,17 +169,6 @@ export function dutyWithout(station: Station, without: readonly string[]): reado
       { code: 'no_duty_pump', file: 'without', at: '', found: 'no duty pump left', wanted: 'at least one left to run' },
     ]);
   }
-  if (!dutyPumpsAreEqual(duty)) {
-    throw new InputError([
-      {
-        code: 'unequal_pumps',
-        file: 'station',
-        at: 'pumps',
-        found: `duty pumps that differ: ${duty.map((p) => p.name).join(', ')}`,
-        wanted: 'equal duty pumps (one entry with a count)',
-      },
-    ]);
-  }
   return duty;
 }
 
@@ -212,8 +201,7 @@ export function rulesToRun(
 
 function whyNot(rule: Rule, station: Station, duty: readonly Pump[]): string | null {
   const driven = duty.filter((pump) => pump.hasDrive).length;
-  if (rule.drives === 'all' && driven < duty.length) return 'not every duty pump has a drive, fitted or proposed';
-  if (rule.drives === 'one' && driven === 0) return 'no duty pump has a drive, fitted or proposed';
+  if (rule.drives !== 'none' && driven === 0) return 'no duty pump has a drive, fitted or proposed';
   if (rule.id === 'flow-steps' && !station.flowSteps) return 'the station file has no table of steps';
   if (rule.storageOnly && station.surplus !== 'storage') return 'the station has no storage to rest on';
   return null;
@@ -302,7 +290,7 @@ function ruleResult(run: Run, bill: Bill | null, duty: readonly Pump[], floorKwh
   const { rule, totals: t } = run;
   return {
     rule: rule.id,
-    needsDrives: rule.drives === 'all' ? duty.length : rule.drives === 'one' ? 1 : 0,
+    needsDrives: drivesNeeded(rule, duty),
     energyKwh: t.energyKwh,
     kwhPerM3: t.deliveredM3 > 0 ? t.energyKwh / t.deliveredM3 : null,
     ...(floorKwh > 0 && { aboveFloorPercent: 100 * (t.energyKwh / floorKwh - 1) }),
@@ -331,6 +319,12 @@ function ruleResult(run: Run, bill: Bill | null, duty: readonly Pump[], floorKwh
     ledgerKwh: t.ledgerKwh,
     ...(bill && { months: bill.months, periods: bill.periods }),
   };
+}
+
+/** Drives a rule needs: none, one, or one on every pump that can have one. */
+export function drivesNeeded(rule: Rule, duty: readonly Pump[]): number {
+  if (rule.drives === 'none') return 0;
+  return rule.drives === 'one' ? 1 : duty.filter((pump) => pump.hasDrive).length;
 }
 
 /** Names of the pumps of a set, `P-1+P-2`; `off` for none. */

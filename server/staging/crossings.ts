@@ -1,5 +1,5 @@
 import { root } from '../hydraulics/roots.ts';
-import type { EqualPumps } from './equalPumps.ts';
+import type { StagedPumps } from './stagedPumps.ts';
 
 /** Where running one more pump begins or ceases to draw less power, at one static head. */
 export interface Crossing {
@@ -18,8 +18,8 @@ const STEPS = 400;
  * Mean power [W] of n pumps in use at a flow, standby not included; NaN where they cannot meet it. With drives: trimmed
  * to the flow, at equal speed. Without: direct on line, sharing with n − 1 (storage) or against a valve.
  */
-export function powerOfCount(pumps: EqualPumps, count: number, flow: number): number {
-  if (pumps.pump.hasDrive) {
+export function powerOfCount(pumps: StagedPumps, count: number, flow: number): number {
+  if (pumps.onDrives) {
     const trim = pumps.trim(count, flow);
     return trim.feasible ? trim.power : Number.NaN;
   }
@@ -27,20 +27,20 @@ export function powerOfCount(pumps: EqualPumps, count: number, flow: number): nu
   if (state.flow < flow) return Number.NaN;
   if (pumps.station.surplus === 'throttle') return pumps.throttled(count, flow).power;
   const below = pumps.fixed(count - 1);
-  if (flow < below.flow) return Number.NaN;
+  if (flow < below.flow || state.flow <= below.flow) return Number.NaN;
   return below.power + ((flow - below.flow) / (state.flow - below.flow)) * (state.power - below.power);
 }
 
 /** Largest flow of n pumps [m³/s]: at full speed of the drives, or direct on line. */
-export function capacityOf(pumps: EqualPumps, count: number): number {
-  return (pumps.pump.hasDrive ? pumps.flatOut(count) : pumps.fixed(count)).flow;
+export function capacityOf(pumps: StagedPumps, count: number): number {
+  return (pumps.onDrives ? pumps.flatOut(count) : pumps.fixed(count)).flow;
 }
 
 /**
  * All flows at which n and n + 1 pumps draw the same mean power, lowest first. Found by a scan up to the capacity of n
  * and a bracketed root in each cell where the difference changes sign.
  */
-export function crossingsBetween(pumps: EqualPumps, from: number): Crossing[] {
+export function crossingsBetween(pumps: StagedPumps, from: number): Crossing[] {
   const to = from + 1;
   const capacity = capacityOf(pumps, from);
   if (to > pumps.most || capacity <= 0) return [];
@@ -70,7 +70,7 @@ export function crossingsBetween(pumps: EqualPumps, from: number): Crossing[] {
 }
 
 /** The crossings of every count with the next. */
-export function allCrossings(pumps: EqualPumps): Crossing[] {
+export function allCrossings(pumps: StagedPumps): Crossing[] {
   const all: Crossing[] = [];
   for (let n = 1; n < pumps.most; n++) all.push(...crossingsBetween(pumps, n));
   return all;

@@ -2,31 +2,20 @@ import type { Pump } from '../hydraulics/pump.ts';
 import { root } from '../hydraulics/roots.ts';
 import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { Station } from '../station/station.ts';
+import type { OneTrimmed, StagedPumps, Trim } from './stagedPumps.ts';
 import { type Action, held, isInside, SLACK, State, shared } from './state.ts';
-
-/** A count of pumps at equal speed, trimmed to the flow: the figures that decide, before a state is made of it. */
-export interface Trim {
-  count: number;
-  /** Whether these pumps can meet the flow at their highest speed. */
-  feasible: boolean;
-  /** Mean electric power of the interval [W]. */
-  power: number;
-  speed: number;
-  overloaded: boolean;
-  /** Whether the state, or the upper of the two shared, is inside the allowable range. */
-  inside: boolean;
-  /** The state shared with off where the pumps cannot be turned down to the flow; null where nothing is shared. */
-  rest: State | null;
-}
 
 /**
  * What n equal pumps of a station can do at a static head. States that depend on the static head alone are kept until
  * it changes, so a record with a steady static head solves them once.
  */
-export class EqualPumps {
+export class EqualPumps implements StagedPumps {
   readonly most: number;
   readonly pump: Pump;
+  readonly duty: readonly Pump[];
   readonly station: Station;
+  readonly onDrives: boolean;
+  readonly drivesFitted: boolean;
   staticHead: number;
   off: State;
   private fixedStates: (State | undefined)[] = [];
@@ -37,7 +26,10 @@ export class EqualPumps {
 
   constructor(station: Station, pumps: readonly Pump[]) {
     this.station = station;
+    this.duty = pumps;
     this.pump = pumps[0]!;
+    this.onDrives = this.pump.hasDrive;
+    this.drivesFitted = this.pump.driveFitted;
     this.most = pumps.length;
     this.staticHead = station.staticHead;
     this.off = new State(station, this.staticHead, 0, []);
@@ -196,11 +188,6 @@ export class EqualPumps {
     return held(this.state(trim.count, flow / trim.count, trim.speed, true));
   }
 
-  /** Least flow that n pumps hold on their drives without sharing; 0 where they can be slowed down to it. */
-  leastFlow(count: number): number {
-    return this.lowest(count).flow;
-  }
-
   /** n pumps at equal speed that give exactly Q on the system curve; null where their speed limits do not allow it. */
   trimmedState(count: number, flow: number): State | null {
     const { pump, station } = this;
@@ -212,7 +199,8 @@ export class EqualPumps {
   }
 
   /** n − 1 pumps direct on line and one on its drive at a speed, at their operating point. */
-  oneAtSpeed(count: number, speed: number): State {
+  oneAt(count: number, at: 'least' | 'rated'): State {
+    const speed = at === 'least' ? this.pump.minSpeed : 1;
     if (count === 1) return this.atSpeed(1, speed);
     const { pump, station, staticHead } = this;
     const sent = (header: number) => (count - 1) * pump.flowInto(header, 1) + pump.flowInto(header, speed);
@@ -238,13 +226,13 @@ export class EqualPumps {
   }
 
   /** n − 1 direct on line and one trimmed to the rest of Q; its speed may be outside its limits: the rule looks. */
-  oneTrimmed(count: number, flow: number): { speed: number; state: () => State } {
+  oneTrimmed(count: number, flow: number): OneTrimmed {
     const { pump, station } = this;
     const header = systemHead(station.friction, this.staticHead, flow);
     const fixedFlow = count === 1 ? 0 : pump.flowInto(header, 1);
     const q = flow - (count - 1) * fixedFlow;
     const speed = pump.speedFor(q, header + pump.branchLoss * q * q);
-    return { speed, state: () => this.mixed(count, fixedFlow, q, speed) };
+    return { speed, minSpeed: pump.minSpeed, state: () => this.mixed(count, fixedFlow, q, speed) };
   }
 
   private oneDriven(count: number, speed: number, header: number): State {

@@ -1,7 +1,7 @@
 import type { Comparison } from './compare.ts';
 import { allCrossings, capacityOf, powerOfCount } from './crossings.ts';
-import { EqualPumps } from './equalPumps.ts';
 import type { RuleId } from './result.ts';
+import { stagedPumps } from './stagedPumps.ts';
 
 /** Mean power over flow for each count, where they cross, and the hours the record spends at each flow. */
 export interface PowerOverFlow {
@@ -32,7 +32,7 @@ const CLASSES = 60;
 /** Drawn at the station's static head, whatever static head the intervals of the record have. */
 export function powerOverFlow(comparison: Comparison): PowerOverFlow {
   const { station, duty, record } = comparison;
-  const pumps = new EqualPumps(station, duty);
+  const pumps = stagedPumps(station, duty);
   const largestFlow = record.flow.reduce((most, flow) => Math.max(most, flow), 0);
   const top = Math.max(capacityOf(pumps, pumps.most), largestFlow) * 1.02;
   const flows = Array.from({ length: CURVE_POINTS }, (_, i) => (top * (i + 1)) / CURVE_POINTS);
@@ -44,7 +44,7 @@ export function powerOverFlow(comparison: Comparison): PowerOverFlow {
   }));
   return {
     staticHeadM: station.staticHead,
-    onDrives: pumps.pump.hasDrive,
+    onDrives: pumps.onDrives,
     flowM3s: flows,
     counts,
     crossings: allCrossings(pumps).map(({ from, to, flow, power, rising }) => ({

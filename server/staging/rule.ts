@@ -1,5 +1,5 @@
-import type { EqualPumps } from './equalPumps.ts';
 import type { RuleId } from './result.ts';
+import type { StagedPumps } from './stagedPumps.ts';
 import type { Action } from './state.ts';
 
 /**
@@ -12,7 +12,7 @@ export interface Rule {
   readonly drives: 'none' | 'one' | 'all';
   /** Only stations whose surplus goes into storage can run it. */
   readonly storageOnly?: boolean;
-  start(pumps: EqualPumps): Decide;
+  start(pumps: StagedPumps): Decide;
 }
 
 /** The action for a flow Q ≥ 0 [m³/s] of the next interval. */

@@ -1,9 +1,9 @@
 import type { PowerSeries } from '../tariff/tariff.ts';
 import { energyKwh } from '../units.ts';
 import type { DemandRecord } from './demandRecord.ts';
-import type { EqualPumps } from './equalPumps.ts';
 import type { LedgerKwh } from './result.ts';
 import type { Rule } from './rule.ts';
+import type { StagedPumps } from './stagedPumps.ts';
 import type { Action, State } from './state.ts';
 
 /** What a rule did in each interval, by columns, and what that adds up to. */
@@ -46,7 +46,7 @@ export type OnAction = (interval: number, action: Action) => void;
  *
  * @param pumps  what the station can do; its static head is set for each interval
  */
-export function runRule(rule: Rule, pumps: EqualPumps, record: DemandRecord, onAction?: OnAction): Run {
+export function runRule(rule: Rule, pumps: StagedPumps, record: DemandRecord, onAction?: OnAction): Run {
   const { station } = pumps;
   const standby = station.standbyPower;
   const n = record.flow.length;
@@ -98,7 +98,7 @@ export function runRule(rule: Rule, pumps: EqualPumps, record: DemandRecord, onA
 
 /** Sums over a record; every sum is of its own quantity, none is found as a remainder. */
 class Tally {
-  private readonly pumps: EqualPumps;
+  private readonly pumps: StagedPumps;
   private readonly standby: number;
   private readonly volume: number | null;
   private energy = 0;
@@ -126,7 +126,7 @@ class Tally {
   private readonly byCount: number[];
   private readonly bySet = new Map<number, number>();
 
-  constructor(pumps: EqualPumps) {
+  constructor(pumps: StagedPumps) {
     this.pumps = pumps;
     this.standby = pumps.station.standbyPower;
     this.volume = pumps.station.storage.activeVolume;

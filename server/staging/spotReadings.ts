@@ -1,7 +1,7 @@
 import type { Pump } from '../hydraulics/pump.ts';
 import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { Station } from '../station/station.ts';
-import { EqualPumps } from './equalPumps.ts';
+import { stagedPumps } from './stagedPumps.ts';
 
 /** What somebody read off gauges at one moment; what was not read is null. Flow of the station, head across the pumps. */
 export interface SpotReading {
@@ -30,20 +30,21 @@ export function laySpotReadings(
   duty: readonly Pump[],
   readings: readonly SpotReading[],
 ): LaidReading[] {
-  const pumps = new EqualPumps(station, duty);
-  const { pump } = pumps;
+  const pumps = stagedPumps(station, duty);
   return readings.map((reading) => {
     const count = Math.min(Math.max(1, reading.pumpsOn), pumps.most);
     const point = pumps.fixed(count);
-    const q = reading.flow === null ? null : reading.flow / count;
-    const within = q !== null && q >= 0 && q <= pump.endFlow(1);
-    const at = within ? q : point.flow / count;
+    const { flow } = reading;
+    const state = flow === null || flow <= 0 ? null : pumps.throttled(count, flow);
+    const one = state?.running[0];
+    // Beyond the operating point different pumps, and beyond the end of their curves equal ones, have no such state.
+    const within = one && Math.abs(state.flow - flow!) <= 1e-9 * flow! && one.flow <= one.pump.endFlow(1);
     return {
       ...reading,
-      curveHead: within ? pump.head(q, 1) - pump.branchLoss * q * q : null,
-      systemHead: reading.flow === null ? null : systemHead(station.friction, station.staticHead, reading.flow),
+      curveHead: within ? one.pump.head(one.flow, 1) - one.pump.branchLoss * one.flow * one.flow : null,
+      systemHead: flow === null ? null : systemHead(station.friction, station.staticHead, flow),
       curveFlow: point.flow,
-      curvePower: count * pump.electric(at, 1, false) + station.standbyPower,
+      curvePower: (within ? state.power : point.power) + station.standbyPower,
     };
   });
 }

@@ -110,6 +110,23 @@ export class State {
     return this.split;
   }
 
+  /** Least and greatest share of best-efficiency flow at their speeds among the pumps that run. */
+  get leastShareOfBest(): number {
+    let least = Infinity;
+    for (const { pump, flow, speed, onDrive } of this.running) {
+      least = Math.min(least, pump.leastShareOfBest(flow, speed, onDrive));
+    }
+    return least;
+  }
+
+  get greatestShareOfBest(): number {
+    let most = 0;
+    for (const { pump, flow, speed, onDrive } of this.running) {
+      most = Math.max(most, pump.greatestShareOfBest(flow, speed, onDrive));
+    }
+    return most;
+  }
+
   /** What an engineer would doubt about the state. */
   get doubts(): Doubts {
     this.doubted ??= this.findDoubts();
@@ -120,14 +137,12 @@ export class State {
     const { preferred, allowable } = this.station;
     let overloaded = false;
     let atEndOfCurve = false;
-    let least = Infinity;
-    let most = 0;
     for (const { pump, flow, speed, onDrive } of this.running) {
       if (pump.overload(flow, speed, onDrive) > 1 + SLACK) overloaded = true;
       if (pump.atEnd(flow, speed, onDrive)) atEndOfCurve = true;
-      least = Math.min(least, pump.leastShareOfBest(flow, speed, onDrive));
-      most = Math.max(most, pump.greatestShareOfBest(flow, speed, onDrive));
     }
+    const least = this.leastShareOfBest;
+    const most = this.greatestShareOfBest;
     return {
       overloaded,
       atEndOfCurve,

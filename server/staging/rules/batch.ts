@@ -1,6 +1,6 @@
-import type { EqualPumps } from '../equalPumps.ts';
 import { type Branch, type HullPiece, lowerHull, pieceAt } from '../hull.ts';
 import type { Decide, Rule } from '../rule.ts';
+import type { StagedPumps } from '../stagedPumps.ts';
 import { type Action, held, type State, shared } from '../state.ts';
 import { flatOut } from './trimmedCounts.ts';
 
@@ -30,10 +30,10 @@ type Choice = (typeof CHOICES)[number];
 
 /** Envelopes at one static head, built when first needed; heads that differ by less than a millimetre share theirs. */
 class Envelopes {
-  private readonly pumps: EqualPumps;
+  private readonly pumps: StagedPumps;
   private readonly known = new Map<string, readonly HullPiece[]>();
 
-  constructor(pumps: EqualPumps) {
+  constructor(pumps: StagedPumps) {
     this.pumps = pumps;
   }
 
@@ -63,7 +63,7 @@ class Envelopes {
     const stateAt = (count: number, at: number): State =>
       at >= pumps.flatOut(count).flow
         ? pumps.flatOut(count)
-        : at <= pumps.leastFlow(count)
+        : at <= pumps.lowest(count).flow
           ? pumps.lowest(count)
           : pumps.trimmedState(count, at)!;
     if (!chord) return held(stateAt((from.branch as CountBranch).count, flow));
@@ -75,8 +75,8 @@ class Envelopes {
 const HEADS_PER_METRE = 1000;
 
 /** The stretches of flow on which n pumps at equal speed may run under a choice, ends found by bisection. */
-function branches(pumps: EqualPumps, count: number, choice: Choice): CountBranch[] {
-  const from = pumps.leastFlow(count);
+function branches(pumps: StagedPumps, count: number, choice: Choice): CountBranch[] {
+  const from = pumps.lowest(count).flow;
   const to = pumps.flatOut(count).flow;
   if (!(to > from)) return [];
   const may = (flow: number): boolean => {

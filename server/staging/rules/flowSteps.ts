@@ -1,5 +1,5 @@
-import type { EqualPumps } from '../equalPumps.ts';
 import type { Decide, Rule } from '../rule.ts';
+import type { StagedPumps } from '../stagedPumps.ts';
 import { held, shared } from '../state.ts';
 import { flatOut } from './trimmedCounts.ts';
 
@@ -14,7 +14,7 @@ export const flowSteps: Rule = {
   start(pumps): Decide {
     const { bringOn, dropOff } = pumps.station.flowSteps!;
     const top = Math.min(pumps.most, bringOn.length + 1);
-    const act = pumps.pump.driveFitted ? trimmedAt : fixedAt;
+    const act = pumps.drivesFitted ? trimmedAt : fixedAt;
     let carried = 1;
     return (flow) => {
       while (carried < top && flow > bringOn[carried - 1]!) carried++;
@@ -24,7 +24,7 @@ export const flowSteps: Rule = {
   },
 };
 
-function trimmedAt(pumps: EqualPumps, count: number, flow: number) {
+function trimmedAt(pumps: StagedPumps, count: number, flow: number) {
   for (let n = count; n <= pumps.most; n++) {
     const trim = pumps.trim(n, flow);
     if (trim.feasible) return pumps.action(trim, flow);
@@ -32,7 +32,7 @@ function trimmedAt(pumps: EqualPumps, count: number, flow: number) {
   return flatOut(pumps, flow);
 }
 
-function fixedAt(pumps: EqualPumps, count: number, flow: number) {
+function fixedAt(pumps: StagedPumps, count: number, flow: number) {
   for (let n = count; n <= pumps.most; n++) {
     const state = pumps.fixed(n);
     if (state.flow < flow) continue;

@@ -9,18 +9,20 @@ export const oneTrimmed: Rule = {
   id: 'one-trimmed',
   drives: 'one',
   start(pumps) {
-    const { station, pump } = pumps;
+    const throttle = pumps.station.surplus === 'throttle';
     return (flow) => {
       if (flow === 0) return held(pumps.off);
       for (let n = 1; n <= pumps.most; n++) {
         if (pumps.fixed(n).flow < flow) continue;
         const trimmed = pumps.oneTrimmed(n, flow);
-        if (trimmed.speed >= pump.minSpeed) return held(trimmed.state());
-        if (station.surplus === 'throttle') return held(pumps.oneThrottled(n, flow));
-        return shared(pumps.fixed(n - 1), pumps.oneAtSpeed(n, pump.minSpeed), flow);
+        if (trimmed === null)
+          return throttle ? held(pumps.throttled(n, flow)) : shared(pumps.fixed(n - 1), pumps.fixed(n), flow);
+        if (trimmed.speed >= trimmed.minSpeed) return held(trimmed.state());
+        if (throttle) return held(pumps.oneThrottled(n, flow));
+        return shared(pumps.fixed(n - 1), pumps.oneAt(n, 'least'), flow);
       }
-      if (pumps.fixed(1).flow === 0) return held(pumps.off, flow);
-      const full = pumps.oneAtSpeed(pumps.most, 1);
+      if (pumps.fixed(pumps.most).flow === 0) return held(pumps.off, flow);
+      const full = pumps.oneAt(pumps.most, 'rated');
       return held(full, flow - full.flow);
     };
   },

@@ -1,5 +1,5 @@
-import type { EqualPumps, Trim } from '../equalPumps.ts';
 import type { Decide, Rule } from '../rule.ts';
+import type { StagedPumps, Trim } from '../stagedPumps.ts';
 import { type Action, held } from '../state.ts';
 
 /**
@@ -7,7 +7,7 @@ import { type Action, held } from '../state.ts';
  * motor where there are any; of these, those inside the allowable range where there are any. Calls `consider` for each,
  * from few pumps to many, until it returns true.
  */
-function eachCandidate(pumps: EqualPumps, flow: number, consider: (trim: Trim) => boolean): void {
+function eachCandidate(pumps: StagedPumps, flow: number, consider: (trim: Trim) => boolean): void {
   const { most } = pumps;
   let sound = false;
   let soundInside = false;
@@ -28,7 +28,7 @@ function eachCandidate(pumps: EqualPumps, flow: number, consider: (trim: Trim) =
 }
 
 /** What happens where no count meets the flow: all pumps flat out, the rest being shortfall. */
-export function flatOut(pumps: EqualPumps, flow: number): Action {
+export function flatOut(pumps: StagedPumps, flow: number): Action {
   const full = pumps.flatOut(pumps.most);
   return held(full, flow - full.flow);
 }
