@@ -1,5 +1,6 @@
-import { readFile } from 'node:fs/promises';
+import { readdir, readFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
+import { gzipSync } from 'node:zlib';
 import type { AxeResults } from 'axe-core';
 import type { Page } from 'playwright-core';
 import { afterAll, afterEach, beforeAll, beforeEach, describe, expect, it } from 'vitest';
@@ -199,6 +200,14 @@ describe.skipIf(browserPath === null)('the page', () => {
     }
     expect(errors).toEqual([]);
     await other.close();
+  });
+
+  it('has scripts of less than 170 kB, packed', async () => {
+    const folder = `${app.clientFolder}/assets`;
+    const scripts = (await readdir(folder)).filter((name) => name.endsWith('.js'));
+    const sizes = await Promise.all(scripts.map(async (name) => gzipSync(await readFile(`${folder}/${name}`)).length));
+    expect(scripts.length).toBeGreaterThan(0);
+    expect(sizes.reduce((sum, size) => sum + size)).toBeLessThan(170_000);
   });
 
   it('prints the four answers at the top and every question, on two sides of paper at most', async () => {

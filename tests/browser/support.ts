@@ -36,6 +36,8 @@ const ARGUMENTS = [
 
 /** The real program on a new database, with a browser before it. */
 export interface Stage {
+  /** Folder of the built page. */
+  readonly clientFolder: string;
   readonly origin: string;
   /** A page of its own, in English. What the page writes to its console as an error, and where it asks, is noted. */
   open(options?: { readonly width?: number; readonly dark?: boolean }): Promise<Watched>;
@@ -74,6 +76,7 @@ export async function stage(executablePath: string): Promise<Stage> {
   const origin = `http://127.0.0.1:${(server.address() as AddressInfo).port}`;
   const browser: Browser = await chromium.launch({ executablePath, args: ARGUMENTS });
   return {
+    clientFolder,
     origin,
     bugs,
     async open({ width = 1440, dark = false } = {}) {

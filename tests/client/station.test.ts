@@ -1,6 +1,6 @@
 import { expect, it } from 'vitest';
 import { latestRecord, tariffFor } from '../../client/opening.ts';
-import { differences, equipmentOf, numberAt, withNumber } from '../../client/station.ts';
+import { differences, dutyNames, equipmentOf, numberAt, withNumber } from '../../client/station.ts';
 import type { StationFile } from '../../server/station/stationFile.ts';
 import { aStationFile } from '../support/aStation.ts';
 
@@ -25,6 +25,12 @@ it('a number within a list is touched in a copy of the list', () => {
 it('has no number where the file has none', () => {
   expect(numberAt(file, ['standbyPower'])).toBeNull();
   expect(numberAt(file, ['pumps', 3, 'curve', 'bestFlow'])).toBeNull();
+});
+
+it('names duty pumps as results do: numbered where an entry stands for several', () => {
+  const [pump] = file.pumps as unknown as [Record<string, unknown>];
+  const pumps = [pump, { ...pump, name: 'Q', count: 1 }, { ...pump, name: 'S', role: 'standby' }];
+  expect(dutyNames({ ...file, pumps } as unknown as StationFile)).toEqual(['P-1', 'P-2', 'Q']);
 });
 
 it('counts pumps that stand for several, drives fitted and proposed', () => {
