@@ -452,7 +452,7 @@ function lineNames(curves: Curves, look: Look): Plugin<'line'> {
         lines: curves.lines.map(({ points }) => plotted(points.filter((point) => point.y !== null)).map(spot)),
         sizes: names.map((name) => ({ width: ctx.measureText(name).width, height: 12 })),
         // A mark stands from its crossing down to the axis, where its flow is written.
-        marks: curves.crossings.flatMap((crossing) => [spot(crossing), spot({ x: crossing.x, y: curves.y.min })]),
+        marks: curves.crossings.map((crossing) => [spot(crossing), spot({ x: crossing.x, y: curves.y.min })]),
         area: { ...chartArea, top: 0, right: chartArea.right + RIGHT },
       });
       boxes.forEach((box, i) => {

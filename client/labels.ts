@@ -17,7 +17,8 @@ interface Placing {
   readonly lines: readonly (readonly Spot[])[];
   /** By line, the size of its name. */
   readonly sizes: readonly { readonly width: number; readonly height: number }[];
-  readonly marks: readonly Spot[];
+  /** Other strokes that a name must not cover. */
+  readonly marks: readonly (readonly Spot[])[];
   /** Names stay within. */
   readonly area: Box;
 }
@@ -42,7 +43,7 @@ export function raiseClear(box: Box, taken: readonly Box[]): Box {
  * The box of each name: above its line or below it, as near the line's end as there is room. Null where there is none.
  */
 export function placeNames({ lines, sizes, marks, area }: Placing): (Box | null)[] {
-  const obstacles: Spot[] = [...lines.flatMap(dense), ...marks];
+  const obstacles: Spot[] = [...lines, ...marks].flatMap(dense);
   const taken: Box[] = [];
   return lines.map((line, i) => {
     const { width, height } = sizes[i]!;

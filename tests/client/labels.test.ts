@@ -41,3 +41,16 @@ it('raises a name by rows until it covers none', () => {
   expect(raiseClear(box, [])).toEqual(box);
   expect(raiseClear(box, [box, { ...box, top: 65, bottom: 80 }])).toEqual({ ...box, top: 50, bottom: 65 });
 });
+
+it('keeps off a mark, also between its ends', () => {
+  const line = [
+    { x: 0, y: 60 },
+    { x: 200, y: 60 },
+  ];
+  const mark = [
+    { x: 175, y: 0 },
+    { x: 175, y: 140 },
+  ];
+  const [box] = placeNames({ lines: [line], sizes: [size], marks: [mark], area });
+  expect(box!.right).toBeLessThan(175);
+});
