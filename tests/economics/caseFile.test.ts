@@ -34,6 +34,7 @@ it('a case comes back with what it leaves out', () => {
     years: 15,
     discountRate: 0.05,
     energyEscalation: 0,
+    options: [],
     targetPaybackYears: null,
     uncertainty: null,
   });
