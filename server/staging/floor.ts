@@ -9,6 +9,9 @@ import { LeastPower } from './leastPower.ts';
 /** Nodes of F over flow at one static head; between them it is interpolated, kinks and jumps respected. */
 const NODES = 360;
 
+/** Up to so many sets direct on line, F is cut at the operating point of each. */
+const MOST_BREAKS = 24;
+
 /** F at a flow, and the arrangement that gives it. */
 type Solve = (flow: number) => { readonly power: number; readonly kind: string };
 
@@ -106,7 +109,9 @@ export class FloorTable {
  */
 function breakFlows(station: Station, duty: readonly Pump[], staticHead: number): number[] {
   const flows = new Set<number>();
-  for (const set of setsByMake(duty)) {
+  // Of many sets most never are the best: the bisection between nodes finds the jumps that matter.
+  const sets = setsByMake(duty);
+  for (const set of sets.length <= MOST_BREAKS ? sets : []) {
     flows.add(
       combinedFlow(
         station,

@@ -1,44 +1,78 @@
 import type { Pump } from '../hydraulics/pump.ts';
 import { leastOn } from '../hydraulics/roots.ts';
+import { isInside, SLACK } from './state.ts';
 
 /** How a pump carries a flow: direct on line at rated speed, or on its drive. */
 export type Mode = 'line' | 'drive';
 
+/** What a pump may do in an allocation; the floor allows all of it, a rule less. */
+export interface Leave {
+  /** Modes it may run in. */
+  readonly modes: readonly Mode[];
+  /** Whether its head may be more than is asked, a valve taking the rest. */
+  readonly valve: boolean;
+  /** Whether it may overload its motor. */
+  readonly overload: boolean;
+  /** Range of best-efficiency flow it must keep to; null for none. */
+  readonly range: { readonly from: number; readonly to: number } | null;
+}
+
+/** All that the floor allows (model.md §5). */
+export const ANY_WAY: Leave = { modes: ['line', 'drive'], valve: true, overload: true, range: null };
+
 /**
- * P̃(q; H): the least electric power with which a pump sends flow q into a header at head H, direct on line or on its
- * drive at any speed it may run at (model.md §5, floor). Its head may be more than is asked; a valve takes the rest.
+ * P̃(q; H): the least electric power with which a pump sends flow q into a header at head H, within what it may do: for
+ * the floor direct on line or on its drive at any speed, its head being more than is asked where a valve takes the rest.
  */
 export class LeastPower {
   readonly pump: Pump;
+  readonly leave: Leave;
   /** Whether power rises with speed at every flow, so that the lowest speed that lifts is the best. */
   private readonly slowestIsBest: boolean;
 
-  constructor(pump: Pump) {
+  constructor(pump: Pump, leave: Leave = ANY_WAY) {
     this.pump = pump;
-    this.slowestIsBest = !pump.hasDrive || powerRisesWithSpeed(pump);
+    this.leave = { ...leave, modes: leave.modes.filter((mode) => mode === 'line' || pump.hasDrive) };
+    this.slowestIsBest = !leave.valve || !pump.hasDrive || powerRisesWithSpeed(pump);
   }
 
   /** Largest flow in a mode at header head H. */
   mostFlow(mode: Mode, header: number): number {
-    const { pump } = this;
-    if (mode === 'drive' && !pump.hasDrive) return 0;
-    return pump.flowInto(header, mode === 'drive' ? pump.maxSpeed : 1);
+    if (!this.leave.modes.includes(mode)) return 0;
+    return this.pump.flowInto(header, mode === 'drive' ? this.pump.maxSpeed : 1);
   }
 
-  /** Power in a mode at flow q > 0 and header head H [W]; Infinity where it cannot. */
+  /** Least flow above 0 in a mode at header head H: without a valve it cannot be throttled further. */
+  leastFlow(mode: Mode, header: number): number {
+    if (this.leave.valve) return 0;
+    return this.pump.flowInto(header, mode === 'drive' ? this.pump.minSpeed : 1);
+  }
+
+  /** Power in a mode at flow q > 0 and header head H [W]; Infinity where it cannot or may not. */
   inMode(mode: Mode, q: number, header: number): number {
-    const { pump } = this;
+    const { pump, leave } = this;
+    if (!leave.modes.includes(mode)) return Infinity;
     const head = header + pump.branchLoss * q * q;
+    let speed = 1;
     if (mode === 'line') {
-      const lifts = pump.head(q, 1) >= head - 1e-11 * (1 + Math.abs(head)) && q <= pump.endFlow(1) * (1 + 1e-12);
-      return lifts ? pump.electric(q, 1, false) : Infinity;
+      const spare = pump.head(q, 1) - head;
+      const slack = 1e-11 * (1 + Math.abs(head));
+      if (spare < -slack || q > pump.endFlow(1) * (1 + 1e-12)) return Infinity;
+      if (!leave.valve && spare > 1e-9 * (1 + Math.abs(head)) && q < pump.endFlow(1) * (1 - 1e-12)) return Infinity;
+    } else {
+      const needed = pump.speedFor(q, head);
+      if (needed > pump.maxSpeed * (1 + 1e-12)) return Infinity;
+      if (!leave.valve && needed < pump.minSpeed * (1 - 1e-9)) return Infinity;
+      speed = Math.min(Math.max(needed, pump.minSpeed), pump.maxSpeed);
     }
-    if (!pump.hasDrive) return Infinity;
-    const needed = pump.speedFor(q, head);
-    if (needed > pump.maxSpeed * (1 + 1e-12)) return Infinity;
-    const slowest = Math.min(Math.max(needed, pump.minSpeed), pump.maxSpeed);
-    if (this.slowestIsBest) return pump.electric(q, slowest, true);
-    return leastOverSpeed(pump, q, slowest);
+    const onDrive = mode === 'drive';
+    if (!leave.overload && pump.overload(q, speed, onDrive) > 1 + SLACK) return Infinity;
+    if (leave.range) {
+      const least = pump.leastShareOfBest(q, speed, onDrive);
+      if (!isInside(leave.range, least, pump.greatestShareOfBest(q, speed, onDrive))) return Infinity;
+    }
+    if (onDrive && !this.slowestIsBest) return leastOverSpeed(pump, q, speed);
+    return pump.electric(q, speed, onDrive);
   }
 
   /**
@@ -53,7 +87,7 @@ export class LeastPower {
     return q >= pump.endFlow(needed) * (1 - 1e-9) ? 'end' : '';
   }
 
-  /** The lesser of the two modes. */
+  /** The lesser of the modes. */
   at(q: number, header: number): { power: number; mode: Mode } {
     const line = this.inMode('line', q, header);
     const drive = this.inMode('drive', q, header);

@@ -1,4 +1,6 @@
+import { BestSets } from '../bestSets.ts';
 import { type Branch, type HullPiece, lowerHull, pieceAt } from '../hull.ts';
+import { MixedPumps } from '../mixedPumps.ts';
 import type { Decide, Rule } from '../rule.ts';
 import type { StagedPumps } from '../stagedPumps.ts';
 import { type Action, held, type State, shared } from '../state.ts';
@@ -14,6 +16,10 @@ export const batch: Rule = {
   drives: 'all',
   storageOnly: true,
   start(pumps): Decide {
+    if (pumps instanceof MixedPumps) {
+      const sets = new BestSets(pumps);
+      return (flow) => (flow === 0 ? held(pumps.off) : (sets.batch(flow) ?? flatOut(pumps, flow)));
+    }
     const envelopes = new Envelopes(pumps);
     return (flow) => (flow === 0 ? held(pumps.off) : envelopes.action(flow));
   },

@@ -1,3 +1,5 @@
+import { BestSets } from '../bestSets.ts';
+import { MixedPumps } from '../mixedPumps.ts';
 import type { Decide, Rule } from '../rule.ts';
 import type { StagedPumps, Trim } from '../stagedPumps.ts';
 import { type Action, held } from '../state.ts';
@@ -50,11 +52,18 @@ export const lateStaging: Rule = {
   },
 };
 
-/** Equal speed trimmed to the flow, the count of least mean power for this interval; ties go to fewer pumps. */
+/**
+ * Trimmed to the flow, the set of least mean power for this interval. Equal pumps run at equal speed and the set is a
+ * count, ties going to fewer; of pumps that differ the set and the split are searched.
+ */
 export const bestCount: Rule = {
   id: 'best-count',
   drives: 'all',
   start(pumps): Decide {
+    if (pumps instanceof MixedPumps) {
+      const sets = new BestSets(pumps);
+      return (flow) => (flow === 0 ? held(pumps.off) : (sets.best(flow) ?? flatOut(pumps, flow)));
+    }
     return (flow) => {
       if (flow === 0) return held(pumps.off);
       let chosen: Trim | null = null;

@@ -1,0 +1,422 @@
+import type { Pump } from '../hydraulics/pump.ts';
+import { systemHead } from '../hydraulics/systemCurve.ts';
+import { allocate, type Make, type Share } from './allocation.ts';
+import { type Branch, type HullPiece, lowerHull, pieceAt } from './hull.ts';
+import { LeastPower, type Leave, type Mode } from './leastPower.ts';
+import type { MixedPumps, Setting } from './mixedPumps.ts';
+import { type Action, held, meanPower, type Running, SLACK, State, shared } from './state.ts';
+
+/** Which states may be used; the strictest choice that can meet a flow holds (model.md §4 and §5). */
+const CHOICES: readonly Pick<Strictness, 'overload' | 'ranged'>[] = [
+  { overload: false, ranged: true },
+  { overload: false, ranged: false },
+  { overload: true, ranged: true },
+  { overload: true, ranged: false },
+];
+
+interface Strictness {
+  readonly overload: boolean;
+  readonly ranged: boolean;
+}
+
+/** Nodes over flow at which the best set and split are searched. */
+const NODES = 240;
+
+/** Static heads within this share of the total head use one table of sets; the split is still solved at the true head. */
+const HEAD_STEP = 0.01;
+
+/**
+ * The best set of pumps that differ, and its split, over flow: an exact allocation at nodes says which sets matter; for
+ * a flow between nodes those sets are solved at that very flow and static head, and the least power holds.
+ */
+export class BestSets {
+  private readonly pumps: MixedPumps;
+  private readonly tables = new Map<string, SetTable>();
+  private readonly headStep: number;
+
+  constructor(pumps: MixedPumps) {
+    this.pumps = pumps;
+    const { friction, staticHead } = pumps.station;
+    const full = pumps.flatOut(pumps.most).flow;
+    this.headStep = Math.max(1e-6, HEAD_STEP * systemHead(friction, staticHead, full));
+  }
+
+  /** The action of least mean power that meets Q > 0; null where no set does. */
+  best(flow: number): Action | null {
+    for (const choice of this.choices()) {
+      const found = this.table(choice).at(flow);
+      if (found) return found;
+    }
+    return null;
+  }
+
+  /** Least mean power where any two of these states may share the time. */
+  batch(flow: number): Action | null {
+    for (const choice of this.choices()) {
+      const found = this.table(choice).batch(flow);
+      if (found) return found;
+    }
+    return null;
+  }
+
+  private choices(): readonly Strictness[] {
+    const { allowable } = this.pumps.station;
+    const rated = this.pumps.duty.some((pump) => pump.machines.some((m) => m.motor.ratedPower !== null));
+    return CHOICES.filter((c) => (c.ranged ? allowable !== null : true) && (rated || c.overload));
+  }
+
+  private table(choice: Strictness): SetTable {
+    const { pumps } = this;
+    const bucket = Math.round(pumps.staticHead / this.headStep);
+    const key = `${bucket} ${choice.overload} ${choice.ranged}`;
+    let table = this.tables.get(key);
+    if (!table) {
+      table = new SetTable(pumps, choice);
+      this.tables.set(key, table);
+    }
+    return table;
+  }
+}
+
+/** A pump of an arrangement: its place, how it runs, and its share of what the driven pumps carry. */
+interface Part {
+  readonly place: number;
+  readonly mode: Mode;
+  readonly flow: number;
+}
+
+interface Node {
+  readonly flow: number;
+  readonly parts: readonly Part[];
+  readonly key: string;
+}
+
+class SetTable {
+  private readonly pumps: MixedPumps;
+  private readonly choice: Strictness;
+  private readonly valve: boolean;
+  private readonly step: number;
+  private readonly nodes: readonly (Node | null)[];
+  /** Sets at their lowest, told by their settings, with the flow and the power per flow found when the table was made. */
+  private readonly rests: readonly { settings: readonly Setting[]; flow: number; perFlow: number }[];
+  private hull: readonly HullPiece[] | null = null;
+
+  constructor(pumps: MixedPumps, choice: Strictness) {
+    this.pumps = pumps;
+    this.choice = choice;
+    this.valve = pumps.station.surplus === 'throttle';
+    const capacity = pumps.flatOut(pumps.most).flow;
+    this.step = capacity / NODES;
+    this.nodes = Array.from({ length: NODES }, (_, i) => this.search((i + 1) * this.step));
+    this.rests = this.valve ? [] : this.findRests();
+  }
+
+  /** Exact search at one flow. Without a valve, pumps direct on line give what they give; the driven ones the rest. */
+  private search(flow: number): Node | null {
+    const { pumps, choice, valve } = this;
+    const header = systemHead(pumps.station.friction, pumps.staticHead, flow);
+    const leave = (modes: readonly Mode[]): Leave => ({
+      modes,
+      valve,
+      overload: choice.overload,
+      range: choice.ranged ? pumps.station.allowable : null,
+    });
+    const driven = pumps.duty.map((_, place) => place).filter((place) => pumps.duty[place]!.hasDrive);
+    const line = pumps.duty.map((_, place) => place).filter((place) => !pumps.duty[place]!.hasDrive);
+    if (valve) {
+      const places = [...driven, ...line];
+      const makes = makesOf(places, pumps.duty, (pump) => leave([pump.hasDrive ? 'drive' : 'line']));
+      const { power, shares } = allocate(
+        makes.map((m) => m.make),
+        flow,
+        header,
+      );
+      return power === Infinity ? null : nodeOf(flow, partsOf(shares, makes));
+    }
+    const drivenMakes = makesOf(driven, pumps.duty, () => leave(['drive']));
+    const lineLeast = line.map((place) => new LeastPower(pumps.duty[place]!, leave(['line'])));
+    let best: { power: number; parts: Part[] } | null = null;
+    for (let set = 0; set < 2 ** line.length; set++) {
+      const parts: Part[] = [];
+      let power = 0;
+      let left = flow;
+      line.forEach((place, i) => {
+        if (Math.floor(set / 2 ** i) % 2 === 0) return;
+        const q = pumps.duty[place]!.flowInto(header, 1);
+        if (q <= 0) power = Infinity;
+        else power += lineLeast[i]!.inMode('line', q, header);
+        left -= q;
+        parts.push({ place, mode: 'line', flow: q });
+      });
+      if (power === Infinity || left < -1e-12 * flow || (best && power >= best.power)) continue;
+      if (left > 1e-12 * flow) {
+        if (driven.length === 0) continue;
+        const found = allocate(
+          drivenMakes.map((m) => m.make),
+          left,
+          header,
+        );
+        power += found.power;
+        parts.push(...partsOf(found.shares, drivenMakes));
+      }
+      if (power < (best?.power ?? Infinity)) best = { power, parts };
+    }
+    return best && nodeOf(flow, best.parts);
+  }
+
+  private findRests(): SetTable['rests'] {
+    const { pumps, choice } = this;
+    const { allowable } = pumps.station;
+    const found: { settings: Setting[]; flow: number; perFlow: number }[] = [];
+    const seen = new Set<string>();
+    for (let set = 1; set < 2 ** pumps.most; set++) {
+      const places = pumps.duty.map((_, place) => place).filter((place) => Math.floor(set / 2 ** place) % 2 === 1);
+      const alike = places
+        .map((place) => pumps.duty[place]!.make)
+        .sort()
+        .join('|');
+      if (seen.has(alike)) continue;
+      seen.add(alike);
+      const settings = lowestSettings(pumps, places, choice.ranged ? allowable : null);
+      if (settings === null) continue;
+      const state = pumps.pointOf(settings);
+      if (state.count < places.length) continue; // a pump that would be dead-headed
+      if (!choice.overload && state.doubts.overloaded) continue;
+      if (choice.ranged && state.doubts.outsideAllowable) continue;
+      found.push({ settings, flow: state.flow, perFlow: state.power / state.flow });
+    }
+    // Of two sets that reach as far, only the cheaper per volume can ever be the best.
+    found.sort((a, b) => b.flow - a.flow || a.perFlow - b.perFlow);
+    const kept: typeof found = [];
+    let least = Infinity;
+    for (const rest of found) {
+      if (rest.perFlow >= least) continue;
+      least = rest.perFlow;
+      kept.push(rest);
+    }
+    return kept.reverse();
+  }
+
+  at(flow: number): Action | null {
+    const x = flow / this.step - 1;
+    const i = Math.floor(x);
+    const near = [this.nodes[i], this.nodes[i + 1], this.nodes[i + 2], this.nodes[i - 1]];
+    let best: Action | null = null;
+    const consider = (action: Action | null) => {
+      if (action && (best === null || meanPower(action) < meanPower(best) * (1 - 1e-12))) best = action;
+    };
+    const left = near[0];
+    const right = near[1];
+    if (left && right && left.key === right.key) consider(this.between(left, right, flow));
+    else {
+      const tried = new Set<string>();
+      for (const node of near) {
+        if (!node || tried.has(node.key)) continue;
+        tried.add(node.key);
+        consider(this.between(node, node, flow));
+      }
+    }
+    // The cheapest set per volume that reaches the flow, resting for part of the time.
+    for (const { settings, flow: reach } of this.rests) {
+      if (reach < flow * 0.98) continue;
+      const state = this.pumps.pointOf(settings);
+      if (state.flow < flow || state.count < settings.length) continue;
+      consider(shared(this.pumps.off, state, flow));
+      break;
+    }
+    return best;
+  }
+
+  /** An arrangement at a flow, its split taken between two nodes; null where it cannot carry the flow. */
+  private between(a: Node, b: Node, flow: number): Action | null {
+    const state = this.arranged(a, b, flow);
+    return state && held(state);
+  }
+
+  private arranged(a: Node, b: Node, flow: number): State | null {
+    const { pumps, valve, choice } = this;
+    const { station, staticHead, duty } = pumps;
+    const header = systemHead(station.friction, staticHead, flow);
+    const weight = b.flow > a.flow ? (flow - a.flow) / (b.flow - a.flow) : 0;
+    const flows = a.parts.map((part, k) => part.flow + weight * (b.parts[k]!.flow - part.flow));
+    let fixed = 0;
+    let free = 0;
+    a.parts.forEach(({ place, mode }, k) => {
+      if (mode === 'line' && !valve) {
+        flows[k] = duty[place]!.flowInto(header, 1);
+        fixed += flows[k]!;
+      } else free += flows[k]!;
+    });
+    const left = flow - fixed;
+    if (free === 0) {
+      if (Math.abs(left) > 1e-9 * flow) return null;
+    } else if (!(left > 0)) return null;
+    // What the free pumps carry is stretched to the flow; a pump at its most passes on what it cannot carry.
+    const tops = a.parts.map(({ place, mode }) => {
+      const pump = duty[place]!;
+      return pump.flowInto(header, mode === 'drive' ? pump.maxSpeed : 1);
+    });
+    if (free > 0) stretch(a.parts, flows, tops, left, valve);
+    const running: Running[] = [];
+    let set = 0;
+    for (let k = 0; k < a.parts.length; k++) {
+      const { place, mode } = a.parts[k]!;
+      const pump = duty[place]!;
+      const q = flows[k]!;
+      if (!(q > 0) || q > tops[k]! * (1 + 1e-9)) return null;
+      let speed = 1;
+      if (mode === 'drive') {
+        const needed = pump.speedFor(q, header + pump.branchLoss * q * q);
+        if (needed > pump.maxSpeed * (1 + 1e-9) || (!valve && needed < pump.minSpeed * (1 - 1e-9))) return null;
+        speed = Math.min(Math.max(needed, pump.minSpeed), pump.maxSpeed);
+      }
+      running.push({ pump, count: 1, flow: q, speed, onDrive: mode === 'drive' });
+      set += 2 ** place;
+    }
+    const order = (r: Running) => duty.indexOf(r.pump);
+    running.sort((one, two) => order(one) - order(two));
+    const state = new State(station, staticHead, set, running);
+    if (Math.abs(state.flow - flow) > 1e-9 * flow) return null;
+    if (!choice.overload && state.doubts.overloaded) return null;
+    if (choice.ranged && state.greatestShareOfBest > station.allowable!.to * (1 + SLACK)) return null;
+    return state;
+  }
+
+  /** Lower convex envelope of these states and of rest, at the static head the table was made for. */
+  batch(flow: number): Action | null {
+    this.hull ??= lowerHull(this.branches());
+    const piece = pieceAt(this.hull, flow);
+    if (!piece) return this.at(flow);
+    const { off } = this.pumps;
+    const stateAt = (point: HullPiece['from']): State | null =>
+      point.branch === null ? off : this.stateOf(point.flow);
+    const plain = this.at(flow);
+    if (!piece.chord) return plain;
+    const low = stateAt(piece.from);
+    const high = stateAt(piece.to);
+    if (!low || !high || !(low.flow <= flow && flow <= high.flow)) return plain;
+    const chord = shared(low, high, flow);
+    return plain && meanPower(plain) < meanPower(chord) ? plain : chord;
+  }
+
+  private stateOf(flow: number): State | null {
+    const action = this.at(flow);
+    if (!action) return null;
+    return action.share === 0 ? action.low : action.high;
+  }
+
+  /** Runs of nodes with a state, and each resting set's own point, as branches of power over flow. */
+  private branches(): Branch[] {
+    const power = (flow: number) => {
+      const action = this.at(flow);
+      return action ? meanPower(action) : Number.NaN;
+    };
+    const branches: Branch[] = [];
+    let from: number | null = null;
+    this.nodes.forEach((node, i) => {
+      const flow = (i + 1) * this.step;
+      if (node && from === null) from = flow;
+      const ends = from !== null && (!node || i === this.nodes.length - 1);
+      if (ends) {
+        branches.push({ from: from!, to: node ? flow : flow - this.step, power });
+        from = null;
+      }
+    });
+    for (const { settings } of this.rests) {
+      const state = this.pumps.pointOf(settings);
+      branches.push({ from: state.flow, to: state.flow, power: () => state.power });
+    }
+    return branches;
+  }
+}
+
+/** Scales free flows to a sum; what lies above a pump's most goes to the others. */
+function stretch(parts: readonly Part[], flows: number[], tops: readonly number[], sum: number, valve: boolean): void {
+  const capped = new Set<number>();
+  for (let round = 0; round <= parts.length; round++) {
+    let room = sum;
+    let free = 0;
+    parts.forEach(({ mode }, k) => {
+      if (mode === 'line' && !valve) return;
+      if (capped.has(k)) room -= flows[k]!;
+      else free += flows[k]!;
+    });
+    if (free <= 0) return;
+    const scale = room / free;
+    let more = false;
+    parts.forEach(({ mode }, k) => {
+      if ((mode === 'line' && !valve) || capped.has(k)) return;
+      flows[k]! *= scale;
+      if (flows[k]! > tops[k]!) {
+        flows[k] = tops[k]!;
+        capped.add(k);
+        more = true;
+      }
+    });
+    if (!more) return;
+  }
+}
+
+function nodeOf(flow: number, parts: readonly Part[]): Node {
+  const sorted = [...parts].sort((a, b) => a.place - b.place);
+  return { flow, parts: sorted, key: sorted.map(({ place, mode }) => `${place}${mode}`).join('+') };
+}
+
+interface PlacedMake {
+  readonly make: Make;
+  readonly places: readonly number[];
+}
+
+function makesOf(places: readonly number[], duty: readonly Pump[], leave: (pump: Pump) => Leave): PlacedMake[] {
+  const found = new Map<string, { least: LeastPower; places: number[] }>();
+  for (const place of places) {
+    const pump = duty[place]!;
+    const known = found.get(pump.make);
+    if (known) known.places.push(place);
+    else found.set(pump.make, { least: new LeastPower(pump, leave(pump)), places: [place] });
+  }
+  return [...found.values()].map(({ least, places: all }) => ({ make: { least, count: all.length }, places: all }));
+}
+
+/** Shares by make, told to pumps: of equal ones the first in order run. */
+function partsOf(shares: readonly Share[], makes: readonly PlacedMake[]): Part[] {
+  const used = new Map<LeastPower, number>();
+  const parts: Part[] = [];
+  for (const { least, mode, count, flow } of shares) {
+    const { places } = makes.find((each) => each.make.least === least)!;
+    for (let k = 0; k < count; k++) {
+      const next = used.get(least) ?? 0;
+      used.set(least, next + 1);
+      parts.push({ place: places[next]!, mode, flow });
+    }
+  }
+  return parts;
+}
+
+/** A set at its lowest: driven pumps at least speed, raised until inside a range where one is given; null for never. */
+function lowestSettings(
+  pumps: MixedPumps,
+  places: readonly number[],
+  range: { readonly from: number; readonly to: number } | null,
+): Setting[] | null {
+  const at = (raise: number): Setting[] =>
+    places.map((place) => {
+      const pump = pumps.duty[place]!;
+      if (!pump.hasDrive) return { place, speed: 1, onDrive: false };
+      return { place, speed: pump.minSpeed + raise * (pump.maxSpeed - pump.minSpeed), onDrive: true };
+    });
+  const inside = (raise: number) => {
+    const state = pumps.pointOf(at(raise));
+    return state.count === places.length && (range === null || state.leastShareOfBest >= range.from * (1 - SLACK));
+  };
+  if (inside(0)) return at(0);
+  if (!inside(1)) return null;
+  let bad = 0;
+  let good = 1;
+  for (let i = 0; i < 40; i++) {
+    const middle = (bad + good) / 2;
+    if (inside(middle)) good = middle;
+    else bad = middle;
+  }
+  return at(good);
+}
