@@ -26,7 +26,7 @@ export function bestCountMap(comparison: Comparison): BestCountMap {
   const top = record.flow.reduce((most, flow) => Math.max(most, flow), capacityOf(pumps, pumps.most)) * 1.001;
   const flowM3s = Array.from({ length: COLUMNS }, (_, i) => (top * (i + 0.5)) / COLUMNS);
   const staticHeadM = Array.from({ length: ROWS }, (_, i) => low + ((high - low) * (i + 0.5)) / ROWS);
-  const decide = (pumps.onDrives ? bestCount : fixedSpeed).start(pumps);
+  const decide = (pumps.onDrives ? bestCount : fixedSpeed).start(pumps, record);
   const count = staticHeadM.map((head) => {
     pumps.at(head);
     return flowM3s.map((flow) => {

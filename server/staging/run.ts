@@ -66,7 +66,7 @@ export function runRule(rule: Rule, pumps: StagedPumps, record: DemandRecord, on
   const share = new Float32Array(n);
   const speed = new Float32Array(n);
   const tally = new Tally(pumps);
-  const decide = rule.start(pumps);
+  const decide = rule.start(pumps, record);
   const steady = typeof record.staticHead === 'number';
   if (steady) pumps.at(record.staticHead as number);
   let end = Number.NaN;

@@ -9,7 +9,7 @@ import { type Action, held } from '../state.ts';
  * motor where there are any; of these, those inside the allowable range where there are any. Calls `consider` for each,
  * from few pumps to many, until it returns true.
  */
-function eachCandidate(pumps: StagedPumps, flow: number, consider: (trim: Trim) => boolean): void {
+export function eachCandidate(pumps: StagedPumps, flow: number, consider: (trim: Trim) => boolean): void {
   const { most } = pumps;
   let sound = false;
   let soundInside = false;
