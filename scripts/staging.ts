@@ -1,7 +1,6 @@
 /** npm run staging: the operator's card, from a station file. */
-import { refuse } from '../server/errors.ts';
 import { cardOf } from '../server/operatorCard.ts';
-import { optional, required, runCommand, stationFrom } from './support/command.ts';
+import { numberOf, optional, required, runCommand, stationFrom } from './support/command.ts';
 import { table } from './support/table.ts';
 
 const HELP = `npm run --silent staging -- --station S.json [--static-head H] [options]
@@ -21,8 +20,8 @@ Advice only: it controls nothing. Exit code 0 on success, 2 when something is to
 runCommand(HELP, { values: ['station', 'static-head', 'band', 'without'], switches: ['json'] }, (given) => {
   const { station } = stationFrom(required(given, 'station'));
   const card = cardOf(station, {
-    staticHead: number(optional(given, 'static-head'), '--static-head'),
-    bandPercent: number(optional(given, 'band'), '--band'),
+    staticHead: numberOf(optional(given, 'static-head'), '--static-head'),
+    bandPercent: numberOf(optional(given, 'band'), '--band'),
     without: optional(given, 'without')?.split(',') ?? [],
   });
   if (given.json === true) {
@@ -64,12 +63,3 @@ runCommand(HELP, { values: ['station', 'static-head', 'band', 'without'], switch
     ].join('\n'),
   );
 });
-
-function number(text: string | null, option: string): number | undefined {
-  if (text === null) return undefined;
-  const value = /^[-+]?(\d+\.?\d*|\.\d+)([eE][-+]?\d+)?$/.test(text) ? Number(text) : Number.NaN;
-  if (Number.isNaN(value)) {
-    refuse({ code: 'not_a_number', file: 'arguments', at: option, found: `'${text}'`, wanted: 'a number' });
-  }
-  return value;
-}

@@ -51,6 +51,14 @@ export const cardQuery = z.strictObject({
   without: z.string().optional(),
 });
 
+/** Query of `GET /api/stations/:id/advice`, in the station's units. */
+export const adviceQuery = z.strictObject({
+  flow: z.coerce.number(),
+  level: z.coerce.number().optional(),
+  staticHead: z.coerce.number().optional(),
+  without: z.string().optional(),
+});
+
 /** Body of `POST /api/stations/:id/spot-readings`: gauge readings, in the station's units (power in kW). */
 export const spotRequest = z.strictObject({
   readings: z

@@ -67,6 +67,18 @@ export function optional(given: Given, name: string): string | null {
   return given[name] === undefined ? null : required(given, name);
 }
 
+/** The text of an option as a number; undefined where it was not given. */
+export function numberOf(text: string, option: string): number;
+export function numberOf(text: string | null, option: string): number | undefined;
+export function numberOf(text: string | null, option: string): number | undefined {
+  if (text === null) return undefined;
+  const value = /^[-+]?(\d+\.?\d*|\.\d+)([eE][-+]?\d+)?$/.test(text) ? Number(text) : Number.NaN;
+  if (Number.isNaN(value)) {
+    refuse({ code: 'not_a_number', file: 'arguments', at: option, found: `'${text}'`, wanted: 'a number' });
+  }
+  return value;
+}
+
 /** A list given as `a,b,c`. */
 export function list(given: Given, name: string): string[] | undefined {
   const text = optional(given, name);

@@ -1,7 +1,8 @@
 import type { Router } from 'express';
 import { findComparison, type StoredComparison } from '../../db/comparisons.ts';
 import { findStation } from '../../db/stations.ts';
-import { cardQuery, caseRequest, spotRequest } from '../api.ts';
+import { advise } from '../advise.ts';
+import { adviceQuery, cardQuery, caseRequest, spotRequest } from '../api.ts';
 import { jsonBody, resource } from '../body.ts';
 import { caseOfStored } from '../caseOfStored.ts';
 import { recomputer } from '../compareRules.ts';
@@ -26,6 +27,15 @@ export function answerRoutes(router: Router, { db }: Context): void {
       (request, response) => {
         const { without, ...query } = readAs(cardQuery, request.query, 'query');
         response.json(cardOf(stationOf(request.params.id), { ...query, without: names(without) }));
+      },
+    ],
+  });
+
+  resource(router, '/stations/:id/advice', {
+    get: [
+      (request, response) => {
+        const { without, ...moment } = readAs(adviceQuery, request.query, 'query');
+        response.json(advise(stationOf(request.params.id), { ...moment, without: names(without) }));
       },
     ],
   });

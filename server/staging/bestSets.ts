@@ -50,6 +50,15 @@ export class BestSets {
     return null;
   }
 
+  /** The same for a single flow, without a table: for advice about this moment. */
+  bestNow(flow: number): Action | null {
+    for (const choice of this.choices()) {
+      const found = new SetTable(this.pumps, choice, flow).at(flow);
+      if (found) return found;
+    }
+    return null;
+  }
+
   /** Least mean power where any two of these states may share the time. */
   batch(flow: number): Action | null {
     for (const choice of this.choices()) {
@@ -101,13 +110,15 @@ class SetTable {
   private readonly rests: readonly { settings: readonly Setting[]; flow: number; perFlow: number }[];
   private hull: readonly HullPiece[] | null = null;
 
-  constructor(pumps: MixedPumps, choice: Strictness) {
+  /** @param only  a single flow to search, where no more will be asked */
+  constructor(pumps: MixedPumps, choice: Strictness, only?: number) {
     this.pumps = pumps;
     this.choice = choice;
     this.valve = pumps.station.surplus === 'throttle';
     const capacity = pumps.flatOut(pumps.most).flow;
-    this.step = capacity / NODES;
-    this.nodes = Array.from({ length: NODES }, (_, i) => this.search((i + 1) * this.step));
+    this.step = only ?? capacity / NODES;
+    const nodes = only === undefined ? NODES : 1;
+    this.nodes = Array.from({ length: nodes }, (_, i) => this.search((i + 1) * this.step));
     this.rests = this.valve ? [] : this.findRests();
   }
 
