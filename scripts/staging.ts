@@ -56,6 +56,12 @@ runCommand(HELP, { values: ['station', 'static-head', 'band', 'without'], switch
         ]),
       ]),
       ...card.steps.map((step) => `${step.from} to ${step.to}: ${step.text}`),
+      ...(card.sets.length > 0 ? [`Best sets as flow rises (${flow}):`] : []),
+      ...card.sets.map(
+        (set) =>
+          `  from ${digits(set.from)} to ${digits(set.to)}: ${set.pumps.join(' + ')}${set.text === '' ? '' : ` (${set.text})`}` +
+          `${set.savedKw === null || set.savedKw < 0.005 ? '' : `, ${set.savedKw.toPrecision(2)} kW less than the station's own order`}`,
+      ),
       ...card.notes.map((note) => `${note.code}: ${note.text}`),
       '',
       ...card.cautions,

@@ -17,6 +17,8 @@ export interface HandedCard {
   readonly pumps: readonly string[];
   readonly ratedSpeedRpm: number | null;
   readonly steps: readonly HandedStep[];
+  /** For pumps that differ: which set is the best as flow rises, against the station's own order; empty otherwise. */
+  readonly sets: readonly HandedSet[];
   /** Largest flow of one pump, of two, … */
   readonly capacities: readonly number[];
   readonly levels: readonly { readonly start: number; readonly stop: number }[];
@@ -41,6 +43,19 @@ export interface HandedStep {
   readonly reason: StepReason;
   readonly text: string;
   readonly crossings: readonly number[];
+}
+
+export interface HandedSet {
+  readonly from: number;
+  readonly to: number;
+  readonly pumps: readonly string[];
+  readonly add: readonly string[];
+  readonly drop: readonly string[];
+  readonly rests: boolean;
+  /** Against the best of the station's own order, in the middle of the stretch; null where that cannot meet it. */
+  readonly savedKw: number | null;
+  /** `add B, drop J` */
+  readonly text: string;
 }
 
 /** Speeds as share of rated; header head in the file's unit, and as a pressure. */
@@ -136,6 +151,25 @@ export function cardOf(
       atDropOff: point(step.atDropOff),
       crossings: step.crossings.map((each) => each / flow),
     })),
+    sets: card.sets.map((step) => {
+      const names = (places: readonly number[]) => places.map((place) => duty[place]!.name);
+      const add = names(step.add);
+      const drop = names(step.drop);
+      const text = [
+        ...(add.length > 0 ? [`add ${add.join(' and ')}`] : []),
+        ...(drop.length > 0 ? [`drop ${drop.join(' and ')}`] : []),
+      ].join(', ');
+      return {
+        from: step.from / flow,
+        to: step.to / flow,
+        pumps: names(step.places),
+        add,
+        drop,
+        rests: step.rests,
+        savedKw: step.savedPower === null ? null : step.savedPower / 1000,
+        text,
+      };
+    }),
     capacities: card.capacities.map((each) => each / flow),
     levels: card.levels.map(({ start, stop }) => ({ start: start / head, stop: stop / head })),
     moves: card.moves && { low: moved(card.moves.low), high: moved(card.moves.high) },

@@ -421,7 +421,8 @@ function lowestSettings(
     return state.count === places.length && (range === null || state.leastShareOfBest >= range.from * (1 - SLACK));
   };
   if (inside(0)) return at(0);
-  if (!inside(1)) return null;
+  // Pumps that cannot open their valves at least speed can be slowed down to no flow: nothing is shared with rest.
+  if (range === null || !inside(1)) return null;
   let bad = 0;
   let good = 1;
   for (let i = 0; i < 40; i++) {

@@ -5,6 +5,7 @@ import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { Station } from '../station/station.ts';
 import { GRAVITY } from '../units.ts';
 import { type Crossing, capacityOf, crossingsBetween, powerOfCount } from './crossings.ts';
+import { type SetStep, setLadder } from './setLadder.ts';
 import { type StagedPumps, stagedPumps } from './stagedPumps.ts';
 import { NEAR_DEAD_HEAD, type State } from './state.ts';
 
@@ -50,6 +51,8 @@ export interface OperatorCard {
   /** With drives that are there, with drives that are proposed, or direct on line. */
   readonly basis: 'drives' | 'proposed-drives' | 'direct-on-line';
   readonly steps: readonly CardStep[];
+  /** For pumps that differ: the best set as flow rises; empty where a count says who runs. */
+  readonly sets: readonly SetStep[];
   /** Largest flow of each count, from one pump up [m³/s]. */
   readonly capacities: readonly number[];
   readonly ratedSpeedRpm: number | null;
@@ -108,6 +111,7 @@ export function operatorCard(
         ? 'proposed-drives'
         : 'drives',
     steps,
+    sets: setLadder(pumps),
     capacities,
     ratedSpeedRpm: duty[0]!.ratedSpeed,
     levels: station.storage.levels,

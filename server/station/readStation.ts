@@ -1,5 +1,4 @@
-import type { PartLoad } from '../drive/partLoad.ts';
-import { type Fault, InputError, type Note } from '../errors.ts';
+import { type Fault, InputError } from '../errors.ts';
 import { type Drive, type Machine, type Motor, Pump } from '../hydraulics/pump.ts';
 import { ParabolaCurve, type PumpCurve, TableCurve } from '../hydraulics/pumpCurve.ts';
 import { type Friction, frictionCoefficient, PowerFriction } from '../hydraulics/systemCurve.ts';
@@ -7,19 +6,12 @@ import { waterDensity } from '../hydraulics/water.ts';
 import { readAs, shown } from '../readFile.ts';
 import { isTimeZone } from '../time.ts';
 import { FLOW_UNITS, HEAD_UNITS, isUsFlow, POWER_UNITS, US_GALLON } from '../units.ts';
-import type { Station } from './station.ts';
+import type { Reading } from './reading.ts';
+import { readDriveEfficiency, readMotorEfficiency } from './readPartLoad.ts';
+import { readPipes } from './readPipes.ts';
+import type { Main, Station } from './station.ts';
 import { type CurveEntry, type PartLoadEntry, type PumpEntry, type StationFile, stationFile } from './stationFile.ts';
 import { type Storage, volumeAt } from './storage.ts';
-
-/** Everything a reader of one part of the file needs: its units as factors, where faults and notes go. */
-interface Reading {
-  readonly flow: number;
-  readonly head: number;
-  readonly power: number;
-  readonly density: number;
-  readonly notes: Note[];
-  fault(code: Fault['code'], at: string, found: string, wanted: string): void;
-}
 
 /**
  * A station file, checked and turned into SI.
@@ -37,13 +29,14 @@ export function readStation(value: unknown, fileName: string): Station {
     head: HEAD_UNITS[file.units.head],
     power: POWER_UNITS[file.units.power],
     density: file.liquid?.density ?? waterDensity(temperature ?? 15),
+    temperature,
     notes: [],
     fault: (code, at, found, wanted) => faults.push({ code, file: fileName, at, found, wanted }),
   };
   if (!isTimeZone(file.timeZone)) {
     reading.fault('unknown_zone', 'timeZone', shown(file.timeZone), "a zone of the IANA list, such as 'Europe/Dublin'");
   }
-  const friction = readFriction(file, reading);
+  const { friction, main } = readFriction(file, reading);
   const pumps = readPumps(file.pumps, reading);
   const duty = inOrder(file, pumps.duty, reading);
   const flowSteps = readSteps(file, duty.length, reading);
@@ -64,6 +57,7 @@ export function readStation(value: unknown, fileName: string): Station {
     dischargeLevel: scaled(file.system.dischargeLevel, reading.head),
     suctionLevel: scaled(file.system.suctionLevel, reading.head),
     friction,
+    main,
     storage,
     duty,
     standby: pumps.standby,
@@ -80,11 +74,16 @@ function scaled(value: number | undefined, unit: number): number | null {
   return value === undefined ? null : value * unit;
 }
 
-function readFriction(file: StationFile, reading: Reading): Friction {
-  const { friction, staticHead } = file.system;
+function readFriction(file: StationFile, reading: Reading): { friction: Friction; main: Main | null } {
+  const { friction, staticHead, velocity } = file.system;
+  if ('pipes' in friction) return readPipes(friction.pipes, velocity, reading);
+  if (velocity) {
+    reading.fault('unknown_field', 'system.velocity', 'limits of velocity', 'friction.pipes, which give a diameter');
+  }
   const exponent = friction.exponent ?? 2;
   if ('coefficient' in friction) {
-    return new PowerFriction((friction.coefficient * reading.head) / reading.flow ** exponent, exponent);
+    const k = (friction.coefficient * reading.head) / reading.flow ** exponent;
+    return { friction: new PowerFriction(k, exponent), main: null };
   }
   friction.points.forEach((point, i) => {
     if (point.head < staticHead) {
@@ -97,7 +96,8 @@ function readFriction(file: StationFile, reading: Reading): Friction {
     }
   });
   const points = friction.points.map((p) => ({ flow: p.flow * reading.flow, head: p.head * reading.head }));
-  return new PowerFriction(frictionCoefficient(points, staticHead * reading.head, exponent), exponent);
+  const k = frictionCoefficient(points, staticHead * reading.head, exponent);
+  return { friction: new PowerFriction(k, exponent), main: null };
 }
 
 function readPumps(entries: readonly PumpEntry[], reading: Reading): { duty: Pump[]; standby: Pump[] } {
@@ -147,7 +147,7 @@ function readMachines(entry: PumpEntry, at: string, reading: Reading): Machine[]
   for (const { part, at: place } of parts) {
     const curve = readCurve(part.curve, `${place}.curve`, reading);
     const motor = readMotor(part.motor, `${place}.motor`, reading);
-    const drive = part.drive ? readDrive(part.drive, part.motor.ratedPower, `${place}.drive`, reading) : null;
+    const drive = part.drive ? readDrive(part.drive, motor.ratedPower, `${place}.drive`, reading) : null;
     if (curve) machines.push({ curve, inSeries: part.inSeries ?? 1, motor, drive });
   }
   return machines.length === parts.length ? machines : null;
@@ -158,7 +158,7 @@ function readMotor(entry: MotorEntry, at: string, reading: Reading): Motor {
   return {
     ratedPower: rated,
     serviceFactor: entry.serviceFactor ?? 1,
-    efficiency: readPartLoad(entry.efficiency, rated !== null, `${at}.efficiency`, reading),
+    efficiency: readMotorEfficiency(entry.efficiency, rated, `${at}.efficiency`, reading),
   };
 }
 
@@ -170,7 +170,7 @@ type DriveEntry = {
   efficiency: PartLoadEntry;
 };
 
-function readDrive(entry: DriveEntry, ratedPower: number | undefined, at: string, reading: Reading): Drive {
+function readDrive(entry: DriveEntry, ratedPower: number | null, at: string, reading: Reading): Drive {
   const maxSpeed = entry.maxSpeed ?? 1;
   if (entry.minSpeed > maxSpeed) {
     reading.fault('speed_range', `${at}.minSpeed`, `${entry.minSpeed}`, `at most maxSpeed, ${maxSpeed}`);
@@ -179,24 +179,8 @@ function readDrive(entry: DriveEntry, ratedPower: number | undefined, at: string
     fitted: entry.fitted ?? true,
     minSpeed: entry.minSpeed,
     maxSpeed,
-    efficiency: readPartLoad(entry.efficiency, ratedPower !== undefined, `${at}.efficiency`, reading),
+    efficiency: readDriveEfficiency(entry.efficiency, ratedPower, `${at}.efficiency`, reading),
   };
-}
-
-function readPartLoad(entry: PartLoadEntry, rated: boolean, at: string, reading: Reading): PartLoad {
-  if (typeof entry === 'number') return entry;
-  if (!rated) reading.fault('missing_field', at, 'a table over load, with no motor.ratedPower', 'motor.ratedPower');
-  entry.forEach((point, i) => {
-    if (i > 0 && point.load <= entry[i - 1]!.load) {
-      reading.fault(
-        'out_of_range',
-        `${at}[${i}].load`,
-        `${point.load}`,
-        `more than ${entry[i - 1]!.load}, the load before`,
-      );
-    }
-  });
-  return entry;
 }
 
 function readCurve(entry: CurveEntry, at: string, reading: Reading): PumpCurve | null {

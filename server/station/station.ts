@@ -9,6 +9,16 @@ export interface FlowRange {
   readonly to: number;
 }
 
+/** What the velocity in the pipes is judged by. */
+export interface Main {
+  /** Cross-sections [m²] of the widest pipe, where flow is slowest, and of the narrowest. */
+  readonly widestArea: number;
+  readonly narrowestArea: number;
+  /** Usual limits [m/s]: below the first solids settle, above the second friction and surge grow. */
+  readonly leastVelocity: number;
+  readonly mostVelocity: number;
+}
+
 /** A pump station, read and checked; all in SI. Pumps that stand for several in the file are here one by one. */
 export interface Station {
   readonly name: string;
@@ -30,6 +40,8 @@ export interface Station {
   readonly dischargeLevel: number | null;
   readonly suctionLevel: number | null;
   readonly friction: Friction;
+  /** The pipes as the velocity sees them; null where the file has none. */
+  readonly main: Main | null;
   readonly storage: Storage;
   /** Duty pumps in the order in which they are brought on. */
   readonly duty: readonly Pump[];

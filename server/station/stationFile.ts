@@ -9,7 +9,8 @@ const positive = z.number().positive();
 const notNegative = z.number().min(0);
 const efficiency = z.number().gt(0).max(1);
 
-const partLoad = z.union([efficiency, z.array(z.strictObject({ load: positive, efficiency })).min(1)]);
+/** A number, a table over load, or the name of a published table. */
+const partLoad = z.union([efficiency, z.array(z.strictObject({ load: positive, efficiency })).min(1), z.string()]);
 
 const motor = z.strictObject({
   ratedPower: positive.optional(),
@@ -98,9 +99,21 @@ const trainOfPumps = z.strictObject({
 
 const exponent = z.number().min(1).max(2.5).optional();
 
+/** Length in the unit of head; diameter and roughness in mm, or in inches where heads are in feet. */
+const pipe = z.strictObject({
+  name: z.string().min(1).optional(),
+  length: notNegative,
+  diameter: positive,
+  roughness: notNegative.optional(),
+  hazenWilliamsC: z.number().min(20).max(200).optional(),
+  minorLoss: notNegative.optional(),
+  fittings: z.array(z.strictObject({ type: z.string(), count: z.number().int().min(1).optional() })).optional(),
+});
+
 const friction = z.union([
   z.strictObject({ coefficient: notNegative, exponent }),
   z.strictObject({ points: z.array(z.strictObject({ flow: positive, head: positive })).min(1), exponent }),
+  z.strictObject({ pipes: z.array(pipe).min(1) }),
 ]);
 
 const range = z
@@ -134,6 +147,8 @@ export const stationFile = z.strictObject({
     friction,
     dischargeLevel: z.number().optional(),
     suctionLevel: z.number().optional(),
+    /** Usual least and greatest velocity in the main, in the unit of head per second. */
+    velocity: range.optional(),
   }),
   storage: z
     .strictObject({
