@@ -6,6 +6,8 @@ export interface Choices {
   readonly rules: readonly RuleId[] | null;
   /** Names of pumps taken out. */
   readonly without: readonly string[];
+  /** Which arithmetic made the result: two of one edition agree where their inputs do. */
+  readonly edition: number;
 }
 
 export interface NewComparison {
@@ -52,6 +54,33 @@ export function insertComparison(db: Db, made: NewComparison): number {
       made.nowMs,
     );
   return Number(lastInsertRowid);
+}
+
+/** The newest comparison made from the very same files and choices, or null. */
+export function findSameComparison(db: Db, asked: Omit<NewComparison, 'result' | 'nowMs'>): StoredComparison | null {
+  const row = db
+    .prepare(
+      `SELECT id FROM comparison
+       WHERE station_id = ? AND record_id = ? AND tariff_id IS ? AND station_file = ? AND tariff_file IS ? AND choices = ?
+       ORDER BY id DESC LIMIT 1`,
+    )
+    .get(
+      asked.stationId,
+      asked.recordId,
+      asked.tariffId,
+      JSON.stringify(asked.stationFile),
+      asked.tariffFile === null ? null : JSON.stringify(asked.tariffFile),
+      JSON.stringify(asked.choices),
+    ) as { id: number } | undefined;
+  return row ? findComparison(db, row.id) : null;
+}
+
+/** Removes all but the newest comparisons of a station; what-ifs would else pile up with every touch of a number. */
+export function keepNewest(db: Db, stationId: number, kept: number): void {
+  db.prepare(
+    `DELETE FROM comparison WHERE station_id = @stationId AND id NOT IN
+       (SELECT id FROM comparison WHERE station_id = @stationId ORDER BY id DESC LIMIT @kept)`,
+  ).run({ stationId, kept });
 }
 
 /** A comparison by id, or null. */

@@ -1,4 +1,10 @@
-import { findComparison, insertComparison, type StoredComparison } from '../db/comparisons.ts';
+import {
+  findComparison,
+  findSameComparison,
+  insertComparison,
+  keepNewest,
+  type StoredComparison,
+} from '../db/comparisons.ts';
 import type { Db } from '../db/open.ts';
 import { findRecord, readLog } from '../db/records.ts';
 import { findStation, rememberTariff } from '../db/stations.ts';
@@ -23,8 +29,15 @@ export interface StoredComparisonRequest {
   readonly without?: readonly string[] | undefined;
 }
 
+/** Raised whenever the arithmetic changes, so that a stored result is not taken for one of today's. */
+const EDITION = 1;
+
+/** Comparisons stored for one station: as many as an afternoon of what-ifs. */
+const KEPT_PER_STATION = 300;
+
 /**
- * Compares staging rules on a stored station and record, and stores the result with the files it was made from.
+ * Compares staging rules on a stored station and record, and stores the result with the files it was made from. The
+ * same files and choices give the comparison that is already there.
  *
  * @param nowMs  when, UTC [ms]
  * @throws       InputError for an id, rule or pump unknown, a record of another station, a tariff that does not fit
@@ -43,18 +56,26 @@ export function compareStored(db: Db, request: StoredComparisonRequest, nowMs: n
       wanted: `a record of station ${station.id}`,
     });
   }
-  const choices = { rules: (request.rules as RuleId[] | undefined) ?? null, without: request.without ?? [] };
+  const choices = {
+    rules: (request.rules as RuleId[] | undefined) ?? null,
+    without: request.without ?? [],
+    edition: EDITION,
+  };
   const files = { stationFile: request.station ?? station.file, tariffFile: tariff?.file ?? null };
+  const ids = { stationId: station.id, recordId: record.id, tariffId: tariff?.id ?? null };
+  if (tariff) rememberTariff(db, station.id, tariff.id);
+  const same = findSameComparison(db, { ...ids, ...files, choices });
+  if (same) return same;
   const comparison = compute(db, { recordId: record.id, choices, ...files });
   const result = resultOf(comparison, {
     station: jsonDigest(files.stationFile),
     record: record.sha256,
     tariff: tariff && jsonDigest(tariff.file),
   });
-  const ids = { stationId: station.id, recordId: record.id, tariffId: tariff?.id ?? null };
   const id = db.transaction(() => {
-    if (tariff) rememberTariff(db, station.id, tariff.id);
-    return insertComparison(db, { ...ids, ...files, choices, result, nowMs });
+    const made = insertComparison(db, { ...ids, ...files, choices, result, nowMs });
+    keepNewest(db, station.id, KEPT_PER_STATION);
+    return made;
   })();
   return findComparison(db, id)!;
 }

@@ -94,7 +94,7 @@ describe('what belongs together goes together', () => {
       tariffId,
       stationFile: { name: 'S' },
       tariffFile: tariffId === null ? null : { name: 'T' },
-      choices: { rules: ['fixed-speed'], without: ['P-2'] },
+      choices: { rules: ['fixed-speed'], without: ['P-2'], edition: 1 },
       result,
       nowMs: 5,
     });
