@@ -1,5 +1,6 @@
 import { lossAt, type PartLoad } from '../drive/partLoad.ts';
 import { GRAVITY } from '../units.ts';
+import type { NpshCurve } from './npsh.ts';
 import { type PumpCurve, speedCorrection } from './pumpCurve.ts';
 import { root } from './roots.ts';
 
@@ -25,6 +26,8 @@ export interface Machine {
   readonly inSeries: number;
   readonly motor: Motor;
   readonly drive: Drive | null;
+  /** NPSH required over flow at rated speed, where the maker's curve is known. */
+  readonly npshr?: NpshCurve | null;
 }
 
 /** Where the electric power of a pump goes [W]; the water's share is ρ·g·q·H. */
@@ -233,6 +236,16 @@ export class Pump {
     let most = 0;
     for (const m of this.machines) most = Math.max(most, q / ((onDrive && m.drive ? speed : 1) * m.curve.bestFlow));
     return most;
+  }
+
+  /**
+   * NPSH that the pump needs at its inlet [m]; of a train, what its first machine needs. null where its curve is unknown.
+   */
+  npshRequired(q: number, speed: number, onDrive: boolean): number | null {
+    const { npshr, drive } = this.machines[0]!;
+    if (!npshr) return null;
+    const s = onDrive && drive ? speed : 1;
+    return s * s * npshr.at(q / s);
   }
 
   /** Whether flow q is the end of the curve at speed s, to the rounding of the arithmetic. */

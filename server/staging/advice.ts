@@ -90,6 +90,7 @@ const NO_RECORD = {
   seconds: new Float64Array(0),
   flow: new Float64Array(0),
   staticHead: 0,
+  suctionLevel: null,
   fromMs: 0,
   toMs: 0,
   coveredSeconds: 0,

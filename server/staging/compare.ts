@@ -11,11 +11,13 @@ import { type DemandRecord, demandRecord } from './demandRecord.ts';
 import { firmCapacity } from './firmCapacity.ts';
 import { floorPower } from './floorOverRecord.ts';
 import { flowOfLog } from './flowOfLog.ts';
+import { hoursText } from './hoursText.ts';
 import { type ComparisonResult, RULE_IDS, type RuleId, type RuleResult } from './result.ts';
 import type { Rule } from './rule.ts';
 import { RULES } from './rules/all.ts';
 import { type OnAction, type Run, runRule } from './run.ts';
 import { stagedPumps } from './stagedPumps.ts';
+import { watchNotes } from './watchNotes.ts';
 
 export interface ComparisonRequest {
   readonly station: Station;
@@ -110,6 +112,7 @@ export function compareRules(request: ComparisonRequest): Comparison {
       ...notes,
       ...recordNotes(record),
       ...runNotes(runs, bills),
+      ...watchNotes(station, record, runs),
     ],
   };
 }
@@ -261,10 +264,6 @@ function runNotes(runs: readonly Run[], bills: readonly (Bill | null)[]): Note[]
   return notes;
 }
 
-function hoursText(hours: number): string {
-  return hours < 10 ? `${hours.toPrecision(2)} h` : `${Math.round(hours)} h`;
-}
-
 /** The comparison as `nth-pump/result/1`. */
 export function resultOf(comparison: Comparison, sha256: InputHashes): ComparisonResult {
   const { station, record, tariff, runs, bills, duty } = comparison;
@@ -311,10 +310,15 @@ function ruleResult(run: Run, bill: Bill | null, duty: readonly Pump[], floorKwh
     hoursByCount: Object.fromEntries(t.secondsByCount.map((seconds, n) => [String(n), seconds / 3600])),
     hoursBySet: hoursBySet(t.secondsBySet, duty),
     outsidePreferredHours: t.outsidePreferredHours,
+    outsidePreferredHoursByPump: Object.fromEntries(
+      duty.map((pump, i) => [pump.name, t.watched.outsidePreferredSeconds[i]! / 3600]),
+    ),
     outsideAllowableHours: t.outsideAllowableHours,
     nearDeadHeadHours: t.nearDeadHeadHours,
     overloadHours: t.overloadHours,
     endOfCurveHours: t.endOfCurveHours,
+    ...(t.watched.main && { main: t.watched.main }),
+    ...(t.watched.npsh && { npsh: t.watched.npsh }),
     starts: t.starts,
     ledgerKwh: t.ledgerKwh,
     ...(bill && { months: bill.months, periods: bill.periods }),

@@ -11,6 +11,8 @@ export interface DemandRecord {
   readonly flow: Float64Array;
   /** Static head of each interval [m], or one for all. */
   readonly staticHead: Float64Array | number;
+  /** Level at the suction of each interval [m], NaN where unknown, or one for all; null where nothing says. */
+  readonly suctionLevel: Float64Array | number | null;
   /** First instant and end of the whole record, and hours of it without a flow. */
   readonly fromMs: number;
   readonly toMs: number;
@@ -66,6 +68,7 @@ export function demandRecord(station: Station, log: Log): DemandRecord {
     seconds,
     flow: flows,
     staticHead: heads,
+    suctionLevel: suctionLevels(station, log, pick),
     fromMs,
     toMs,
     coveredSeconds: covered,
@@ -98,6 +101,16 @@ function staticHeads(
       text: `The static head of each interval follows the record's level on the ${station.storage.side} side.`,
     },
   };
+}
+
+function suctionLevels(
+  station: Station,
+  log: Log,
+  pick: (channel: Float64Array) => Float64Array,
+): Float64Array | number | null {
+  const otherwise = station.suction?.level ?? null;
+  if (!log.level || station.storage.side !== 'suction') return otherwise;
+  return pick(log.level).map((level) => (Number.isNaN(level) ? (otherwise ?? level) : level));
 }
 
 function refuseNegative(heads: Float64Array, startMs: Float64Array): void {

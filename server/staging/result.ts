@@ -1,5 +1,6 @@
 import type { Note } from '../errors.ts';
 import type { MonthBill } from '../tariff/tariff.ts';
+import type { MainVelocity, NpshMargin } from './watch.ts';
 
 /** Every rule the program knows; model.md calls them by these ids and so do files, HTTP and commands. */
 export const RULE_IDS = [
@@ -52,10 +53,16 @@ export interface RuleResult {
   readonly hoursByCount: Readonly<Record<string, number>>;
   readonly hoursBySet: Readonly<Record<string, number>>;
   readonly outsidePreferredHours: number | null;
+  /** By name of the pump: who it was that ran outside the preferred range. */
+  readonly outsidePreferredHoursByPump?: Readonly<Record<string, number>>;
   readonly outsideAllowableHours: number | null;
   readonly nearDeadHeadHours: number;
   readonly overloadHours: number;
   readonly endOfCurveHours: number;
+  /** Only where the station file has pipes. */
+  readonly main?: MainVelocity;
+  /** Only where the suction is known. */
+  readonly npsh?: NpshMargin;
   /** null where unknown (no active volume and the pumps cycle inside intervals). */
   readonly starts: number | null;
   readonly ledgerKwh: LedgerKwh;

@@ -5,6 +5,7 @@ import type { LedgerKwh } from './result.ts';
 import type { Rule } from './rule.ts';
 import type { StagedPumps } from './stagedPumps.ts';
 import type { Action, State } from './state.ts';
+import { Watch, type Watched } from './watch.ts';
 
 /** What a rule did in each interval, by columns, and what that adds up to. */
 export interface Run {
@@ -29,13 +30,14 @@ export interface Totals {
   /** Seconds by pumps running, and by set of pumps (bits in the station's order). */
   readonly secondsByCount: readonly number[];
   readonly secondsBySet: ReadonlyMap<number, number>;
-  readonly outsidePreferredHours: number | null;
+  readonly outsidePreferredHours: number;
   readonly outsideAllowableHours: number | null;
   readonly nearDeadHeadHours: number;
   readonly overloadHours: number;
   readonly endOfCurveHours: number;
   /** null where pumps cycle and the volume between start and stop is unknown. */
   readonly starts: number | null;
+  readonly watched: Watched;
 }
 
 /** Called for each interval with what the rule did in it, for those who want more than the sums. */
@@ -65,7 +67,7 @@ export function runRule(rule: Rule, pumps: StagedPumps, record: DemandRecord, on
   const highCount = new Uint8Array(n);
   const share = new Float32Array(n);
   const speed = new Float32Array(n);
-  const tally = new Tally(pumps);
+  const tally = new Tally(pumps, record.suctionLevel !== null);
   const decide = rule.start(pumps, record);
   const steady = typeof record.staticHead === 'number';
   if (steady) pumps.at(record.staticHead as number);
@@ -78,6 +80,7 @@ export function runRule(rule: Rule, pumps: StagedPumps, record: DemandRecord, on
     const { low, high } = action;
     const start = record.startMs[i]!;
     // Half a second of slack: starts are whole milliseconds, lengths seconds.
+    tally.suctionLevel = suctionLevelAt(record, i);
     tally.add(action, flow, seconds, Math.abs(start - end) < 500);
     end = start + seconds * 1000;
     const rising = action.share;
@@ -96,9 +99,17 @@ export function runRule(rule: Rule, pumps: StagedPumps, record: DemandRecord, on
   return { rule, series, lowCount, highCount, share, speed, totals: tally.totals() };
 }
 
+function suctionLevelAt({ suctionLevel }: DemandRecord, i: number): number {
+  if (suctionLevel === null) return Number.NaN;
+  return typeof suctionLevel === 'number' ? suctionLevel : suctionLevel[i]!;
+}
+
 /** Sums over a record; every sum is of its own quantity, none is found as a remainder. */
 class Tally {
+  /** At the suction, of the interval that comes next [m]; NaN where unknown. */
+  suctionLevel = Number.NaN;
   private readonly pumps: StagedPumps;
+  private readonly watch: Watch;
   private readonly standby: number;
   private readonly volume: number | null;
   private energy = 0;
@@ -126,8 +137,9 @@ class Tally {
   private readonly byCount: number[];
   private readonly bySet = new Map<number, number>();
 
-  constructor(pumps: StagedPumps) {
+  constructor(pumps: StagedPumps, suctionKnown: boolean) {
     this.pumps = pumps;
+    this.watch = new Watch(pumps.station, pumps.duty, suctionKnown);
     this.standby = pumps.station.standbyPower;
     this.volume = pumps.station.storage.activeVolume;
     this.byCount = new Array(pumps.most + 1).fill(0);
@@ -156,6 +168,7 @@ class Tally {
     const power = state.power + this.standby;
     if (power > this.peakState) this.peakState = power;
     if (state.count === 0) return;
+    this.watch.add(state, seconds, this.suctionLevel);
     const { parts, doubts } = state;
     this.lift += parts.lift * seconds;
     this.pipeFriction += parts.pipeFriction * seconds;
@@ -212,12 +225,13 @@ class Tally {
       peakStateW: this.peakState,
       secondsByCount: this.byCount,
       secondsBySet: this.bySet,
-      outsidePreferredHours: station.preferred ? this.outsidePreferred / 3600 : null,
+      outsidePreferredHours: this.outsidePreferred / 3600,
       outsideAllowableHours: station.allowable ? this.outsideAllowable / 3600 : null,
       nearDeadHeadHours: this.nearDeadHead / 3600,
       overloadHours: this.overload / 3600,
       endOfCurveHours: this.endOfCurve / 3600,
       starts: this.startsKnown ? this.starts : null,
+      watched: this.watch.watched(),
     };
   }
 }

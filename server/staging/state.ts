@@ -147,7 +147,7 @@ export class State {
       overloaded,
       atEndOfCurve,
       nearDeadHead: least < NEAR_DEAD_HEAD * (1 - SLACK),
-      outsidePreferred: preferred !== null && !isInside(preferred, least, most),
+      outsidePreferred: !isInside(preferred, least, most),
       outsideAllowable: allowable !== null && !isInside(allowable, least, most),
     };
   }

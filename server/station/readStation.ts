@@ -9,9 +9,16 @@ import { FLOW_UNITS, HEAD_UNITS, isUsFlow, POWER_UNITS, US_GALLON } from '../uni
 import type { Reading } from './reading.ts';
 import { readDriveEfficiency, readMotorEfficiency } from './readPartLoad.ts';
 import { readPipes } from './readPipes.ts';
+import { readNpshCurve, readSuction } from './readSuction.ts';
 import type { Main, Station } from './station.ts';
 import { type CurveEntry, type PartLoadEntry, type PumpEntry, type StationFile, stationFile } from './stationFile.ts';
 import { type Storage, volumeAt } from './storage.ts';
+
+/**
+ * Preferred range where the file has none, as shares of best-efficiency flow: ANSI/HI 9.6.3-2012 as the trade quotes it
+ * for pumps that are not of high specific speed. The allowable range is the maker's, so it has no default.
+ */
+const USUAL_PREFERRED = { from: 0.7, to: 1.2 };
 
 /**
  * A station file, checked and turned into SI.
@@ -41,6 +48,7 @@ export function readStation(value: unknown, fileName: string): Station {
   const duty = inOrder(file, pumps.duty, reading);
   const flowSteps = readSteps(file, duty.length, reading);
   const storage = readStorage(file, reading);
+  const suction = readSuction(file, storage, reading);
   if (faults.length > 0) throw new InputError(faults);
   return {
     name: file.name,
@@ -52,12 +60,13 @@ export function readStation(value: unknown, fileName: string): Station {
     surplus: file.surplus,
     standbyPower: (file.standbyPower ?? 0) * reading.power,
     allowable: file.allowable ?? null,
-    preferred: file.preferred ?? null,
+    preferred: file.preferred ?? USUAL_PREFERRED,
     staticHead: file.system.staticHead * reading.head,
     dischargeLevel: scaled(file.system.dischargeLevel, reading.head),
     suctionLevel: scaled(file.system.suctionLevel, reading.head),
     friction,
     main,
+    suction,
     storage,
     duty,
     standby: pumps.standby,
@@ -148,7 +157,8 @@ function readMachines(entry: PumpEntry, at: string, reading: Reading): Machine[]
     const curve = readCurve(part.curve, `${place}.curve`, reading);
     const motor = readMotor(part.motor, `${place}.motor`, reading);
     const drive = part.drive ? readDrive(part.drive, motor.ratedPower, `${place}.drive`, reading) : null;
-    if (curve) machines.push({ curve, inSeries: part.inSeries ?? 1, motor, drive });
+    const npshr = readNpshCurve(part.curve.npshr, `${place}.curve.npshr`, reading);
+    if (curve) machines.push({ curve, inSeries: part.inSeries ?? 1, motor, drive, npshr });
   }
   return machines.length === parts.length ? machines : null;
 }

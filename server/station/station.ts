@@ -19,6 +19,20 @@ export interface Main {
   readonly mostVelocity: number;
 }
 
+/** What the suction of the pumps is judged by; heads and levels in m. */
+export interface Suction {
+  /** Head of the air's pressure less that of the vapour, (p_air − p_vapour)/(ρ·g). */
+  readonly airHead: number;
+  /** Level of the impellers, over the datum of the suction level. */
+  readonly pumpLevel: number;
+  /** k in the loss k·q² of each pump's own suction pipe [m/(m³/s)²]. */
+  readonly loss: number;
+  /** Least NPSH available as a multiple of NPSH required. */
+  readonly margin: number;
+  /** Level where a record says nothing else; null where unknown. */
+  readonly level: number | null;
+}
+
 /** A pump station, read and checked; all in SI. Pumps that stand for several in the file are here one by one. */
 export interface Station {
   readonly name: string;
@@ -34,7 +48,8 @@ export interface Station {
   /** Drawn at all times [W]. */
   readonly standbyPower: number;
   readonly allowable: FlowRange | null;
-  readonly preferred: FlowRange | null;
+  /** Only for counting hours. */
+  readonly preferred: FlowRange;
   /** Static head [m] where a record says nothing else. */
   readonly staticHead: number;
   readonly dischargeLevel: number | null;
@@ -42,6 +57,8 @@ export interface Station {
   readonly friction: Friction;
   /** The pipes as the velocity sees them; null where the file has none. */
   readonly main: Main | null;
+  /** null where what is needed for NPSH is not all known. */
+  readonly suction: Suction | null;
   readonly storage: Storage;
   /** Duty pumps in the order in which they are brought on. */
   readonly duty: readonly Pump[];

@@ -27,7 +27,10 @@ const drive = z.strictObject({
 
 const curveExtras = {
   maxFlow: positive.optional(),
-  npshr: z.array(z.strictObject({ flow: notNegative, npshr: positive })).optional(),
+  npshr: z
+    .array(z.strictObject({ flow: notNegative, npshr: positive }))
+    .min(2)
+    .optional(),
   speedCorrection: z.boolean().optional(),
 };
 
@@ -142,11 +145,19 @@ export const stationFile = z.strictObject({
   standbyPower: notNegative.optional(),
   allowable: range.optional(),
   preferred: range.optional(),
+  /** Least NPSH available as a multiple of NPSH required. */
+  npshMargin: z.number().min(1).optional(),
   system: z.strictObject({
     staticHead: z.number().min(0),
     friction,
     dischargeLevel: z.number().optional(),
     suctionLevel: z.number().optional(),
+    /** Level of the impellers, over the same datum as the suction level. */
+    pumpLevel: z.number().optional(),
+    /** One point of the loss in each pump's own suction pipe; its flow is that of the one pump. */
+    suctionLoss: z.strictObject({ flow: positive, head: notNegative }).optional(),
+    /** Above sea level, in the unit of head. */
+    altitude: z.number().optional(),
     /** Usual least and greatest velocity in the main, in the unit of head per second. */
     velocity: range.optional(),
   }),
