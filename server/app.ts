@@ -5,6 +5,7 @@ import { loopbackNamesOnly, requireToken, safeHeaders, sameOriginWrites } from '
 import { problemHandler, sendProblem } from './problem.ts';
 import { answerRoutes } from './routes/answers.ts';
 import { comparisonRoutes } from './routes/comparisons.ts';
+import { factRoutes } from './routes/facts.ts';
 import { recordRoutes } from './routes/records.ts';
 import { stationRoutes } from './routes/stations.ts';
 import { tariffRoutes } from './routes/tariffs.ts';
@@ -40,6 +41,7 @@ export function createApp(options: AppOptions): Express {
     get: [(_request, response) => void response.json({ status: 'ok', version: options.version })],
   });
   stationRoutes(api, options);
+  factRoutes(api, options);
   recordRoutes(api, options);
   tariffRoutes(api, options);
   comparisonRoutes(api, options);

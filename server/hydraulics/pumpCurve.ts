@@ -1,4 +1,5 @@
 import { GRAVITY } from '../units.ts';
+import type { CurvePoint } from './curveFit.ts';
 import { Pchip } from './pchip.ts';
 
 /**
@@ -14,6 +15,8 @@ export interface PumpCurve {
   readonly speedCorrection: boolean;
   /** Set where h(q) = shutoffHead − shape·q²; then speeds and operating points have closed forms. */
   readonly shape: number | null;
+  /** The points it was read from; null where it was given as a parabola. */
+  readonly points: readonly CurvePoint[] | null;
   head(q: number): number;
   efficiency(q: number): number;
   /** Shaft power ρ·g·q·h/η; finite at q = 0, where η is 0 too. */
@@ -49,6 +52,7 @@ export class ParabolaCurve implements PumpCurve {
   readonly bestEfficiency: number;
   readonly endFlow: number;
   readonly speedCorrection: boolean;
+  readonly points = null;
   private readonly density: number;
 
   constructor(p: ParabolaShape) {
@@ -101,6 +105,7 @@ export class TableCurve implements PumpCurve {
   readonly bestEfficiency: number;
   readonly speedCorrection: boolean;
   readonly shape = null;
+  readonly points: readonly CurvePoint[];
   private readonly density: number;
   /** Head right of its highest point. */
   private readonly heads: Pchip;
@@ -111,6 +116,7 @@ export class TableCurve implements PumpCurve {
   constructor(t: TableShape) {
     const top = highest(t.heads);
     this.heads = new Pchip(t.flows.slice(top), t.heads.slice(top));
+    this.points = t.flows.map((flow, i) => ({ flow, head: t.heads[i]! }));
     this.topFlow = t.flows[top]!;
     this.shutoffHead = t.heads[top]!;
     this.density = t.density;
