@@ -4,7 +4,7 @@ import { answersOf, QUESTIONS, type QuestionId } from './answers.ts';
 import { api, type ComparisonRequest, linesOf, type StationBody, type TariffBody } from './api.ts';
 import { PageContext, type QuestionProps } from './context.ts';
 import { Format, UNIT_CHOICES } from './format.ts';
-import { useComparison, useMedia, usePrinting, useRemembered } from './hooks.ts';
+import { useComparison, useMedia, usePrinting, useRemembered, useSheet } from './hooks.ts';
 import type { Imported } from './importing.ts';
 import { latestRecord, tariffFor } from './opening.ts';
 import { AddFiles } from './parts/AddFiles.tsx';
@@ -12,6 +12,7 @@ import { AdviceOnly, AllCautions } from './parts/Cautions.tsx';
 import { Draft } from './parts/Draft.tsx';
 import { Header } from './parts/Header.tsx';
 import { Rail } from './parts/Rail.tsx';
+import { Sheet } from './parts/Sheet.tsx';
 import { Stations } from './parts/Stations.tsx';
 import { Basis } from './questions/basis/Basis.tsx';
 import { Change } from './questions/change/Change.tsx';
@@ -49,6 +50,7 @@ export function App() {
   const [units, setUnits] = useRemembered('units', UNIT_CHOICES, 'file');
   const [digits, setDigits] = useRemembered('figures', ['three', 'all'] as const, 'three');
   const printing = usePrinting();
+  const { sheet, printSheet } = useSheet();
   const dark = useMedia('(prefers-color-scheme: dark)');
   const narrow = useMedia('(max-width: 48rem)');
 
@@ -154,6 +156,7 @@ export function App() {
     requestAnimationFrame(() => heading.current?.focus());
   };
 
+  const page = format && { format, allFigures: digits === 'all', printing, dark, printSheet };
   const shown = printing ? QUESTIONS : QUESTIONS.filter(({ id }) => id === question);
   const questionProps: QuestionProps | null =
     open && saved && record
@@ -220,8 +223,8 @@ export function App() {
         <div class="columns">
           <Rail answers={answers} current={question} busy={compared.busy} onOpen={openQuestion} />
           <main id="answer" tabIndex={-1} aria-busy={compared.busy} class={compared.busy && open ? 'stale' : undefined}>
-            {format && questionProps ? (
-              <PageContext.Provider value={{ format, allFigures: digits === 'all', printing, dark }}>
+            {page && questionProps ? (
+              <PageContext.Provider value={page}>
                 {shown.map(({ id, title }) => {
                   const Part = QUESTION_PARTS[id];
                   return (
@@ -244,6 +247,13 @@ export function App() {
       <footer>
         <AdviceOnly />
       </footer>
+      {sheet && page && (
+        <PageContext.Provider value={page}>
+          <Sheet kind={sheet.kind} answers={answers}>
+            {sheet.content}
+          </Sheet>
+        </PageContext.Provider>
+      )}
     </>
   );
 }

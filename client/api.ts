@@ -1,21 +1,19 @@
 import type { ComparisonBody, RecordEntry, StationEntry, TariffEntry } from '../server/api.ts';
+import type { CaseFile } from '../server/economics/caseFile.ts';
 import { type Fault, faultLine } from '../server/errors.ts';
+import type { CaseResult } from '../server/makeCase.ts';
+import type { HandedCard, LateStagingCost } from '../server/operatorCard.ts';
+import type { BestCountMap } from '../server/staging/bestCountMap.ts';
 import type { PowerOverFlow, RuleSeries } from '../server/staging/pictures.ts';
 import type { RuleId } from '../server/staging/result.ts';
 import type { StationFile } from '../server/station/stationFile.ts';
+import type { TariffFile } from '../server/tariff/tariffFile.ts';
 
 /** A stored station: the file its owner wrote, with its id. */
 export type StationBody = StationFile & { readonly id: number; readonly demo: boolean };
 
-/** What the page needs of a stored tariff; the rest of the file is the owner's. */
-export interface TariffBody {
-  readonly id: number;
-  readonly name: string;
-  readonly demo: boolean;
-  readonly currency: string;
-  readonly timeZone: string;
-  readonly fixedPerMonth?: number;
-}
+/** A stored tariff: the file its owner wrote, with its id. */
+export type TariffBody = TariffFile & { readonly id: number; readonly demo: boolean };
 
 export interface ComparisonRequest {
   readonly stationId: number;
@@ -110,17 +108,29 @@ export const api = {
       { method: 'POST', body: file, type },
       fileName,
     ),
+  removeRecord: (stationId: number, id: number) =>
+    call<null>(`/stations/${stationId}/records/${id}`, { method: 'DELETE' }),
 
   tariffs: (signal?: AbortSignal) => call<TariffEntry[]>('/tariffs', { signal }),
   tariff: (id: number, signal?: AbortSignal) => call<TariffBody>(`/tariffs/${id}`, { signal }),
   addTariff: (file: unknown, fileName: string) =>
     call<TariffBody>('/tariffs', { method: 'POST', json: file }, fileName),
+  keepTariff: (id: number, file: TariffFile) => call<TariffBody>(`/tariffs/${id}`, { method: 'PUT', json: file }),
   removeTariff: (id: number) => call<null>(`/tariffs/${id}`, { method: 'DELETE' }),
 
   compare: (request: ComparisonRequest, signal?: AbortSignal) =>
     call<ComparisonBody>('/comparisons', { method: 'POST', json: request, signal }),
   powerOverFlow: (comparisonId: number, signal?: AbortSignal) =>
     call<PowerOverFlow>(`/comparisons/${comparisonId}/power-over-flow`, { signal }),
+  card: (comparisonId: number, { bandPercent }: { bandPercent: number }, signal?: AbortSignal) =>
+    call<HandedCard & { readonly lateStaging: LateStagingCost | null }>(
+      `/comparisons/${comparisonId}/card?${new URLSearchParams({ bandPercent: String(bandPercent) })}`,
+      { signal },
+    ),
+  map: (comparisonId: number, signal?: AbortSignal) =>
+    call<BestCountMap>(`/comparisons/${comparisonId}/map`, { signal }),
+  makeCase: (comparisonId: number, file: CaseFile, signal?: AbortSignal) =>
+    call<CaseResult>('/cases', { method: 'POST', json: { comparisonId, case: file }, signal }),
   series: (comparisonId: number, rule: RuleId, part: { fromMs?: number; toMs?: number }, signal?: AbortSignal) => {
     const query = new URLSearchParams({ rule });
     if (part.fromMs !== undefined) query.set('fromMs', String(Math.floor(part.fromMs)));

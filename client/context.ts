@@ -1,4 +1,4 @@
-import { createContext } from 'preact';
+import { type ComponentChildren, createContext } from 'preact';
 import { useContext } from 'preact/hooks';
 import type { ComparisonBody, RecordEntry } from '../server/api.ts';
 import type { Opened } from './answers.ts';
@@ -13,7 +13,12 @@ export interface Page {
   readonly allFigures: boolean;
   readonly printing: boolean;
   readonly dark: boolean;
+  /** Prints one sheet of its own instead of the page. */
+  readonly printSheet: (kind: SheetKind, content: ComponentChildren) => void;
 }
+
+/** What can be printed on a sheet of its own. */
+export type SheetKind = 'card' | 'case';
 
 export const PageContext = createContext<Page | null>(null);
 

@@ -1,8 +1,9 @@
-import { options } from 'preact';
-import { useEffect, useState } from 'preact/hooks';
+import { type ComponentChildren, options } from 'preact';
+import { useCallback, useEffect, useState } from 'preact/hooks';
 import type { ComparisonBody } from '../server/api.ts';
 import type { PowerOverFlow } from '../server/staging/pictures.ts';
 import { api, type ComparisonRequest, linesOf } from './api.ts';
+import type { SheetKind } from './context.ts';
 
 /** What the server made of a request, and whether it is still at work on a newer one. */
 export interface Compared {
@@ -60,8 +61,10 @@ export function usePrinting(): boolean {
   const [printing, setPrinting] = useState(false);
   useEffect(() => {
     const turn = (on: boolean) => () => {
-      document.documentElement.toggleAttribute('data-printing', on);
-      atOnce(() => setPrinting(on));
+      const root = document.documentElement;
+      root.toggleAttribute('data-printing', on);
+      // A sheet of its own is printed as it stands; the page behind it need not be drawn for paper.
+      if (!on || !root.hasAttribute('data-sheet')) atOnce(() => setPrinting(on));
     };
     const [before, after] = [turn(true), turn(false)];
     addEventListener('beforeprint', before);
@@ -81,6 +84,28 @@ function atOnce(change: () => void): void {
   change();
   if (waiting) options.debounceRendering = waiting;
   else delete options.debounceRendering;
+}
+
+/** A sheet that is printed by itself: it is rendered, printed, and gone when the browser has done with it. */
+export function useSheet(): {
+  readonly sheet: { readonly kind: SheetKind; readonly content: ComponentChildren } | null;
+  readonly printSheet: (kind: SheetKind, content: ComponentChildren) => void;
+} {
+  const [sheet, setSheet] = useState<{ kind: SheetKind; content: ComponentChildren } | null>(null);
+  useEffect(() => {
+    if (sheet === null) return;
+    const root = document.documentElement;
+    const done = () => setSheet(null);
+    root.setAttribute('data-sheet', sheet.kind);
+    addEventListener('afterprint', done);
+    print();
+    return () => {
+      root.removeAttribute('data-sheet');
+      removeEventListener('afterprint', done);
+    };
+  }, [sheet]);
+  const printSheet = useCallback((kind: SheetKind, content: ComponentChildren) => setSheet({ kind, content }), []);
+  return { sheet, printSheet };
 }
 
 /** Whether a media query holds, followed as it changes. */

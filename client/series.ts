@@ -120,6 +120,18 @@ export function niceTop(value: number): number {
   return value;
 }
 
+/** Round numbers from one value to another for the ticks of an axis, about `wanted` of them. */
+export function niceTicks(from: number, to: number, wanted: number): number[] {
+  if (!(to > from)) return [];
+  const rough = (to - from) / wanted;
+  const decade = 10 ** Math.floor(Math.log10(rough));
+  const step = decade * ([1, 2, 5, 10].find((times) => decade * times >= rough) ?? 10);
+  const ticks: number[] = [];
+  for (let i = Math.ceil(from / step - 1e-9); i * step <= to + 1e-9 * step; i++)
+    ticks.push(Number((i * step).toPrecision(6)));
+  return ticks;
+}
+
 /** Rules side by side as bars: what the least takes, and what lies above it. */
 export interface Bars {
   readonly title: string;

@@ -60,7 +60,7 @@ const STATION: Demo['station'] = {
       drive: { fitted: false, minSpeed: 0.5, maxSpeed: 1.0, efficiency: 0.97 },
     },
   ],
-  rules: { 'flow-steps': { bringOn: [5.3, 10.2], dropOff: [4.8, 9.0] } },
+  rules: { 'flow-steps': { bringOn: [5.5, 10.5], dropOff: [4.8, 9.0] } },
 };
 
 const TARIFF: Demo['tariff'] = {

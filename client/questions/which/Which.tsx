@@ -12,11 +12,13 @@ import { Table } from '../../parts/Table.tsx';
 import { Touch } from '../../parts/Touch.tsx';
 import { curvesOf, hoursByFlow, leastCounts } from '../../series.ts';
 import { dutyNames } from '../../station.ts';
+import { Card } from './Card.tsx';
+import { CountMap } from './CountMap.tsx';
 import { hoursSentence } from './hoursSentence.ts';
 
 /** Which pump, when: power over flow for each count, and under it the hours that the record spends at each flow. */
-export function Which({ open, saved, draft, touch, without, onWithout }: QuestionProps) {
-  const { format } = usePage();
+export function Which({ open, record, saved, draft, touch, without, onWithout }: QuestionProps) {
+  const { format, printing } = usePage();
   const { power, comparison } = open;
   const curves = useMemo(() => curvesOf(power, format), [power, format]);
   const hours = useMemo(() => hoursByFlow(power, format), [power, format]);
@@ -48,6 +50,9 @@ export function Which({ open, saved, draft, touch, without, onWithout }: Questio
         numbers={() => <HoursNumbers power={power} />}
       />
       <p class="aside">{howDrawn(power, draft.surplus)}</p>
+      {/* The card has a sheet of its own. */}
+      {!printing && <Card open={open} record={record} />}
+      {!printing && <CountMap comparisonId={comparison.id} most={power.counts.length} />}
       <Cautions ids={['minimumFlow', 'minimumSpeed', 'surge', 'solids']} />
     </>
   );
