@@ -16,6 +16,8 @@ import { Sheet } from './parts/Sheet.tsx';
 import { Stations } from './parts/Stations.tsx';
 import { Basis } from './questions/basis/Basis.tsx';
 import { Change } from './questions/change/Change.tsx';
+import { type CaseDraft, caseAnswer, isPlaceholder, shortVerdict } from './questions/change/caseTerms.ts';
+import { useCase } from './questions/change/useCase.ts';
 import { Cost } from './questions/cost/Cost.tsx';
 import { Which } from './questions/which/Which.tsx';
 import { differences, type Path, stationFileOf, withNumber } from './station.ts';
@@ -42,6 +44,7 @@ export function App() {
   const [loaded, setLoaded] = useState<Loaded | null>(null);
   const [choice, setChoice] = useState<Choice>({});
   const [draft, setDraft] = useState<StationBody | null>(null);
+  const [cases, setCases] = useState<ReadonlyMap<number, CaseDraft>>(new Map());
   const [without, setWithout] = useState<readonly string[]>([]);
   const [question, setQuestion] = useState<QuestionId>(questionInAddress());
   const [faults, setFaults] = useState<readonly string[]>([]);
@@ -107,14 +110,30 @@ export function App() {
     const fixedPerMonth = tariff?.id === made.request.tariffId ? (tariff?.fixedPerMonth ?? 0) : 0;
     return { station: made.request.station ?? stationFileOf(saved), comparison, power, fixedPerMonth };
   }, [compared.made, saved, tariff]);
-  const answers = useMemo(() => (open && format ? answersOf(open, format) : null), [open, format]);
+  const writeCase = (stationId: number, terms: CaseDraft | null) =>
+    setCases((before) => {
+      const next = new Map(before);
+      if (terms === null) next.delete(stationId);
+      else next.set(stationId, terms);
+      return next;
+    });
+  const work = useCase(open, (openId !== null && cases.get(openId)) || null, (draft) => {
+    if (openId !== null) writeCase(openId, draft);
+  });
+  const made = work?.result ?? null;
+  const placeholder = work !== null && isPlaceholder(work.draft, work.start);
+  const answers = useMemo(() => {
+    if (open === null || format === null) return null;
+    const all = answersOf(open, format);
+    return made ? { ...all, change: caseAnswer(made, placeholder) } : all;
+  }, [open, format, made, placeholder]);
   const others = useVerdicts(entries ?? [], { openId, ready: answers !== null, choice: units });
   const verdicts = useMemo(
     () =>
       answers && openId !== null
-        ? new Map([...others, [openId, `${isWhatIf ? 'What if: ' : ''}${answers.change}`]])
+        ? new Map([...others, [openId, `${isWhatIf ? 'What if: ' : ''}${made ? shortVerdict(made) : answers.change}`]])
         : others,
-    [others, answers, openId, isWhatIf],
+    [others, answers, openId, isWhatIf, made],
   );
 
   const openStation = (id: number) => {
@@ -125,8 +144,13 @@ export function App() {
     setKeepFaults([]);
     history.replaceState(null, '', `?station=${id}${location.hash}`);
   };
-  const imported = ({ station, tariff, record }: Imported) => {
+  const imported = ({ station, tariff, record, caseFile }: Imported) => {
     if (station) openStation(station.id);
+    const caseOf = station?.id ?? openId;
+    if (caseFile && caseOf !== null) {
+      writeCase(caseOf, caseFile);
+      openQuestion('change');
+    }
     setChoice((before) => ({
       ...(station ? {} : before),
       ...(record && { recordId: record.id }),
@@ -160,7 +184,7 @@ export function App() {
   const shown = printing ? QUESTIONS : QUESTIONS.filter(({ id }) => id === question);
   const questionProps: QuestionProps | null =
     open && saved && record
-      ? { open, record, saved, draft: draft ?? saved, touch, without, onWithout: setWithout }
+      ? { open, record, saved, draft: draft ?? saved, touch, without, onWithout: setWithout, work }
       : null;
   return (
     <>

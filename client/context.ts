@@ -4,6 +4,7 @@ import type { ComparisonBody, RecordEntry } from '../server/api.ts';
 import type { Opened } from './answers.ts';
 import type { StationBody } from './api.ts';
 import type { Format } from './format.ts';
+import type { CaseWork } from './questions/change/useCase.ts';
 import type { Path } from './station.ts';
 
 /** What is open on the page, for all that shows a part of it. */
@@ -40,4 +41,6 @@ export interface QuestionProps {
   readonly onWithout: (names: readonly string[]) => void;
   /** The draft the reader is looking at: `open.station` is the one that is computed. */
   readonly draft: StationBody;
+  /** The case for a change; null where there is no tariff or nothing to propose. */
+  readonly work: CaseWork | null;
 }

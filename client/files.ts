@@ -1,13 +1,13 @@
 /** Which of the program's files a dropped file is, told by its content and not by its name. */
-export type FileKind = 'station' | 'tariff' | 'record';
+export type FileKind = 'station' | 'tariff' | 'record' | 'case';
 
 export type Told =
-  | { readonly kind: 'station' | 'tariff'; readonly content: unknown }
+  | { readonly kind: 'station' | 'tariff' | 'case'; readonly content: unknown }
   /** `type` is what a record is sent as: rows of text, or a profile in JSON. */
   | { readonly kind: 'record'; readonly type: 'text/csv' | 'application/json' }
   | { readonly kind: 'unknown'; readonly line: string };
 
-const WANTED = 'a station, tariff or profile in JSON, or a record as CSV';
+const WANTED = 'a station, tariff, case or profile in JSON, or a record as CSV';
 
 /**
  * @param name  what its owner calls the file, for the fault
@@ -34,6 +34,7 @@ export function tellFile(name: string, text: string): Told {
   if (typeof format !== 'string') return unknown('no format', 'format');
   if (format.startsWith('nth-pump/station/')) return { kind: 'station', content };
   if (format.startsWith('nth-pump/tariff/')) return { kind: 'tariff', content };
+  if (format.startsWith('nth-pump/case/')) return { kind: 'case', content };
   if (format.startsWith('nth-pump/profile/')) return { kind: 'record', type: 'application/json' };
   return unknown(`'${format}'`, 'format');
 }
@@ -41,4 +42,14 @@ export function tellFile(name: string, text: string): Told {
 /** Whether a text is meant as JSON, also where it is broken. */
 export function looksLikeJson(text: string): boolean {
   return /^\uFEFF?\s*[{[]/.test(text);
+}
+
+/** Hands a file to the reader, as JSON. */
+export function saveFile(name: string, content: unknown): void {
+  const url = URL.createObjectURL(new Blob([`${JSON.stringify(content, null, 2)}\n`], { type: 'application/json' }));
+  const link = document.createElement('a');
+  link.href = url;
+  link.download = name;
+  link.click();
+  URL.revokeObjectURL(url);
 }

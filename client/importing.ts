@@ -1,4 +1,6 @@
 import type { RecordEntry } from '../server/api.ts';
+import { type CaseFile, readCase } from '../server/economics/caseFile.ts';
+import { faultLine, InputError } from '../server/errors.ts';
 import { type api, linesOf, type StationBody, type TariffBody } from './api.ts';
 import { looksLikeJson, type Told, tellFile } from './files.ts';
 
@@ -18,6 +20,8 @@ export interface Imported {
   readonly tariff: TariffBody | null;
   /** The last of the records, which is the one to open. */
   readonly record: RecordEntry | null;
+  /** Terms of a change; they are kept by the page and not stored. */
+  readonly caseFile: CaseFile | null;
 }
 
 export interface ImportOutcome {
@@ -37,7 +41,19 @@ export async function given(file: Blob & { readonly name: string }): Promise<Giv
   const beginning = await file.slice(0, BEGINNING).text();
   const text = looksLikeJson(beginning) && file.size > BEGINNING ? await file.text() : beginning;
   const told = tellFile(file.name, text);
-  return { name: file.name, file, told, faults: told.kind === 'unknown' ? [told.line] : [] };
+  return { name: file.name, file, told, faults: faultsOf(told, file.name) };
+}
+
+function faultsOf(told: Told, name: string): readonly string[] {
+  if (told.kind === 'unknown') return [told.line];
+  if (told.kind !== 'case') return [];
+  try {
+    readCase(told.content, name);
+    return [];
+  } catch (error) {
+    if (error instanceof InputError) return error.faults.map(faultLine);
+    throw error;
+  }
 }
 
 /**
@@ -51,9 +67,10 @@ export function together(inHand: readonly Given[], more: readonly Given[]): Give
         next.name === old.name ||
         (old.faults.length > 0 && (old.told.kind === 'unknown' || old.told.kind === next.told.kind)),
     );
-  return [...inHand.filter((old) => !mends(old)), ...more].map((each) =>
-    each.told.kind === 'unknown' ? each : { ...each, faults: [] },
-  );
+  return [...inHand.filter((old) => !mends(old)), ...more].map((each) => ({
+    ...each,
+    faults: faultsOf(each.told, each.name),
+  }));
 }
 
 /**
@@ -70,7 +87,7 @@ export async function importFiles(
   const faults = new Map<Given, readonly string[]>();
   for (const each of files) if (each.faults.length > 0) faults.set(each, each.faults);
   const of = (kind: Told['kind']) => files.filter((each) => each.told.kind === kind);
-  for (const kind of ['station', 'tariff'] as const) {
+  for (const kind of ['station', 'tariff', 'case'] as const) {
     for (const second of of(kind).slice(1)) {
       faults.set(second, [`${second.name}: found a second ${kind} file; wanted one at a time`]);
     }
@@ -100,7 +117,11 @@ export async function importFiles(
     const type = 'type' in each.told ? each.told.type : 'text/csv';
     record = (await step(each, () => storing.addRecord(recordsOf!, each.file, each.name, type))) ?? record;
   }
-  if (faults.size === 0) return { imported: { station, tariff, record }, inHand: [], waitsFor: null };
+  if (faults.size === 0) {
+    const [terms] = of('case');
+    const caseFile = terms === undefined ? null : (content(terms) as CaseFile);
+    return { imported: { station, tariff, record, caseFile }, inHand: [], waitsFor: null };
+  }
 
   // A station takes its records along.
   if (station) await storing.removeStation(station.id);

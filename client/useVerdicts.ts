@@ -4,6 +4,7 @@ import { changeAnswer } from './answers.ts';
 import { api } from './api.ts';
 import { Format, type UnitChoice } from './format.ts';
 import { latestRecord, tariffFor } from './opening.ts';
+import { caseFileOf, shortVerdict, startingCase } from './questions/change/caseTerms.ts';
 
 /** Stations beyond this number keep their verdict to themselves until they are opened. */
 const MOST = 6;
@@ -48,5 +49,8 @@ async function verdictOn(entry: StationEntry, choice: UnitChoice, signal: AbortS
   const comparison = await api.compare({ stationId: entry.id, recordId: record.id, tariffId }, signal);
   const { timeZone, currency, units: file } = station;
   const open = { station, comparison, fixedPerMonth: tariff?.fixedPerMonth ?? 0 };
+  const start = comparison.inputs.tariff === null ? null : startingCase(station, comparison);
+  const terms = start && caseFileOf(start.draft);
+  if (terms) return shortVerdict(await api.makeCase(comparison.id, terms, signal));
   return changeAnswer(open, new Format({ file, choice, currency, timeZone }));
 }

@@ -10,7 +10,7 @@ interface AddFilesProps {
   readonly first: boolean;
 }
 
-const KIND_NAMES = { station: 'station', tariff: 'tariff', record: 'record', unknown: 'not known' };
+const KIND_NAMES = { station: 'station', tariff: 'tariff', record: 'record', case: 'case', unknown: 'not known' };
 
 /** Takes files dropped anywhere on the page, or picked: station, record and tariff in any order and number. */
 export function AddFiles({ open, onImported, first }: AddFilesProps) {
@@ -102,7 +102,7 @@ export function AddFiles({ open, onImported, first }: AddFilesProps) {
         {first ? (
           '. They stay on this machine.'
         ) : (
-          <span class="aside"> or drop them on the page: station, record, tariff</span>
+          <span class="aside"> or drop them on the page: station, record, tariff, case</span>
         )}
       </p>
       {first && (

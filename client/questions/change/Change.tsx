@@ -1,3 +1,4 @@
+import type { CaseResult } from '../../../server/makeCase.ts';
 import { HEAD_UNITS } from '../../../server/units.ts';
 import { type Change as ChangeFound, changesOf, changeText, liftText, unlikeText, weigh } from '../../answers.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
@@ -9,9 +10,100 @@ import { RULE_TEXT } from '../../rules.ts';
 import { equipmentOf } from '../../station.ts';
 import { isScaled } from '../../yearly.ts';
 import { LEDGER_PARTS, partOf, withoutDust } from '../cost/ledger.ts';
+import { madeFrom } from '../which/cardText.ts';
+import { CaseForm } from './CaseForm.tsx';
+import { CaseView } from './CaseView.tsx';
+import { isPlaceholder } from './caseTerms.ts';
+import type { CaseWork } from './useCase.ts';
 
-/** Whether a change is worth it: each possible change against what the station can do as it is equipped. */
-export function Change({ open, saved, draft, touch }: QuestionProps) {
+/** Whether a change is worth it: the case for it where there is money to weigh, else energy against energy. */
+export function Change(props: QuestionProps) {
+  return props.work === null ? <EnergyChange {...props} /> : <TheCase {...props} work={props.work} />;
+}
+
+function TheCase({ open, record, saved, draft, touch, work }: QuestionProps & { readonly work: CaseWork }) {
+  const { format, printing, printSheet } = usePage();
+  const { result, start } = work;
+  const placeholder = isPlaceholder(work.draft, start);
+  const rules = open.comparison.rules;
+  const [from, to] = [work.draft.baseline, work.draft.proposed].map((id) => rules.find((rule) => rule.rule === id));
+  const unlike = from && to ? unlikeText([{ from, to }], format) : null;
+  return (
+    <>
+      <div aria-busy={work.busy} class={work.busy ? 'stale' : undefined}>
+        {result ? (
+          <div class="case">
+            <CaseView result={result} placeholder={placeholder} />
+            {unlike && <p>{unlike}.</p>}
+          </div>
+        ) : (
+          <p role="status">
+            {work.busy
+              ? 'Working out the case…'
+              : work.draft.capital === null
+                ? 'Unknown until a price is given: see the terms below.'
+                : 'Not answered: see what is marked in the terms.'}
+          </p>
+        )}
+      </div>
+      <div class="touches no-print">
+        <Touch
+          label="Static head"
+          measure={format.head}
+          fileFactor={HEAD_UNITS[draft.units.head]}
+          value={draft.system.staticHead}
+          saved={saved.system.staticHead}
+          onChange={(value) => touch(['system', 'staticHead'], value)}
+        />
+        <button
+          type="button"
+          disabled={result === null}
+          onClick={() =>
+            result && printSheet('case', <CaseSheet open={open} record={record} work={work} result={result} />)
+          }
+        >
+          Print the case
+        </button>
+      </div>
+      {!printing && <CaseForm work={work} rules={rules.map((rule) => rule.rule)} />}
+      {/* On paper the ledger of all rules stands under what it costs. */}
+      {!printing && from && to && from !== to && <LedgerDifference change={{ from, to }} />}
+      <Cautions ids={['drives', 'surge', 'firm']} />
+    </>
+  );
+}
+
+interface CaseSheetProps extends Pick<QuestionProps, 'open' | 'record'> {
+  readonly work: CaseWork;
+  readonly result: CaseResult;
+}
+
+/** The case on one side of paper, for whoever decides. */
+function CaseSheet({ open, record, work, result }: CaseSheetProps) {
+  const { format } = usePage();
+  return (
+    <>
+      <p class="sheet-kind">The case for a change</p>
+      <h1>{result.station}</h1>
+      <CaseView result={result} placeholder={isPlaceholder(work.draft, work.start)} brief />
+      <ul class="sheet-cautions">
+        {result.cautions.map((text) => (
+          <li key={text}>{text}</li>
+        ))}
+        {result.notes.map((note) => (
+          <li key={note.code + note.text}>{note.text}</li>
+        ))}
+      </ul>
+      <p class="made">
+        Printed {format.day(Date.now())}. From {madeFrom(open.comparison, record, format)}. Tariff:{' '}
+        {open.comparison.inputs.tariff}.
+      </p>
+    </>
+  );
+}
+
+/** Each possible change against what the station can do as it is equipped, in energy, for want of a tariff. */
+function EnergyChange({ open, saved, draft, touch }: QuestionProps) {
   const { format, printing } = usePage();
   const found = changesOf(open);
   const weighed = weigh(open);
@@ -78,15 +170,15 @@ export function Change({ open, saved, draft, touch }: QuestionProps) {
       {/* On paper the ledger of all rules stands under what it costs. */}
       {!printing && <LedgerDifference change={deciding} />}
       <p class="aside">
-        What a change costs to make, its payback and how sure it is are not in these figures. Less than a year of record
-        has not seen every season.
+        What a change costs to make and its payback need a tariff: give one to have the case worked out. Less than a
+        year of record has not seen every season.
       </p>
       <Cautions ids={['drives', 'surge', 'firm']} />
     </>
   );
 }
 
-function LedgerDifference({ change: { from, to } }: { readonly change: ChangeFound }) {
+function LedgerDifference({ change: { from, to } }: { readonly change: Pick<ChangeFound, 'from' | 'to'> }) {
   const { format } = usePage();
   const rows = LEDGER_PARTS.map(({ part, name }) => ({
     name,

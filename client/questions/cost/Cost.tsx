@@ -10,6 +10,7 @@ import { Picture } from '../../parts/Picture.tsx';
 import { type Column, Table } from '../../parts/Table.tsx';
 import { RULE_TEXT, ruleName } from '../../rules.ts';
 import { type Bars, countsOf } from '../../series.ts';
+import { LedgerBars } from './LedgerBars.tsx';
 import { LedgerTable } from './LedgerTable.tsx';
 import { RuleDetails } from './RuleDetails.tsx';
 
@@ -49,7 +50,11 @@ export function Cost({ open }: QuestionProps) {
       </Picture>
       {/* Paper has room for two sides; the shares of the best count are under its picture. */}
       {!printing && <HoursTable rules={rules} />}
-      <LedgerTable rules={rules} />
+      {printing ? (
+        <LedgerTable rules={rules} />
+      ) : (
+        <LedgerBars rules={rules} today={weighed.today.rule} floorKwh={open.comparison.floor?.energyKwh} />
+      )}
       <Cautions ids={['starts', 'suction']} />
     </>
   );
@@ -105,13 +110,24 @@ function columnsOf(rules: readonly RuleResult[], format: Format): Column<RuleRes
     column('Energy', format.energy, (rule) => rule.energyKwh),
     column('Per volume', format.specific, (rule) => rule.kwhPerM3, true),
     ...money,
-    ...(rules.some((rule) => rule.aboveFloorPercent !== undefined)
-      ? [column('Above least energy', format.percent, (rule) => rule.aboveFloorPercent, true)]
-      : []),
+    ...(rules.some((rule) => rule.aboveFloorPercent !== undefined) ? [above(format)] : []),
     column('Peak', format.power, (rule) => rule.peakKw, true),
     column('Shortfall', format.volume, (rule) => rule.shortfallM3, true),
     column('Starts', format.plain, (rule) => rule.starts, true),
   ];
+}
+
+/** How far a rule is above the least possible, in the accent for what could be saved. */
+function above(format: Format): Column<RuleResult> {
+  return {
+    head: 'Above least energy',
+    unit: format.percent.unit,
+    cell: (rule) => (
+      <span class="above-floor">
+        <Figure of={format.percent} value={rule.aboveFloorPercent} bare />
+      </span>
+    ),
+  };
 }
 
 function HoursTable({ rules }: { readonly rules: readonly RuleResult[] }) {

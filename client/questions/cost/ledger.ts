@@ -27,3 +27,35 @@ export function partOf(
 export function withoutDust(value: number, total: number): number {
   return Math.abs(value) < DUST * total ? 0 : value;
 }
+
+/** A rule's ledger as a bar: every part as a share of the longest bar. */
+export interface LedgerBar<Rule> {
+  readonly rule: Rule;
+  /** Parts that hold nothing are left out. */
+  readonly parts: readonly {
+    readonly part: keyof LedgerKwh;
+    readonly name: string;
+    readonly kwh: number;
+    readonly share: number;
+  }[];
+  /** What lies above the floor, at the end of the bar; null where the floor is not known. */
+  readonly above: { readonly from: number; readonly share: number } | null;
+}
+
+/** Bars on one scale, so that rules can be compared by eye. */
+export function ledgerBars<Rule extends Pick<RuleResult, 'ledgerKwh' | 'energyKwh'>>(
+  rules: readonly Rule[],
+  floorKwh: number | undefined,
+): LedgerBar<Rule>[] {
+  const longest = Math.max(...rules.map((rule) => rule.energyKwh));
+  return rules.map((rule) => ({
+    rule,
+    parts: LEDGER_PARTS.map(({ part, name }) => ({ part, name, kwh: partOf(rule, part) }))
+      .filter(({ kwh }) => kwh > 0)
+      .map((each) => ({ ...each, share: each.kwh / longest })),
+    above:
+      floorKwh === undefined
+        ? null
+        : { from: floorKwh / longest, share: withoutDust(Math.max(0, rule.energyKwh - floorKwh), longest) / longest },
+  }));
+}

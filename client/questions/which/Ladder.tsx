@@ -37,7 +37,10 @@ export function Ladder({ card, mains, pressure }: LadderProps) {
   const turns = { mains, ratedSpeedRpm: card.ratedSpeedRpm };
   const most = card.capacities.length;
   return (
-    <div class={card.steps.length > 5 ? 'ladder many' : 'ladder'} style={`--steps: ${Math.max(1, card.steps.length)}`}>
+    <div
+      class={card.steps.length > 5 ? 'ladder many' : 'ladder'}
+      style={{ '--steps': String(Math.max(1, card.steps.length)) }}
+    >
       <div class="rail-of-flow" aria-hidden="true">
         <span class="end top">{sayFlow(ladder.top)}</span>
         <span class="end foot">0</span>
