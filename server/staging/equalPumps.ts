@@ -222,7 +222,9 @@ export class EqualPumps implements StagedPumps {
       least,
       pump.shutoffHead(1),
     );
-    return this.oneDriven(count, low, header);
+    // What the others leave, not what its curve says: where a drooping curve is held flat, one head has many flows.
+    const fixedFlow = pump.flowInto(header, 1);
+    return this.mixed(count, fixedFlow, flow - (count - 1) * fixedFlow, low);
   }
 
   /** n − 1 direct on line and one trimmed to the rest of Q; its speed may be outside its limits: the rule looks. */
