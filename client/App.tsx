@@ -1,8 +1,13 @@
 import { useCallback, useEffect, useMemo, useRef, useState } from 'preact/hooks';
 import type { RecordEntry, StationEntry, TariffEntry } from '../server/api.ts';
+import type { StationFile } from '../server/station/stationFile.ts';
+import type { TariffFile } from '../server/tariff/tariffFile.ts';
 import { answersOf, QUESTIONS, type QuestionId } from './answers.ts';
 import { api, type ComparisonRequest, linesOf, type StationBody, type TariffBody } from './api.ts';
 import { PageContext, type QuestionProps } from './context.ts';
+import { newStation, newTariff, placeOfReader } from './edit/newFiles.ts';
+import { StationEditor } from './edit/StationEditor.tsx';
+import { TariffEditor } from './edit/TariffEditor.tsx';
 import { Format, UNIT_CHOICES } from './format.ts';
 import { useComparison, useMedia, usePrinting, useRemembered, useSheet } from './hooks.ts';
 import type { Imported } from './importing.ts';
@@ -32,6 +37,11 @@ interface Loaded {
   readonly tariffs: readonly TariffEntry[];
 }
 
+/** What is being entered or changed, in place of the answers; `stored` is null for a new one. */
+type Editing =
+  | { readonly what: 'station'; readonly stored: StationBody | null; readonly first: StationFile }
+  | { readonly what: 'tariff'; readonly stored: TariffBody | null; readonly first: TariffFile };
+
 /** What to compare with, where the reader has said so. */
 interface Choice {
   readonly recordId?: number;
@@ -46,6 +56,7 @@ export function App() {
   const [draft, setDraft] = useState<StationBody | null>(null);
   const [cases, setCases] = useState<ReadonlyMap<number, CaseDraft>>(new Map());
   const [without, setWithout] = useState<readonly string[]>([]);
+  const [editing, setEditing] = useState<Editing | null>(null);
   const [question, setQuestion] = useState<QuestionId>(questionInAddress());
   const [faults, setFaults] = useState<readonly string[]>([]);
   const [keepFaults, setKeepFaults] = useState<readonly string[]>([]);
@@ -89,7 +100,7 @@ export function App() {
   const entry = entries?.find((each) => each.id === openId);
   const tariffId =
     choice.tariffId !== undefined ? choice.tariffId : saved && loaded ? tariffFor(saved, entry, loaded.tariffs) : null;
-  const tariff = useTariff(tariffId);
+  const tariff = useTariff(tariffId, revision);
   const changes = useMemo(() => (saved && draft ? differences(saved, draft) : []), [saved, draft]);
 
   const isWhatIf = changes.length > 0 || without.length > 0;
@@ -99,7 +110,7 @@ export function App() {
     const whatIf = draft && changes.length > 0 ? { station: stationFileOf(draft) } : {};
     const out = without.length > 0 ? { without } : {};
     return { stationId: saved.id, recordId: record.id, tariffId, ...whatIf, ...out };
-  }, [saved, record?.id, tariffId, draft, changes, without]);
+  }, [saved, record?.id, tariffId, tariff, draft, changes, without]);
   const compared = useComparison(request);
 
   const format = useMemo(() => (saved ? formatFor(saved, units) : null), [saved, units]);
@@ -173,6 +184,19 @@ export function App() {
       setKeepFaults(linesOf(error));
     }
   };
+  const stored = (what: 'station' | 'tariff', id: number) => {
+    setEditing(null);
+    if (what === 'station' && id !== openId) openStation(id);
+    if (what === 'station') setDraft(null);
+    if (what === 'tariff') setChoice((before) => ({ ...before, tariffId: id }));
+    setRevision((n) => n + 1);
+  };
+  const removed = (what: 'station' | 'record' | 'tariff') => {
+    if (what !== 'record') setEditing(null);
+    if (what === 'station') setOpenId(null);
+    setChoice({});
+    setRevision((n) => n + 1);
+  };
   const heading = useRef<HTMLHeadingElement>(null);
   const openQuestion = (id: QuestionId) => {
     setQuestion(id);
@@ -192,16 +216,46 @@ export function App() {
         Skip to the answer
       </a>
       <Header units={units} onUnits={setUnits} digits={digits} onDigits={setDigits} />
-      {entries && entries.length > 0 && (
+      {editing?.what === 'station' && (
+        <StationEditor
+          stored={editing.stored}
+          first={editing.first}
+          records={editing.stored ? (loaded?.records ?? []) : []}
+          onSaved={({ id }) => stored('station', id)}
+          onLeave={() => setEditing(null)}
+          onRemoved={removed}
+          onFault={(error) => setFaults(linesOf(error))}
+        />
+      )}
+      {editing?.what === 'tariff' && (
+        <TariffEditor
+          stored={editing.stored}
+          first={editing.first}
+          onSaved={({ id }) => stored('tariff', id)}
+          onLeave={() => setEditing(null)}
+          onRemoved={() => removed('tariff')}
+          onFault={(error) => setFaults(linesOf(error))}
+        />
+      )}
+      {!editing && entries && entries.length > 0 && (
         <Stations entries={entries} openId={openId} verdicts={verdicts} folded={narrow} onOpen={openStation} />
       )}
-      <AddFiles open={saved} onImported={imported} first={entries?.length === 0} />
+      {!editing && (
+        <AddFiles open={saved} onImported={imported} first={entries?.length === 0}>
+          <button
+            type="button"
+            onClick={() => setEditing({ what: 'station', stored: null, first: newStation(placeOfReader()) })}
+          >
+            Enter a station
+          </button>
+        </AddFiles>
+      )}
       {faults.length > 0 && (
         <p class="faults" role="alert">
           {faults.join(' ')}
         </p>
       )}
-      {saved && loaded && (
+      {!editing && saved && loaded && (
         <section class="subject" aria-label="Station">
           <h1>{saved.name}</h1>
           <p class="with">
@@ -219,6 +273,31 @@ export function App() {
               none="none: energy only"
               onChoose={(id) => setChoice((before) => ({ ...before, tariffId: id }))}
             />
+            <span class="no-print edits">
+              <button
+                type="button"
+                class="quiet"
+                onClick={() => setEditing({ what: 'station', stored: saved, first: stationFileOf(draft ?? saved) })}
+              >
+                Edit the station
+              </button>
+              {tariff && (
+                <button
+                  type="button"
+                  class="quiet"
+                  onClick={() => setEditing({ what: 'tariff', stored: tariff, first: stationFileOf(tariff) })}
+                >
+                  Edit the tariff
+                </button>
+              )}
+              <button
+                type="button"
+                class="quiet"
+                onClick={() => setEditing({ what: 'tariff', stored: null, first: newTariff(saved, saved.currency) })}
+              >
+                Enter a tariff
+              </button>
+            </span>
           </p>
           {format && (
             <Draft
@@ -243,7 +322,7 @@ export function App() {
           )}
         </section>
       )}
-      {saved && record && (
+      {!editing && saved && record && (
         <div class="columns">
           <Rail answers={answers} current={question} busy={compared.busy} onOpen={openQuestion} />
           <main id="answer" tabIndex={-1} aria-busy={compared.busy} class={compared.busy && open ? 'stale' : undefined}>
@@ -282,7 +361,7 @@ export function App() {
   );
 }
 
-function useTariff(id: number | null): TariffBody | null {
+function useTariff(id: number | null, revision: number): TariffBody | null {
   const [tariff, setTariff] = useState<TariffBody | null>(null);
   useEffect(() => {
     if (id === null) return setTariff(null);
@@ -290,7 +369,7 @@ function useTariff(id: number | null): TariffBody | null {
     // Without it the figures per year lack the fixed charge alone; the comparison itself says if the tariff is gone.
     api.tariff(id, asking.signal).then(setTariff, () => asking.signal.aborted || setTariff(null));
     return () => asking.abort();
-  }, [id]);
+  }, [id, revision]);
   return tariff;
 }
 

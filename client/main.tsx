@@ -1,8 +1,6 @@
-import { render } from 'preact';
-import { config } from 'zod';
-import { App } from './App.tsx';
+import './withoutEval.ts';
 
-// The content security policy allows no code made at run time, so schemas must not try.
-config({ jitless: true });
+import { render } from 'preact';
+import { App } from './App.tsx';
 
 render(<App />, document.getElementById('page')!);

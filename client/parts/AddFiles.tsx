@@ -1,3 +1,4 @@
+import type { ComponentChildren } from 'preact';
 import { useEffect, useId, useRef, useState } from 'preact/hooks';
 import { api } from '../api.ts';
 import { type Given, given, type Imported, type ImportOutcome, importFiles, together } from '../importing.ts';
@@ -8,12 +9,14 @@ interface AddFilesProps {
   readonly onImported: (imported: Imported) => void;
   /** Nothing is stored yet: say what is wanted. */
   readonly first: boolean;
+  /** Other ways to begin, beside the files. */
+  readonly children?: ComponentChildren;
 }
 
 const KIND_NAMES = { station: 'station', tariff: 'tariff', record: 'record', case: 'case', unknown: 'not known' };
 
 /** Takes files dropped anywhere on the page, or picked: station, record and tariff in any order and number. */
-export function AddFiles({ open, onImported, first }: AddFilesProps) {
+export function AddFiles({ open, onImported, first, children }: AddFilesProps) {
   const [inHand, setInHand] = useState<readonly Given[]>([]);
   const [waitsFor, setWaitsFor] = useState<string | null>(null);
   const [doing, setDoing] = useState<string | null>(null);
@@ -103,7 +106,8 @@ export function AddFiles({ open, onImported, first }: AddFilesProps) {
           '. They stay on this machine.'
         ) : (
           <span class="aside"> or drop them on the page: station, record, tariff, case</span>
-        )}
+        )}{' '}
+        {children}
       </p>
       {first && (
         <p class="aside">

@@ -46,7 +46,7 @@ export function LedgerBars({ rules, today, floorKwh }: LedgerBarsProps) {
                     style={{ width: percent(share) }}
                     title={`${name}: ${format.with(format.energy, kwh).full}`}
                   >
-                    <span class={share > 0.055 ? 'number' : 'unseen'}>
+                    <span class="number">
                       <span class="unseen">{name} </span>
                       {format.bare(format.energy, kwh).text}
                     </span>
