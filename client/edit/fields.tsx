@@ -109,7 +109,7 @@ export function RowsAt({ path, caption, columns, blank, least = 0, most = 100 }:
       <div class="scroll">
         <table>
           <caption>
-            <span class="name">{caption}</span>
+            <span class="caption">{caption}</span>
           </caption>
           {rows.length > 0 && (
             <thead>

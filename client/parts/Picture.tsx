@@ -16,8 +16,8 @@ interface PictureProps {
 
 /** Width of a printed picture, and what a height comes to on paper [CSS px]. */
 const PAPER_WIDTH = 660;
-const PAPER_HEIGHT = { tall: 165, low: 84 };
-const ROW_HEIGHT = { screen: 34, paper: 18 };
+const PAPER_HEIGHT = { tall: 150, low: 80 };
+const ROW_HEIGHT = { screen: 34, paper: 16 };
 const FRAME_HEIGHT = 52;
 
 /** A picture under its sentence, with its numbers one press away. */

@@ -28,7 +28,7 @@ describe('telling files apart', () => {
   ])('says what was found and wanted: %s', (text, said) => {
     const told = tellFile('a.json', text);
     expect(told).toMatchObject({ kind: 'unknown', line: expect.stringContaining(said) });
-    expect(told.kind === 'unknown' && told.line).toContain('; wanted a station, tariff or profile');
+    expect(told.kind === 'unknown' && told.line).toContain('; wanted a station, tariff, case or profile');
   });
 });
 

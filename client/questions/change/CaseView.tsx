@@ -17,7 +17,7 @@ interface CaseViewProps {
 
 /** The verdict in words, why, what would change it, and the options side by side. */
 export function CaseView({ result, placeholder, brief = false }: CaseViewProps) {
-  const { format } = usePage();
+  const { format, printing } = usePage();
   return (
     <>
       <p class={`judgement ${result.advice}`}>{readable(result.sentence)}</p>
@@ -27,7 +27,8 @@ export function CaseView({ result, placeholder, brief = false }: CaseViewProps) 
         </p>
       )}
       <p>{readable(result.reason)}</p>
-      {result.wouldChange.length > 0 && (
+      {/* The page of all four questions has two sides; the case printed by itself has room. */}
+      {result.wouldChange.length > 0 && !printing && (
         <>
           <h3>What would change it</h3>
           <ul class="notes">
@@ -64,9 +65,31 @@ interface Line {
   readonly detail?: true;
 }
 
+const IN_A_LINE = ['Verdict', 'Capital', 'Cost', 'Saved', 'Simple payback', 'Net present value', 'Rate of return'];
+
 function OptionsTable({ result, brief }: { readonly result: CaseResult; readonly brief: boolean }) {
   const { format, printing } = usePage();
   const lines = linesOf(result, format).filter((line) => !((printing || brief) && line.detail));
+  if (printing) {
+    // Among the other questions on paper it takes a line for each option.
+    return (
+      <Table
+        caption="Side by side"
+        rows={result.options}
+        keyOf={(option) => option.name}
+        name={{ head: 'Option', cell: (option) => option.name }}
+        columns={lines
+          .filter((line) => IN_A_LINE.includes(line.name))
+          .map(
+            (line): Column<OptionResult> => ({
+              head: line.name,
+              ...(line.unit !== undefined && { unit: line.unit }),
+              cell: line.cell,
+            }),
+          )}
+      />
+    );
+  }
   return (
     <Table
       caption="Side by side"
