@@ -7,6 +7,7 @@ import { answerRoutes } from './routes/answers.ts';
 import { comparisonRoutes } from './routes/comparisons.ts';
 import { factRoutes } from './routes/facts.ts';
 import { recordRoutes } from './routes/records.ts';
+import { schemaRoutes } from './routes/schemas.ts';
 import { stationRoutes } from './routes/stations.ts';
 import { tariffRoutes } from './routes/tariffs.ts';
 
@@ -46,6 +47,7 @@ export function createApp(options: AppOptions): Express {
   tariffRoutes(api, options);
   comparisonRoutes(api, options);
   answerRoutes(api, options);
+  schemaRoutes(api, options);
   api.use((request, response) => sendProblem(response, 404, `There is nothing at ${request.originalUrl}.`));
   app.use('/api', api);
 

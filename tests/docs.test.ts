@@ -4,10 +4,7 @@ import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { z } from 'zod';
-import { migrate } from '../db/migrate.ts';
-import { openDatabase } from '../db/open.ts';
 import { comparisonRequest, recordQuery, seriesQuery } from '../server/api.ts';
-import { createApp } from '../server/app.ts';
 import { caseFileSchema, readCase } from '../server/economics/caseFile.ts';
 import { readRecord } from '../server/ingest/record.ts';
 import { makeCase } from '../server/makeCase.ts';
@@ -19,6 +16,7 @@ import { readStation } from '../server/station/readStation.ts';
 import { stationFile } from '../server/station/stationFile.ts';
 import { readTariff, tariffFileSchema } from '../server/tariff/tariffFile.ts';
 import { command } from './scripts/support.ts';
+import { routes } from './support/routes.ts';
 
 /** What the documents promise to describe is described, and the files that they show can be used as they stand. */
 
@@ -59,31 +57,6 @@ function noteCodes(source: string, faults: readonly string[]): string[] {
   return [...source.matchAll(/\bcode:\s*(?:[^'"{},;]*\?\s*)?'([a-z0-9_-]+)'|\btell\(\s*'([a-z0-9-]+)'/g)]
     .map(([, code, told]) => (code ?? told)!)
     .filter((code) => !faults.includes(code));
-}
-
-interface Layer {
-  readonly route?: { readonly path: string; readonly methods: Record<string, boolean> };
-  readonly handle?: { readonly stack?: readonly Layer[] };
-}
-
-/** `GET /api/stations/:id`, for every route that a server answers. */
-function routes(): string[] {
-  const db = openDatabase(':memory:');
-  migrate(db);
-  const [now, log] = [() => 0, () => {}];
-  const app = createApp({ db, now, version: '0', clientFolder: null, token: null, loopback: true, log });
-  const found: string[] = [];
-  const walk = (layers: readonly Layer[]) => {
-    for (const { route, handle } of layers) {
-      for (const method of Object.keys(route?.methods ?? {})) {
-        if (method !== '_all') found.push(`${method.toUpperCase()} /api${route!.path}`);
-      }
-      if (handle?.stack) walk(handle.stack);
-    }
-  };
-  walk((app as unknown as { router: { stack: readonly Layer[] } }).router.stack);
-  db.close();
-  return found;
 }
 
 /** Environment variables that a source reads or hands on. */

@@ -18,15 +18,16 @@ export type Given = Readonly<Record<string, string | boolean | undefined>>;
  * Runs a command. `--help` prints its help; faults in the input go to stderr, one line each, with exit code 2; anything
  * unexpected is shown whole, with exit code 1.
  *
- * @param options  names of options that take a value, and of those that are switches
+ * @param options  names of options that take a value, and of those that are switches; whether a word may stand by itself
+ *   beside them, given as `operand`
  */
 export function runCommand(
   help: string,
-  options: { readonly values: readonly string[]; readonly switches?: readonly string[] },
+  options: { readonly values: readonly string[]; readonly switches?: readonly string[]; readonly operand?: boolean },
   main: (given: Given) => void | Promise<void>,
 ): void {
   const run = async () => {
-    const given = readArguments(options.values, ['help', ...(options.switches ?? [])]);
+    const given = readArguments(options.values, ['help', ...(options.switches ?? [])], options.operand ?? false);
     if (given.help === true) process.stdout.write(help);
     else await main(given);
   };
@@ -41,17 +42,20 @@ export function runCommand(
   });
 }
 
-function readArguments(values: readonly string[], switches: readonly string[]): Given {
+function readArguments(values: readonly string[], switches: readonly string[], operand: boolean): Given {
   const options = {
     ...Object.fromEntries(values.map((name) => [name, { type: 'string' as const }])),
     ...Object.fromEntries(switches.map((name) => [name, { type: 'boolean' as const }])),
   };
+  const refused = (found: string): never =>
+    refuse({ code: 'bad_option', file: 'arguments', at: '', found, wanted: 'the options of --help' });
   try {
-    return parseArgs({ options }).values;
+    const { values: given, positionals } = parseArgs({ options, allowPositionals: operand });
+    if (positionals.length > 1) refused(`'${positionals[1]}'`);
+    return positionals[0] === undefined ? given : { ...given, operand: positionals[0] };
   } catch (error) {
     if (!(error instanceof TypeError)) throw error;
-    const found = error.message.split('\n')[0]!;
-    refuse({ code: 'bad_option', file: 'arguments', at: '', found, wanted: 'the options of --help' });
+    return refused(error.message.split('\n')[0]!);
   }
 }
 

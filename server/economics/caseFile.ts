@@ -9,10 +9,13 @@ export const CASE_FORMAT = 'nth-pump/case/1';
 /** Grades of ISO 9906:2012, table 8. */
 const PUMP_GRADES = ['1U', '1E', '1B', '2B', '2U', '3B'] as const;
 
-const rule = z.string().refine((id) => (RULE_IDS as readonly string[]).includes(id), {
-  error: `one of ${RULE_IDS.join(', ')}`,
-  params: { code: 'unknown_rule' },
-});
+const rule = z
+  .string()
+  .refine((id) => (RULE_IDS as readonly string[]).includes(id), {
+    error: `one of ${RULE_IDS.join(', ')}`,
+    params: { code: 'unknown_rule' },
+  })
+  .meta({ enum: RULE_IDS });
 /** Fractions per year: 5 instead of 0.05 is caught here. */
 const perYear = z.number().gt(-1).lt(1);
 const percent = z.number().min(0).max(100);

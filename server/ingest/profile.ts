@@ -41,10 +41,12 @@ type Shapes = z.infer<typeof shapes>;
 
 const monthDay = z
   .string()
-  .refine((text) => isMonthDay(text), { error: 'a day of the year as MM-DD', params: { code: 'out_of_range' } });
+  .refine((text) => isMonthDay(text), { error: 'a day of the year as MM-DD', params: { code: 'out_of_range' } })
+  .meta({ pattern: '^\\d{2}-\\d{2}$', description: 'a day of the year as MM-DD' });
 const calendarDay = z.iso.date({ error: 'a day that exists, as YYYY-MM-DD' });
 
-const profileSchema = z.strictObject({
+/** Schema of the profile; that every day has values is checked by `readProfile`. */
+export const profileSchema = z.strictObject({
   format: z.literal('nth-pump/profile/1'),
   name: z.string().optional(),
   year: z.int().min(1970).max(2100),

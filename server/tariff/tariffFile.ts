@@ -24,7 +24,8 @@ export type HolidayDates = (country: string, region: string | null, years: reado
 /** Refuses with a code of ours; a missing value is left to the type check before it. */
 function text(pattern: RegExp | ((value: string) => boolean), code: FaultCode, wanted: string) {
   const test = pattern instanceof RegExp ? (value: string) => pattern.test(value) : pattern;
-  return z.string().refine(test, { error: wanted, params: { code } });
+  const schema = z.string().refine(test, { error: wanted, params: { code } });
+  return schema.meta({ ...(pattern instanceof RegExp && { pattern: pattern.source }), description: wanted });
 }
 
 const name = z.string().trim().min(1);
