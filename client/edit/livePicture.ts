@@ -44,13 +44,18 @@ export function pumpPicture(station: Station): PumpPicture {
   const counts = duty.map((_, i) => {
     const set = duty.slice(0, i + 1);
     const end = set.reduce((sum, pump) => sum + pump.endFlow(1), 0);
+    const lowest = Math.min(
+      ...set.map((pump) => pump.head(pump.endFlow(1), 1) - pump.branchLoss * pump.endFlow(1) ** 2),
+    );
     const curve: Spot[] = [];
     for (let k = 0; k <= POINTS; k++) {
       const head = shutoff * (1 - k / POINTS);
-      const flow = set.reduce((sum, pump) => sum + pump.flowInto(head, 1), 0);
-      curve.push({ flow, head });
       // Beyond the end of its curve nothing is known of a pump.
-      if (flow >= end * (1 - 1e-9)) break;
+      if (head <= lowest) {
+        curve.push({ flow: end, head: lowest });
+        break;
+      }
+      curve.push({ flow: set.reduce((sum, pump) => sum + pump.flowInto(head, 1), 0), head });
     }
     const state = pumps.fixed(i + 1);
     const head = systemHead(friction, staticHead, state.flow);

@@ -16,6 +16,7 @@ describe('telling files apart', () => {
     ['x', `\uFEFF ${STATION}`, 'station'],
     ['flow.csv', CSV, 'record'],
     ['profile.json', '{"format":"nth-pump/profile/1"}', 'record'],
+    ['case.json', '{"format":"nth-pump/case/1"}', 'case'],
   ])('goes by content: %s', (name, text, kind) => {
     expect(tellFile(name, text).kind).toBe(kind);
   });
