@@ -1,4 +1,4 @@
-import { useEffect, useRef, useState } from 'preact/hooks';
+import { useLayoutEffect, useRef, useState } from 'preact/hooks';
 
 interface ConfirmProps {
   /** On the button that asks. */
@@ -14,7 +14,7 @@ interface ConfirmProps {
 export function Confirm({ ask, says, does, onDo }: ConfirmProps) {
   const [asking, setAsking] = useState(false);
   const stay = useRef<HTMLButtonElement>(null);
-  useEffect(() => {
+  useLayoutEffect(() => {
     if (asking) stay.current?.focus();
   }, [asking]);
   if (!asking) {

@@ -26,6 +26,7 @@ export function PricesPicture({ tariff }: { readonly tariff: Tariff }) {
   return (
     <Exhibit
       title={title}
+      level={2}
       numbers={() => (
         <Table
           caption="Prices of a kWh, in the order in which they are looked for"

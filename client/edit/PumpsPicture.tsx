@@ -31,6 +31,7 @@ export function PumpsPicture({ station }: { readonly station: Station }) {
   return (
     <Exhibit
       title={title}
+      level={2}
       numbers={() => (
         <Table
           caption="Where pumps and system meet, at rated speed"

@@ -7,16 +7,16 @@ interface ExhibitProps {
   /** The same numbers as a table. */
   readonly numbers: () => ComponentChildren;
   readonly children: ComponentChildren;
+  /** Where it stands right under the title of the page, its own is of the second level. */
+  readonly level?: 2 | 3;
 }
 
 /** A picture of our own, in markup, under its sentence, with its numbers one press away. */
-export function Exhibit({ title, numbers, children }: ExhibitProps) {
+export function Exhibit({ title, numbers, children, level = 3 }: ExhibitProps) {
   const [open, setOpen] = useState(false);
   return (
     <figure class="picture">
-      <figcaption>
-        <h3>{title}</h3>
-      </figcaption>
+      <figcaption>{level === 2 ? <h2>{title}</h2> : <h3>{title}</h3>}</figcaption>
       {children}
       <div class="no-print">
         <button type="button" class="quiet numbers" aria-expanded={open} onClick={() => setOpen(!open)}>

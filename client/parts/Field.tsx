@@ -27,8 +27,9 @@ export function NumberField({ label, unit, value, onChange, scale = 1, step = 'a
   const [text, setText] = useState(shown);
   const typed = text.trim() === '' ? null : Number(text) / scale;
   useEffect(() => {
-    if (typed === null ? value != null : value == null || Math.abs(typed - value) > 1e-9 * Math.abs(value))
-      setText(shown);
+    // A field that was emptied to type anew stays empty, though it counts as 0 meanwhile.
+    const same = typed === null ? !value : value != null && Math.abs(typed - value) <= 1e-9 * Math.abs(value);
+    if (!same) setText(shown);
   }, [value]);
   return (
     <p class={fault ? 'field faulty' : 'field'}>

@@ -21,6 +21,8 @@ const answers = async (page: Page) =>
 const openQuestion = (page: Page, title: string) => page.locator('nav.rail a', { hasText: title }).click();
 const done = (page: Page) => page.locator('main[aria-busy=false] h2').first().waitFor();
 
+const pagesOf = (pdf: Buffer) => pdf.toString('latin1').match(/\/Type\s*\/Page[^s]/g)?.length ?? 0;
+
 /** The table of rules by its row heads: figures as they are on the screen. */
 async function rulesTable(page: Page): Promise<Record<string, string[]>> {
   const rows = await page.locator('figure table').first().locator('tbody tr').all();
@@ -44,6 +46,10 @@ describe.skipIf(browserPath === null)('the page', () => {
     seen = await app.open();
     page = seen.page;
     await page.getByText('Give your station').waitFor();
+    await page.evaluate(() => {
+      // There is no printer, and nobody to say no.
+      window.print = () => {};
+    });
   });
   afterEach(async () => {
     expect(seen.elsewhere).toEqual([]);
@@ -64,7 +70,7 @@ describe.skipIf(browserPath === null)('the page', () => {
     const [which, cost, change, basis] = await answers(page);
     expect(which).toMatch(/^Second pump from .* L\/s \(at 12 m static head\)$/);
     expect(cost).toMatch(/€.* a year at fixed speed \(scaled to a year\); /);
-    expect(change).toMatch(/^Drives would (save|lose) €.* a year against fixed speed/);
+    expect(change).toMatch(/^It (pays|does not pay): a drive on each of 2 pumps .*\. The price is a placeholder$/);
     expect(basis).toBe('47 of 48 hours, 2 pumps, test tariff. 1 hour has no value, left out');
     expect(seen.errors).toEqual([]);
   });
@@ -171,6 +177,168 @@ describe.skipIf(browserPath === null)('the page', () => {
     expect(await page.locator('figure tbody tr').count()).toBe(24);
   });
 
+  it('hands out the operator’s card with the figures of the API, on one side of paper', async () => {
+    await withStation();
+    const [{ id }] = (await (await fetch(`${app.origin}/api/comparisons`)).json()) as [{ id: number }];
+    const card = (await (await fetch(`${app.origin}/api/comparisons/${id}/card?bandPercent=1`)).json()) as {
+      steps: { bringOn: number; dropOff: number; atBringOn: { speedAfter: number; headerKpa: number } }[];
+    };
+    const [step] = card.steps;
+    const three = (value: number) => value.toLocaleString('en-IE', { maximumSignificantDigits: 3 });
+    await page.locator('.card').getByLabel('Pressure as').selectOption('bar');
+    await page.locator('.card').getByLabel('Mains').selectOption('60');
+    const rungs = (await page.locator('.card .rungs').textContent())!.replaceAll('\u00a0', ' ');
+    expect(rungs).toContain(`on at ${three(step!.bringOn)} L/s`);
+    expect(rungs).toContain(`off at ${three(step!.dropOff)} L/s`);
+    expect(rungs).toContain(`${three(60 * step!.atBringOn.speedAfter)} Hz`);
+    expect(rungs).toContain(`header ${three(step!.atBringOn.headerKpa / 100)} bar`);
+
+    await page.getByRole('button', { name: 'Print the card' }).click();
+    await page.locator('.card-sheet').waitFor({ state: 'attached' });
+    for (const format of ['A4', 'Letter']) {
+      expect(pagesOf(await page.pdf({ format })), format).toBe(1);
+      await page.getByRole('button', { name: 'Print the card' }).click();
+    }
+    await page.emulateMedia({ media: 'print' });
+    const sheet = page.locator('.card-sheet');
+    const said = (await sheet.textContent())!.replaceAll('\u00a0', ' ');
+    expect(said).toContain(`on at ${three(step!.bringOn)} L/s`);
+    expect(said).toContain('Which pump, when?');
+    expect(said).toMatch(/Lock out/);
+    expect(said).toMatch(/Printed .*From Mill Lane/);
+    expect(await page.locator('.columns').isVisible()).toBe(false);
+    // Nothing is cut off at the foot of the sheet.
+    const [content, room] = await sheet.evaluate((each) => [each.scrollHeight, each.clientHeight]);
+    expect(content).toBeLessThanOrEqual(room! + 1);
+    await page.evaluate(() => dispatchEvent(new Event('afterprint')));
+    await page.emulateMedia({ media: 'screen' });
+    await page.locator('.columns').waitFor();
+    expect(await sheet.count()).toBe(0);
+  });
+
+  it('makes the case as its terms are typed, in the words of the API, and prints it on one page', async () => {
+    await withStation();
+    await openQuestion(page, 'Is a change worth it?');
+    const sentence = async (capital: string) => {
+      const answered = page.waitForResponse((response) => response.url().endsWith('/api/cases'));
+      await page.getByRole('group', { name: 'Proposed' }).getByLabel('Capital').fill(capital);
+      const made = (await (await answered).json()) as { sentence: string; npv: number };
+      await expect
+        .poll(async () => (await page.locator('.judgement').textContent())!.replaceAll('\u00a0', ' '))
+        .toBe(made.sentence.replace('fixed-speed', 'fixed speed'));
+      expect((await answers(page))[2]).toBe(made.sentence.replace(/\.$/, '').replace('fixed-speed', 'fixed speed'));
+      return made;
+    };
+    expect((await sentence('100')).sentence).toMatch(/^It pays/);
+    const dear = await sentence('900000');
+    expect(dear.sentence).toMatch(/^It does not pay/);
+    const shown = page
+      .locator('main table', { hasText: 'Side by side' })
+      .locator('tbody tr', { hasText: 'Net present value' });
+    const npv = Number((await shown.locator('.figure').nth(1).getAttribute('title'))!.replace(/[^\d.-]/g, ''));
+    expect(Math.abs(npv / dear.npv - 1)).toBeLessThan(1e-6); // the page shows six figures behind the point
+
+    await page.getByLabel('Discount rate').fill('');
+    await page
+      .getByText('found null')
+      .or(page.getByText(/found .*wanted a number/))
+      .first()
+      .waitFor();
+    await page.getByLabel('Discount rate').fill('5');
+
+    await page.getByRole('button', { name: 'Print the case' }).click();
+    for (const format of ['A4', 'Letter']) {
+      await page.locator('.case-sheet').waitFor({ state: 'attached' });
+      expect(pagesOf(await page.pdf({ format })), format).toBe(1);
+      await page.getByRole('button', { name: 'Print the case' }).click();
+    }
+    expect(await page.locator('.case-sheet').textContent()).toContain('It does not pay');
+  });
+
+  it('takes a case file, and gives it back', async () => {
+    await withStation();
+    const terms = {
+      format: 'nth-pump/case/1',
+      name: 'two cheap drives',
+      baseline: 'fixed-speed',
+      proposed: 'best-count',
+      capital: 1234,
+      years: 7,
+      discountRate: 0.03,
+    };
+    await drop(page, [file('bad.json', { ...terms, years: 0 })]);
+    expect(await page.locator('.in-hand .faults li').textContent()).toMatch(
+      /^bad\.json years: found 0; wanted 1 or more/,
+    );
+    await drop(page, [file('case.json', terms)]);
+    await page.getByText('two cheap drives saves').first().waitFor();
+    expect(await page.locator('.in-hand').count()).toBe(0);
+    const saving = page.waitForEvent('download');
+    await page.getByRole('button', { name: 'Save the case file' }).click();
+    expect(JSON.parse(await readFile(await (await saving).path(), 'utf8'))).toEqual(terms);
+  });
+
+  it('takes a station entered by hand, its picture moving and its faults told, and asks before anything is lost', async () => {
+    await page.getByRole('button', { name: 'Enter a station' }).click();
+    const form = page.getByRole('form', { name: 'A new station' });
+    const title = page.locator('.live h2');
+    // 30 − 8·(q/50)² = 12 + 0.001·Q² with two pumps of q = Q/2: Q = √(18/(0.0032/4 + 0.001)) = 100 L/s, 12 + 10 = 22 m
+    expect((await title.textContent())!.replaceAll('\u00a0', ' ')).toBe('2 pumps give 100 L/s against 22 m');
+    await form.getByLabel('Static head').fill('21');
+    // √(9/0.0018) = 70.7 L/s, 21 + 5 = 26 m
+    await expect
+      .poll(async () => (await title.textContent())!.replaceAll('\u00a0', ' '))
+      .toBe('2 pumps give 70.7 L/s against 26 m');
+    await form.getByLabel('Name').first().fill('Quay Street');
+    await form.getByLabel('Head at no flow').fill('');
+    await form.getByText('found nothing; wanted a number').first().waitFor();
+    expect(await form.getByRole('button', { name: 'Save' }).isDisabled()).toBe(true);
+    await form.getByRole('button', { name: 'Leave without saving' }).click();
+    await form.getByText('would be lost').waitFor();
+    await form.getByRole('button', { name: 'Stay' }).click();
+    await form.getByLabel('Head at no flow').fill('31');
+    await form.getByLabel('by steps of its own').check();
+    await form.getByLabel('Pump 2 on at').fill('40');
+    await form.getByLabel('Pump 2 off at').fill('35');
+    await form.getByRole('button', { name: 'Save' }).click();
+    await page.getByRole('heading', { level: 1, name: 'Quay Street' }).waitFor();
+    const [{ id }] = (await (await fetch(`${app.origin}/api/stations`)).json()) as [{ id: number }];
+    const stored = (await (await fetch(`${app.origin}/api/stations/${id}`)).json()) as Record<string, unknown>;
+    expect(stored).toMatchObject({
+      system: { staticHead: 21 },
+      pumps: [{ curve: { shutoffHead: 31 } }],
+      rules: { 'flow-steps': { bringOn: [40], dropOff: [35] } },
+    });
+
+    await drop(page, [RECORD]);
+    await done(page);
+    await page.getByRole('button', { name: 'Enter a tariff' }).click();
+    await page.getByLabel('Prices of energy; of those that fit, the first holds, row 2, Price').fill('0.4');
+    await page.getByRole('heading', { name: 'A kWh costs from 0.12 to 0.4 EUR' }).waitFor();
+    await page.getByRole('button', { name: 'Save' }).click();
+    await done(page);
+    await expect.poll(async () => (await answers(page))[3]).toContain('New tariff');
+    expect((await answers(page))[2]).toMatch(/placeholder|for nothing/);
+
+    await page.getByRole('button', { name: 'Edit the station' }).click();
+    await page.getByRole('button', { name: 'Remove this station' }).click();
+    await page.getByText('would be gone').waitFor();
+    expect(await page.evaluate(() => document.activeElement?.textContent)).toBe('Keep it');
+    await page.getByRole('button', { name: 'Remove it for good' }).click();
+    await page.getByText('Give your station').waitFor();
+    expect(await (await fetch(`${app.origin}/api/stations`)).json()).toEqual([]);
+  });
+
+  it('draws the map of the best count when it is asked for', async () => {
+    await withStation();
+    expect(await page.locator('svg.map').count()).toBe(0);
+    await page.getByText('Map of the best count').click();
+    await page.getByRole('heading', { name: /static head the second pump/ }).waitFor();
+    const [{ id }] = (await (await fetch(`${app.origin}/api/comparisons`)).json()) as [{ id: number }];
+    const map = (await (await fetch(`${app.origin}/api/comparisons/${id}/map`)).json()) as { hours: number[][] };
+    expect(await page.locator('svg.map circle.hours').count()).toBe(map.hours.flat().filter((each) => each > 0).length);
+  });
+
   it.each([
     { width: 390, dark: false },
     { width: 820, dark: true },
@@ -190,6 +358,11 @@ describe.skipIf(browserPath === null)('the page', () => {
     ]) {
       await openQuestion(other, title);
       await other.getByRole('heading', { level: 2, name: title }).waitFor();
+      const map = other.getByText('Map of the best count');
+      if (await map.isVisible()) {
+        await map.click();
+        await other.locator('svg.map').waitFor();
+      }
       for (const button of await other.getByRole('button', { name: 'Numbers' }).all()) await button.click();
       const { violations } = await other.evaluate(() =>
         (globalThis as unknown as { axe: { run(): Promise<AxeResults> } }).axe.run(),
@@ -197,6 +370,19 @@ describe.skipIf(browserPath === null)('the page', () => {
       expect(violations.map(({ id, nodes }) => `${title} ${id}: ${nodes[0]?.html}`)).toEqual([]);
       const [content, window] = await other.evaluate(() => [document.documentElement.scrollWidth, innerWidth]);
       expect(content, title).toBeLessThanOrEqual(window!);
+    }
+    for (const edit of ['Edit the station', 'Edit the tariff']) {
+      await other.getByRole('button', { name: edit }).click();
+      await other.locator('.live figure').waitFor();
+      for (const button of await other.getByRole('button', { name: 'Numbers' }).all()) await button.click();
+      const { violations } = await other.evaluate(() =>
+        (globalThis as unknown as { axe: { run(): Promise<AxeResults> } }).axe.run(),
+      );
+      expect(violations.map(({ id, nodes }) => `${edit} ${id}: ${nodes[0]?.html}`)).toEqual([]);
+      const [content, window] = await other.evaluate(() => [document.documentElement.scrollWidth, innerWidth]);
+      expect(content, edit).toBeLessThanOrEqual(window!);
+      await other.getByRole('button', { name: 'Leave' }).click();
+      await done(other);
     }
     expect(errors).toEqual([]);
     await other.close();
@@ -212,9 +398,7 @@ describe.skipIf(browserPath === null)('the page', () => {
 
   it('prints the four answers at the top and every question, on two sides of paper at most', async () => {
     await withStation();
-    const pdf = await page.pdf({ format: 'Letter' });
-    const pages = pdf.toString('latin1').match(/\/Type\s*\/Page[^s]/g) ?? [];
-    expect([1, 2]).toContain(pages.length);
+    expect([1, 2]).toContain(pagesOf(await page.pdf({ format: 'Letter' })));
     const onPaper = await page.evaluate(() => {
       dispatchEvent(new Event('beforeprint'));
       // Read at once: the browser lays out the paper as soon as the event returns.

@@ -43,7 +43,7 @@ export function CaseForm({ work, rules }: CaseFormProps) {
           unit="years"
           value={draft.years}
           step={1}
-          onChange={(years) => set({ years: years ?? Number.NaN })}
+          onChange={(years) => set({ years })}
           fault={faults.get('years')}
         />
         <NumberField
@@ -51,7 +51,7 @@ export function CaseForm({ work, rules }: CaseFormProps) {
           unit="% a year"
           scale={100}
           value={draft.discountRate}
-          onChange={(rate) => set({ discountRate: rate ?? Number.NaN })}
+          onChange={(discountRate) => set({ discountRate })}
           fault={faults.get('discountRate')}
         />
         <NumberField
@@ -59,7 +59,7 @@ export function CaseForm({ work, rules }: CaseFormProps) {
           unit="% a year"
           scale={100}
           value={draft.energyEscalation ?? 0}
-          onChange={(rate) => set({ energyEscalation: rate ?? Number.NaN })}
+          onChange={(rate) => set({ energyEscalation: rate ?? 0 })}
           fault={faults.get('energyEscalation')}
           hint={draft.rates === 'nominal' ? 'nominal, as the discount rate' : 'above inflation, as the discount rate'}
         />
@@ -87,7 +87,7 @@ export function CaseForm({ work, rules }: CaseFormProps) {
           faults={faults}
           value={option}
           onChange={(fields) => setOption(i, fields)}
-          onPriceGone={() => setOption(i, { capital: Number.NaN })}
+          onPriceGone={() => setOption(i, { capital: 0 })}
           onRemove={() => set({ options: options.filter((_, k) => k !== i) })}
         />
       ))}
@@ -176,21 +176,21 @@ function OptionFields({
         label="Incentive"
         unit={money}
         value={value.incentive ?? 0}
-        onChange={(incentive) => onChange({ incentive: incentive ?? Number.NaN })}
+        onChange={(incentive) => onChange({ incentive: incentive ?? 0 })}
         fault={fault('incentive')}
       />
       <NumberField
         label="Maintenance saved"
         unit={`${money} a year`}
         value={value.maintenanceSavingPerYear ?? 0}
-        onChange={(saving) => onChange({ maintenanceSavingPerYear: saving ?? Number.NaN })}
+        onChange={(saving) => onChange({ maintenanceSavingPerYear: saving ?? 0 })}
         fault={fault('maintenanceSavingPerYear')}
       />
       <NumberField
         label="Worth at the end"
         unit={money}
         value={value.residualValue ?? 0}
-        onChange={(residual) => onChange({ residualValue: residual ?? Number.NaN })}
+        onChange={(residual) => onChange({ residualValue: residual ?? 0 })}
         fault={fault('residualValue')}
       />
     </fieldset>

@@ -6,8 +6,12 @@ import { POWER_UNITS } from '../../../server/units.ts';
 import { ruleName } from '../../rules.ts';
 import { equipmentOf } from '../../station.ts';
 
-/** A case as it is being written: a price that nobody has given yet is null. */
-export type CaseDraft = Omit<CaseFile, 'capital'> & { readonly capital: number | null };
+/** A case as it is being written: null is a number that must be given and is not there yet. */
+export type CaseDraft = Omit<CaseFile, 'capital' | 'years' | 'discountRate'> & {
+  readonly capital: number | null;
+  readonly years: number | null;
+  readonly discountRate: number | null;
+};
 
 /** A case to begin with, and what in it a quotation must replace. */
 export interface CaseStart {
@@ -123,9 +127,10 @@ function cheapest(rules: readonly RuleResult[]): RuleResult | null {
   );
 }
 
-/** The draft as a file, or null while its price is missing. */
-export function caseFileOf(draft: CaseDraft): CaseFile | null {
-  return draft.capital === null ? null : { ...draft, capital: draft.capital };
+/** The draft as a file, or null while a number is missing. */
+export function caseFileOf({ capital, years, discountRate, ...rest }: CaseDraft): CaseFile | null {
+  if (capital === null || years === null || discountRate === null) return null;
+  return { ...rest, capital, years, discountRate };
 }
 
 /** Whether any price is still the placeholder. */

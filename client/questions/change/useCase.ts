@@ -38,10 +38,7 @@ export function useCase(
   );
   const draft = written ?? start?.draft ?? null;
   const faults = useMemo(
-    () =>
-      draft === null
-        ? new Map<string, string>()
-        : faultsOf(() => readCase({ ...draft, capital: draft.capital ?? undefined }, 'case.json')),
+    () => (draft === null ? new Map<string, string>() : faultsOf(() => readCase(draft, 'case.json'))),
     [draft],
   );
   const id = open?.comparison.id ?? null;

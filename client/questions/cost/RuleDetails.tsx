@@ -48,6 +48,32 @@ export function RuleDetails({ rule, columns }: RuleDetailsProps) {
             <Figure of={format.hours} value={rule.nearDeadHeadHours} />
           </dd>
         </div>
+        <div>
+          <dt>Hours outside the preferred range</dt>
+          <dd>
+            <Figure of={format.hours} value={rule.outsidePreferredHours} />
+          </dd>
+        </div>
+        {rule.outsideAllowableHours !== null && (
+          <div>
+            <dt>Hours outside the allowable range</dt>
+            <dd>
+              <Figure of={format.hours} value={rule.outsideAllowableHours} />
+            </dd>
+          </div>
+        )}
+        <div>
+          <dt>Hours with a motor overloaded</dt>
+          <dd>
+            <Figure of={format.hours} value={rule.overloadHours} />
+          </dd>
+        </div>
+        <div>
+          <dt>Hours at the end of a curve</dt>
+          <dd>
+            <Figure of={format.hours} value={rule.endOfCurveHours} />
+          </dd>
+        </div>
         {rule.carbonKg !== undefined && (
           <div>
             <dt>Carbon</dt>
@@ -57,6 +83,13 @@ export function RuleDetails({ rule, columns }: RuleDetailsProps) {
           </div>
         )}
       </dl>
+      <Table
+        caption="Hours of each set of pumps"
+        rows={Object.entries(rule.hoursBySet).filter(([, hours]) => hours > 0)}
+        keyOf={([set]) => set}
+        name={{ head: 'Running', cell: ([set]) => set || 'none' }}
+        columns={[{ head: 'Hours', unit: 'h', cell: ([, hours]) => <Figure of={format.hours} value={hours} bare /> }]}
+      />
       {rule.periods && (
         <Table
           caption="By period of the tariff"
