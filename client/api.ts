@@ -15,6 +15,24 @@ export type StationBody = StationFile & { readonly id: number; readonly demo: bo
 /** A stored tariff: the file its owner wrote, with its id. */
 export type TariffBody = TariffFile & { readonly id: number; readonly demo: boolean };
 
+/** What somebody read off the gauges, in the station's units and kW; null is what was not read. */
+export interface SpotReading {
+  readonly flow: number | null;
+  readonly head: number | null;
+  readonly powerKw: number | null;
+  readonly pumpsOn: number;
+}
+
+/** A reading beside what the curves say. */
+export interface LaidReading extends SpotReading {
+  /** Of the pumps, behind their branches, and of the system, at the flow that was read. */
+  readonly curveHead: number | null;
+  readonly systemHead: number | null;
+  /** Where so many pumps and the system meet, direct on line. */
+  readonly curveFlow: number;
+  readonly curvePowerKw: number;
+}
+
 export interface ComparisonRequest {
   readonly stationId: number;
   readonly recordId: number;
@@ -99,6 +117,12 @@ export const api = {
     call<StationBody>('/stations', { method: 'POST', json: file }, fileName),
   keepStation: (id: number, file: StationFile) => call<StationBody>(`/stations/${id}`, { method: 'PUT', json: file }),
   removeStation: (id: number) => call<null>(`/stations/${id}`, { method: 'DELETE' }),
+  spotReadings: (id: number, readings: readonly SpotReading[], without: readonly string[], signal?: AbortSignal) =>
+    call<{ readonly readings: readonly LaidReading[] }>(`/stations/${id}/spot-readings`, {
+      method: 'POST',
+      json: { readings, without },
+      signal,
+    }),
 
   records: (stationId: number, signal?: AbortSignal) =>
     call<RecordEntry[]>(`/stations/${stationId}/records`, { signal }),

@@ -57,9 +57,9 @@ describe('the ladder', () => {
     const ladder = ladderOf(aCard([aStep(1, 38, 42), aStep(2, 70, 75)], [50, 80, 100]))!;
     expect(ladder.top).toBe(100);
     expect(ladder.counts).toEqual([
-      { count: 1, from: 0, to: 0.42 },
-      { count: 2, from: 0.38, to: 0.75 },
-      { count: 3, from: 0.7, to: 1 },
+      { count: 1, from: 0, to: 0.42, middle: 0.19 },
+      { count: 2, from: 0.38, to: 0.75, middle: 0.56 },
+      { count: 3, from: 0.7, to: 1, middle: 0.875 },
     ]);
     expect(ladder.rungs).toEqual([
       { from: 1, to: 2, dropOff: 0.38, bringOn: 0.42, told: 0.25 },
@@ -68,7 +68,11 @@ describe('the ladder', () => {
   });
 
   it('of one pump has no rung, and there is none where no pump can lift', () => {
-    expect(ladderOf(aCard([], [50]))).toEqual({ top: 50, counts: [{ count: 1, from: 0, to: 1 }], rungs: [] });
+    expect(ladderOf(aCard([], [50]))).toEqual({
+      top: 50,
+      counts: [{ count: 1, from: 0, to: 1, middle: 0.5 }],
+      rungs: [],
+    });
     expect(ladderOf(aCard([], [0, 0]))).toBeNull();
     expect(ladderSentence(aCard([], [0, 0]), aFormat())).toBe('No pump can run');
   });

@@ -5,6 +5,7 @@ import { type QuestionProps, usePage } from '../../context.ts';
 import { ordinal, sentence } from '../../format.ts';
 import { useRemembered } from '../../hooks.ts';
 import { Table } from '../../parts/Table.tsx';
+import { withoutDust } from '../cost/ledger.ts';
 import {
   type ComparisonCard,
   ladderSentence,
@@ -131,6 +132,12 @@ function CardParts({ card, mains, pressure }: CardPartsProps) {
     value == null ? 'none' : format.bare(format.flow, flow(value)).text;
   return (
     <>
+      {sets.length > 0 && (
+        <p class="aside">
+          The ladder keeps to the station's order, {card.pumps.join(', ')}: one pump is {card.pumps[0]}. The table under
+          it picks the best set of all.
+        </p>
+      )}
       <Ladder card={card} mains={mains} pressure={pressure} />
       <div class="card-tables">
         {moves && card.steps.length > 0 && (
@@ -208,7 +215,8 @@ function SetTable({ sets, card }: { readonly sets: readonly HandedSet[]; readonl
         {
           head: 'Saves against the usual order',
           unit: 'kW',
-          cell: (set) => (set.savedKw === null ? 'cannot' : format.bare(format.power, set.savedKw).text),
+          cell: (set) =>
+            set.savedKw === null ? 'cannot' : format.bare(format.power, withoutDust(set.savedKw, 1)).text,
         },
       ]}
     />

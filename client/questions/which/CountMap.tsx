@@ -123,7 +123,10 @@ function MapPicture({ map, most }: { readonly map: BestCountMap; readonly most: 
           </circle>
         ))}
         {drawn.names.map(({ count, row, flowM3s }) => (
-          <g key={count} transform={`translate(${x(flowM3s)} ${y(map.staticHeadM[row]!)})`}>
+          <g
+            key={count}
+            transform={`translate(${Math.min(x(flowM3s), WIDTH - RIGHT - (count === 0 ? 44 : 13))} ${y(map.staticHeadM[row]!)})`}
+          >
             <rect class="chip" x={count === 0 ? -44 : -13} y="-13" width={count === 0 ? 88 : 26} height="26" />
             <text text-anchor="middle" dy="0.35em" class="which">
               {count === 0 ? 'none can' : count}

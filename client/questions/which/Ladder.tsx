@@ -49,12 +49,15 @@ export function Ladder({ card, mains, pressure }: LadderProps) {
             key={count}
             class="count"
             style={{ bottom: percent(from), height: percent(to - from), background: countShade(count, most) }}
-          >
-            <b>{count}</b>
-          </div>
+          />
         ))}
         {ladder.rungs.map(({ to, dropOff, bringOn }) => (
           <div key={to} class="band" style={{ bottom: percent(dropOff), height: percent(bringOn - dropOff) }} />
+        ))}
+        {ladder.counts.map(({ count, middle }) => (
+          <b key={count} style={{ bottom: percent(middle) }}>
+            {count}
+          </b>
         ))}
       </div>
       <Leaders ladder={ladder} />

@@ -15,6 +15,7 @@ import { dutyNames } from '../../station.ts';
 import { Card } from './Card.tsx';
 import { CountMap } from './CountMap.tsx';
 import { hoursSentence } from './hoursSentence.ts';
+import { SpotReadings } from './SpotReadings.tsx';
 
 /** Which pump, when: power over flow for each count, and under it the hours that the record spends at each flow. */
 export function Which({ open, record, saved, draft, touch, without, onWithout }: QuestionProps) {
@@ -53,6 +54,7 @@ export function Which({ open, record, saved, draft, touch, without, onWithout }:
       {/* The card has a sheet of its own. */}
       {!printing && <Card open={open} record={record} />}
       {!printing && <CountMap comparisonId={comparison.id} most={power.counts.length} />}
+      {!printing && <SpotReadings saved={saved} without={without} />}
       <Cautions ids={['minimumFlow', 'minimumSpeed', 'surge', 'solids']} />
     </>
   );

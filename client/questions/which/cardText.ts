@@ -55,7 +55,13 @@ export interface Ladder {
   /** In the unit of the card. */
   readonly top: number;
   /** Where each count runs; neighbours overlap in the band in which either may run. */
-  readonly counts: readonly { readonly count: number; readonly from: number; readonly to: number }[];
+  readonly counts: readonly {
+    readonly count: number;
+    readonly from: number;
+    readonly to: number;
+    /** Middle of where no other count may run, for its number. */
+    readonly middle: number;
+  }[];
   readonly rungs: readonly {
     readonly from: number;
     readonly to: number;
@@ -71,14 +77,15 @@ export function ladderOf({ steps, capacities }: Pick<HandedCard, 'steps' | 'capa
   const top = Math.max(0, ...capacities, ...steps.map((step) => step.bringOn));
   if (!(top > 0)) return null;
   const first = steps[0]?.from ?? Math.max(1, capacities.findIndex((capacity) => capacity > 0) + 1);
-  const counts = [
-    { count: first, from: 0, to: steps.length > 0 ? steps[0]!.bringOn / top : 1 },
-    ...steps.map((step, i) => ({
-      count: step.to,
-      from: step.dropOff / top,
-      to: i === steps.length - 1 ? 1 : steps[i + 1]!.bringOn / top,
-    })),
-  ];
+  const counts = [first, ...steps.map((step) => step.to)].map((count, i) => {
+    const [below, above] = [steps[i - 1], steps[i]];
+    return {
+      count,
+      from: (below?.dropOff ?? 0) / top,
+      to: (above?.bringOn ?? top) / top,
+      middle: ((below?.bringOn ?? 0) + (above?.dropOff ?? top)) / 2 / top,
+    };
+  });
   const rungs = steps.map(({ from, to, dropOff, bringOn }, i) => ({
     from,
     to,

@@ -30,17 +30,25 @@ export function runsOf(map: BestCountMap): Run[] {
   });
 }
 
-/** Where the number of each count stands: in the middle of its longest run, of the rows in which it is about that long. */
+/** A run of more than this share of the longest of its count is long enough for its number. */
+const LONG_ENOUGH = 0.6;
+
+/**
+ * Where the number of each count stands: in the middle of a long run, as near the lower quarter of the map as there is one:
+ * the record's own static head is in the middle.
+ */
 export function namesOf(
   runs: readonly Run[],
 ): { readonly count: number; readonly row: number; readonly flowM3s: number }[] {
   const counts = [...new Set(runs.map((run) => run.count))].sort((a, b) => a - b);
+  const quarter = Math.max(...runs.map((run) => run.row)) / 4;
   return counts.map((count) => {
     const own = runs.filter((run) => run.count === count);
     const length = (run: Run) => run.toM3s - run.fromM3s;
     const longest = Math.max(...own.map(length));
-    const long = own.filter((run) => length(run) > 0.9 * longest);
-    const { row, fromM3s, toM3s } = long[Math.floor(long.length / 2)]!;
+    const { row, fromM3s, toM3s } = own
+      .filter((run) => length(run) > LONG_ENOUGH * longest)
+      .reduce((best, run) => (Math.abs(run.row - quarter) < Math.abs(best.row - quarter) ? run : best));
     return { count, row, flowM3s: (fromM3s + toM3s) / 2 };
   });
 }
