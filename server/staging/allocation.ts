@@ -57,6 +57,22 @@ export function allocate(makes: readonly Make[], flow: number, header: number): 
   return best;
 }
 
+/** The same where every pump must carry some of the flow. */
+export function allocateToAll(makes: readonly Make[], flow: number, header: number): Allocation {
+  const found = onGrid(makes, flow, header, 1);
+  const starts = found ? [polished(found, (2 * flow) / GRID, header)] : [];
+  for (const tight of tightArrangements(makes, flow, header)) {
+    const running = tight.reduce((sum, share) => sum + share.count, 0);
+    if (running === makes.reduce((sum, make) => sum + make.count, 0)) starts.push(polished(tight, flow, header));
+  }
+  let best: Allocation = { power: Infinity, shares: [] };
+  for (const shares of starts) {
+    const power = powerOf(shares, header);
+    if (power < best.power) best = { power, shares };
+  }
+  return best;
+}
+
 /**
  * Arrangements whose pumps must nearly all be at their limits to carry the flow: so little room is left between them
  * that the grid may step over it. Each starts with its flows in proportion to the limits.
@@ -110,8 +126,12 @@ function powerOf(shares: readonly Share[], header: number): number {
   return sum;
 }
 
-/** The exact search: pumps one after another, the least power of carrying j/GRID of the flow with those so far. */
-function onGrid(makes: readonly Make[], flow: number, header: number): Share[] | null {
+/**
+ * The exact search: pumps one after another, the least power of carrying j/GRID of the flow with those so far.
+ *
+ * @param least  steps that each pump must carry: 0 where it may rest, 1 where it has to run
+ */
+function onGrid(makes: readonly Make[], flow: number, header: number, least = 0): Share[] | null {
   const step = flow / GRID;
   let table = new Float64Array(GRID + 1).fill(Infinity);
   table[0] = 0;
@@ -133,7 +153,7 @@ function onGrid(makes: readonly Make[], flow: number, header: number): Share[] |
       const taken = new Uint8Array(GRID + 1);
       for (let j = 0; j <= GRID; j++) {
         const most = Math.min(j, top);
-        for (let i = 0; i <= most; i++) {
+        for (let i = least; i <= most; i++) {
           const power = table[j - i]! + curve[i]!;
           if (power < next[j]!) {
             next[j] = power;
@@ -163,22 +183,42 @@ function onGrid(makes: readonly Make[], flow: number, header: number): Share[] |
  *
  * @param reach  how far a flow may move [m³/s]: the grid has it right to a step or two
  */
-function polished(found: Share[], reach: number, header: number): Share[] {
+function polished(found: Share[], reach: number, header: number): readonly Share[] {
   const shares = grouped(found, header);
   if (shares.length === 1) return shares;
   if (shares.length === 2) return passedBetween(shares[0]!, shares[1]!, reach, header);
-  const moved = equalMarginals(shares, reach, header);
-  return powerOf(moved, header) < powerOf(shares, header) ? moved : shares;
+  const { shares: moved, convex } = equalMarginals(shares, reach, header);
+  const better = powerOf(moved, header) < powerOf(shares, header) ? moved : shares;
+  return convex ? better : passedAround(better, reach, header);
+}
+
+/** Flow passed between every two groups in turn until nothing is gained: where powers are not convex. */
+function passedAround(start: readonly Share[], reach: number, header: number): readonly Share[] {
+  const shares = [...start];
+  let power = powerOf(shares, header);
+  for (let round = 0; round < 12; round++) {
+    for (let i = 0; i < shares.length; i++) {
+      for (let j = i + 1; j < shares.length; j++) {
+        const [one, two] = passedBetween(shares[i]!, shares[j]!, reach, header);
+        shares[i] = one;
+        shares[j] = two;
+      }
+    }
+    const before = power;
+    power = powerOf(shares, header);
+    if (before - power <= 1e-9 * power) break;
+  }
+  return shares;
 }
 
 /** Flow passed from one group to another, by golden sections: sure whatever the shape of their powers. */
-function passedBetween(one: Share, two: Share, reach: number, header: number): Share[] {
+function passedBetween(one: Share, two: Share, reach: number, header: number): [Share, Share] {
   const room = (s: Share) => s.count * (s.least.mostFlow(s.mode, header) - s.flow);
   const spare = (s: Share) => s.count * (s.flow - Math.max(s.least.leastFlow(s.mode, header), 1e-3 * s.flow));
   const low = -Math.min(reach, spare(one), room(two));
   const high = Math.min(reach, spare(two), room(one));
   if (!(high > low)) return [one, two];
-  const pass = (d: number): Share[] => [
+  const pass = (d: number): [Share, Share] => [
     { ...one, flow: one.flow + d / one.count },
     { ...two, flow: two.flow - d / two.count },
   ];
@@ -189,20 +229,29 @@ function passedBetween(one: Share, two: Share, reach: number, header: number): S
 /**
  * Newton's method on the condition that every group that can move has one marginal power: each step solves the
  * quadratic model under Σ n·δ = 0, groups at a limit that would leave it being held there.
+ *
+ * @returns  the split, and whether every group with room to move was convex where it ended
  */
-function equalMarginals(start: readonly Share[], reach: number, header: number): Share[] {
+function equalMarginals(
+  start: readonly Share[],
+  reach: number,
+  header: number,
+): { shares: readonly Share[]; convex: boolean } {
   const limits = start.map((s) => ({
     low: Math.max(s.least.leastFlow(s.mode, header), 1e-3 * s.flow, s.flow - reach),
     high: Math.min(s.least.mostFlow(s.mode, header), s.flow + reach),
   }));
   let shares = [...start];
   let power = powerOf(shares, header);
+  let convex = true;
   for (let round = 0; round < 20; round++) {
     const slopes = shares.map((s, i) => slopesOf(s, limits[i]!, header));
+    const stuck = limits.map(({ low, high }) => high <= low);
     const held = new Set<number>();
     slopes.forEach((slope, i) => {
-      if (slope === null || limits[i]!.high <= limits[i]!.low) held.add(i);
+      if (slope === null || stuck[i]) held.add(i);
     });
+    convex = slopes.every((slope, i) => slope !== null || stuck[i]);
     let steps: number[] = [];
     for (let again = 0; again <= shares.length; again++) {
       let top = 0;
@@ -212,7 +261,7 @@ function equalMarginals(start: readonly Share[], reach: number, header: number):
         top += (s.count * slopes[i]!.first) / slopes[i]!.second;
         bottom += s.count / slopes[i]!.second;
       });
-      if (bottom === 0) return shares;
+      if (bottom === 0) return { shares, convex };
       const marginal = top / bottom;
       steps = shares.map((_, i) => (held.has(i) ? 0 : (marginal - slopes[i]!.first) / slopes[i]!.second));
       const before = held.size;
@@ -243,7 +292,7 @@ function equalMarginals(start: readonly Share[], reach: number, header: number):
     }
     if (!gained) break;
   }
-  return shares;
+  return { shares, convex };
 }
 
 /** First and second derivative of a pump's power over its flow, by differences; null where it is not convex there. */

@@ -1,6 +1,6 @@
 import type { Pump } from '../hydraulics/pump.ts';
 import { systemHead } from '../hydraulics/systemCurve.ts';
-import { allocate, type Make, type Share } from './allocation.ts';
+import { allocate, allocateToAll, type Make, type Share } from './allocation.ts';
 import { type Branch, type HullPiece, lowerHull, pieceAt } from './hull.ts';
 import { LeastPower, type Leave, type Mode } from './leastPower.ts';
 import type { MixedPumps, Setting } from './mixedPumps.ts';
@@ -53,7 +53,7 @@ export class BestSets {
   /** The same for a single flow, without a table: for advice about this moment. */
   bestNow(flow: number): Action | null {
     for (const choice of this.choices()) {
-      const found = new SetTable(this.pumps, choice, flow).at(flow);
+      const found = new SetTable(this.pumps, choice, { only: flow }).at(flow);
       if (found) return found;
     }
     return null;
@@ -100,6 +100,137 @@ interface Node {
   readonly key: string;
 }
 
+/** The best that a set can do at a flow, its pumps all running; for rules that look at more than one interval. */
+export class FixedSet {
+  /** Bits of the pumps, in the station's order. */
+  readonly set: number;
+  private readonly tables = new Map<number, readonly SetTable[]>();
+  private readonly pumps: MixedPumps;
+  private readonly places: readonly number[];
+
+  constructor(pumps: MixedPumps, set: number) {
+    this.pumps = pumps;
+    this.set = set;
+    this.places = pumps.duty.map((_, place) => place).filter((place) => Math.floor(set / 2 ** place) % 2 === 1);
+  }
+
+  /** Its action at Q > 0, and whether it keeps to ratings and range; null where it cannot meet the flow. */
+  at(flow: number): { action: Action; overloaded: boolean; inside: boolean } | null {
+    const bucket = Math.round(this.pumps.staticHead * 20);
+    let tables = this.tables.get(bucket);
+    if (!tables) {
+      tables = [new SetTable(this.pumps, { overload: true, ranged: false }, { set: this.places })];
+      this.tables.set(bucket, tables);
+    }
+    const action = tables[0]!.at(flow);
+    if (!action || action.high.set !== this.set) return null;
+    const { overloaded, outsideAllowable } = action.high.doubts;
+    return { action, overloaded, inside: !outsideAllowable };
+  }
+
+  /** What decides of `at`, without the states. */
+  figuresAt(flow: number): SetFigures | null {
+    const found = this.at(flow);
+    if (!found) return null;
+    const { action, overloaded, inside } = found;
+    return { power: meanPower(action), rest: action.share > 0 ? action.high : null, overloaded, inside };
+  }
+
+  /** These figures read off a curve through exactly solved points, for one static head and many flows. */
+  curve(): SetCurve {
+    return new SetCurve(this, this.pumps.pointOf(mostSettings(this.pumps, this.places)).flow);
+  }
+}
+
+/**
+ * Figures of a set over flow at one static head: a cubic through solved points, good to about 1e-9; where a stretch ends
+ * (rest, a limit, the capacity) the flow itself is solved.
+ */
+export class SetCurve {
+  /** What was read last. Mean power is without standby [W]; `rest` shares the time with off, null where nothing rests. */
+  power = 0;
+  overloaded = false;
+  inside = true;
+  rest: State | null = null;
+  private readonly set: FixedSet;
+  private readonly step: number;
+  private readonly points: readonly (SetFigures | null)[];
+  private readonly values: Float64Array;
+  /** Whether the points around a cell, one beyond on either side, lie on one stretch. */
+  private readonly smooth: Uint8Array;
+
+  constructor(set: FixedSet, capacity: number) {
+    this.set = set;
+    this.step = capacity / READ_POINTS;
+    this.points = Array.from({ length: READ_POINTS + 1 }, (_, i) => (i === 0 ? null : set.figuresAt(i * this.step)));
+    this.values = Float64Array.from(this.points, (point) => point?.power ?? Number.NaN);
+    this.smooth = Uint8Array.from(this.points, (here, i) => {
+      const near = [this.points[i - 1], this.points[i + 1], this.points[i + 2]];
+      return here && near.every((each) => each && alike(each, here)) ? 1 : 0;
+    });
+  }
+
+  /** Reads the figures at a flow into the fields; false where the set cannot meet it. */
+  read(flow: number): boolean {
+    const x = flow / this.step;
+    const i = Math.floor(x);
+    if (this.smooth[i] !== 1) return this.take(this.set.figuresAt(flow));
+    this.take(this.points[i]!);
+    const { values } = this;
+    const t = x - i;
+    this.power =
+      (-values[i - 1]! * t * (t - 1) * (t - 2)) / 6 +
+      (values[i]! * (t + 1) * (t - 1) * (t - 2)) / 2 -
+      (values[i + 1]! * (t + 1) * t * (t - 2)) / 2 +
+      (values[i + 2]! * (t + 1) * t * (t - 1)) / 6;
+    return true;
+  }
+
+  private take(found: SetFigures | null): boolean {
+    if (!found) return false;
+    this.power = found.power;
+    this.overloaded = found.overloaded;
+    this.inside = found.inside;
+    this.rest = found.rest;
+    return true;
+  }
+}
+
+function alike(a: SetFigures, b: SetFigures): boolean {
+  return (a.rest === null) === (b.rest === null) && a.overloaded === b.overloaded && a.inside === b.inside;
+}
+
+/** Points of a set's curve of power over flow. */
+const READ_POINTS = 600;
+
+export interface SetFigures {
+  /** Mean electric power [W], standby not included. */
+  readonly power: number;
+  /** The state that shares the time with rest; null where nothing rests. */
+  readonly rest: State | null;
+  readonly overloaded: boolean;
+  readonly inside: boolean;
+}
+
+function mostSettings(pumps: MixedPumps, places: readonly number[]): Setting[] {
+  return places.map((place) => {
+    const { hasDrive, maxSpeed } = pumps.duty[place]!;
+    return { place, speed: hasDrive ? maxSpeed : 1, onDrive: hasDrive };
+  });
+}
+
+/** Sets that are the best at some flow, at the static head that is set: by bits, in the order met. */
+export function setsInUse(pumps: MixedPumps): number[] {
+  const sets = new BestSets(pumps);
+  const capacity = pumps.flatOut(pumps.most).flow;
+  const found = new Set<number>();
+  for (let i = 1; i <= NODES; i++) {
+    const action = sets.best((capacity * (i - 0.5)) / NODES);
+    if (action && action.high.set > 0) found.add(action.high.set);
+  }
+  return [...found];
+}
+
 class SetTable {
   private readonly pumps: MixedPumps;
   private readonly choice: Strictness;
@@ -109,11 +240,16 @@ class SetTable {
   /** Sets at their lowest, told by their settings, with the flow and the power per flow found when the table was made. */
   private readonly rests: readonly { settings: readonly Setting[]; flow: number; perFlow: number }[];
   private hull: readonly HullPiece[] | null = null;
+  private readonly set: readonly number[] | null;
 
-  /** @param only  a single flow to search, where no more will be asked */
-  constructor(pumps: MixedPumps, choice: Strictness, only?: number) {
+  /**
+   * @param only  a single flow to search, where no more will be asked
+   * @param set   places of the pumps that all have to run, where the set is given
+   */
+  constructor(pumps: MixedPumps, choice: Strictness, { only, set }: { only?: number; set?: readonly number[] } = {}) {
     this.pumps = pumps;
     this.choice = choice;
+    this.set = set ?? null;
     this.valve = pumps.station.surplus === 'throttle';
     const capacity = pumps.flatOut(pumps.most).flow;
     this.step = only ?? capacity / NODES;
@@ -132,11 +268,12 @@ class SetTable {
       overload: choice.overload,
       range: choice.ranged ? pumps.station.allowable : null,
     });
-    const driven = pumps.duty.map((_, place) => place).filter((place) => pumps.duty[place]!.hasDrive);
-    const line = pumps.duty.map((_, place) => place).filter((place) => !pumps.duty[place]!.hasDrive);
+    const places = this.set ?? pumps.duty.map((_, place) => place);
+    const carry = this.set ? allocateToAll : allocate;
+    const driven = places.filter((place) => pumps.duty[place]!.hasDrive);
+    const line = places.filter((place) => !pumps.duty[place]!.hasDrive);
     if (valve) {
-      const places = [...driven, ...line];
-      const makes = makesOf(places, pumps.duty, (pump) => leave([pump.hasDrive ? 'drive' : 'line']));
+      const makes = makesOf([...driven, ...line], pumps.duty, (pump) => leave([pump.hasDrive ? 'drive' : 'line']));
       const { power, shares } = allocate(
         makes.map((m) => m.make),
         flow,
@@ -147,7 +284,7 @@ class SetTable {
     const drivenMakes = makesOf(driven, pumps.duty, () => leave(['drive']));
     const lineLeast = line.map((place) => new LeastPower(pumps.duty[place]!, leave(['line'])));
     let best: { power: number; parts: Part[] } | null = null;
-    for (let set = 0; set < 2 ** line.length; set++) {
+    for (let set = this.set ? 2 ** line.length - 1 : 0; set < 2 ** line.length; set++) {
       const parts: Part[] = [];
       let power = 0;
       let left = flow;
@@ -162,14 +299,14 @@ class SetTable {
       if (power === Infinity || left < -1e-12 * flow || (best && power >= best.power)) continue;
       if (left > 1e-12 * flow) {
         if (driven.length === 0) continue;
-        const found = allocate(
+        const found = carry(
           drivenMakes.map((m) => m.make),
           left,
           header,
         );
         power += found.power;
         parts.push(...partsOf(found.shares, drivenMakes));
-      }
+      } else if (this.set && driven.length > 0) continue;
       if (power < (best?.power ?? Infinity)) best = { power, parts };
     }
     return best && nodeOf(flow, best.parts);
@@ -180,7 +317,8 @@ class SetTable {
     const { allowable } = pumps.station;
     const found: { settings: Setting[]; flow: number; perFlow: number }[] = [];
     const seen = new Set<string>();
-    for (let set = 1; set < 2 ** pumps.most; set++) {
+    const all = this.set ? this.set.reduce((sum, place) => sum + 2 ** place, 0) : 2 ** pumps.most - 1;
+    for (let set = this.set ? all : 1; set <= all; set++) {
       const places = pumps.duty.map((_, place) => place).filter((place) => Math.floor(set / 2 ** place) % 2 === 1);
       const alike = places
         .map((place) => pumps.duty[place]!.make)

@@ -69,15 +69,23 @@ export class FloorTable {
   constructor(station: Station, duty: readonly Pump[], solve: Solve, staticHead: number) {
     const ends = breakFlows(station, duty, staticHead);
     this.capacity = ends[ends.length - 1] ?? 0;
+    // Many different pumps have many arrangements, each good for a short stretch: there a coarser eye sees as much.
+    const many = setsByMake(duty).length > MOST_BREAKS;
+    const nodes = many ? NODES / 2 : NODES;
+    const narrow = many ? 3e-5 : 1e-6;
     const segments: Segment[] = [];
     let from = 0;
     for (const to of ends) {
       if (to <= from * (1 + 1e-9)) continue;
-      segments.push(new Segment(from, to, Math.max(6, Math.ceil((NODES * (to - from)) / this.capacity)), solve));
+      const cells = Math.max(6, Math.ceil((nodes * (to - from)) / this.capacity));
+      segments.push(new Segment(from, to, cells, narrow * this.capacity, solve));
       from = to;
     }
     this.segments = segments;
-    this.hull = station.surplus === 'storage' ? lowerHull(segments) : null;
+    this.hull =
+      station.surplus === 'storage'
+        ? lowerHull(many ? [...segments, ...directPoints(station, duty, staticHead)] : segments)
+        : null;
     this.last = segments.length === 0 ? 0 : this.within(this.capacity);
   }
 
@@ -130,6 +138,22 @@ function breakFlows(station: Station, duty: readonly Pump[], staticHead: number)
   return [...flows].filter((flow) => flow > 0).sort((a, b) => a - b);
 }
 
+/** Operating points of sets direct on line, for the hull: points at which F may dip between nodes. */
+function directPoints(station: Station, duty: readonly Pump[], staticHead: number): Branch[] {
+  return setsByMake(duty).flatMap((set): Branch[] => {
+    const flow = combinedFlow(
+      station,
+      staticHead,
+      set.map((pump) => ({ pump, speed: 1 })),
+    );
+    const header = systemHead(station.friction, staticHead, flow);
+    const flows = set.map((pump) => pump.flowInto(header, 1));
+    if (flow <= 0 || flows.some((q) => q <= 0)) return [];
+    const power = set.reduce((sum, pump, i) => sum + pump.electric(flows[i]!, 1, false), 0);
+    return [{ from: flow, to: flow, power: () => power }];
+  });
+}
+
 /** Every different choice of pumps: equal pumps count by number, not by name. */
 function setsByMake(duty: readonly Pump[]): Pump[][] {
   const groups: Pump[][] = [];
@@ -153,7 +177,7 @@ interface Node {
 
 /**
  * F between two flows at which it may jump. It is solved at even nodes; where the arrangement changes between two of
- * them, the place is bisected down to a millionth of the width, so that each stretch between changes is smooth.
+ * them, the place is bisected down to `narrow`, so that each stretch between changes is smooth.
  */
 class Segment implements Branch {
   readonly from: number;
@@ -163,10 +187,9 @@ class Segment implements Branch {
   /** Arrangements by number: nodes of one number in a row lie on one smooth stretch. */
   private readonly kinds: Uint16Array;
 
-  constructor(from: number, to: number, cells: number, solve: Solve) {
+  constructor(from: number, to: number, cells: number, narrow: number, solve: Solve) {
     // The left end belongs to the segment before it (what runs there may not reach further), or is rest.
     const start = from + (to - from) * 1e-6;
-    const narrow = (to - start) * 1e-6;
     const nodeAt = (flow: number): Node => ({ flow, ...solve(flow) });
     const nodes: Node[] = [];
     for (let i = 0; i <= cells; i++) {
@@ -197,8 +220,11 @@ class Segment implements Branch {
       else high = middle;
     }
     const kind = kinds[low];
-    // A cell in which the arrangement changes is a millionth wide.
-    if (kind !== kinds[high]) return flow - flows[low]! < flows[high]! - flow ? values[low]! : values[high]!;
+    // A cell in which the arrangement changes is so narrow that a straight line through it will do.
+    if (kind !== kinds[high]) {
+      const share = (flow - flows[low]!) / (flows[high]! - flows[low]!);
+      return values[low]! + share * (values[high]! - values[low]!);
+    }
     if (high < last && kinds[high + 1] === kind) high++;
     while (high - low < 3 && low > 0 && kinds[low - 1] === kind) low--;
     while (high - low < 3 && high < last && kinds[high + 1] === kind) high++;

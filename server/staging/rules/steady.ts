@@ -1,44 +1,55 @@
+import { FixedSet, type SetCurve, setsInUse } from '../bestSets.ts';
 import type { DemandRecord } from '../demandRecord.ts';
+import { setOf } from '../equalPumps.ts';
+import { MixedPumps } from '../mixedPumps.ts';
 import { type Decide, type Rule, staticHeadAt } from '../rule.ts';
-import type { StagedPumps, Trim } from '../stagedPumps.ts';
-import { type Action, held } from '../state.ts';
+import type { StagedPumps } from '../stagedPumps.ts';
+import { type Action, held, type State } from '../state.ts';
 import { eachCandidate, flatOut } from './trimmedCounts.ts';
 
 /**
- * As best-count, but over the whole record: least energy + start penalty × starts, where a count may change only after
- * the minimum run, except where it cannot meet the flow. Exact, by dynamic programming; each gap begins afresh.
+ * As best-count, but over the whole record: least energy + start penalty × starts, where the running set may change only
+ * after the minimum run, except where it cannot meet the flow. Exact, by dynamic programming; each gap begins afresh. Of
+ * equal pumps the sets are the counts; of up to four that differ, all sets; of more, those that are the best at some flow
+ * and those of the station's own order.
  */
 export const steady: Rule = {
   id: 'steady',
   drives: 'all',
   start(pumps, record): Decide {
-    const counts = bestCounts(pumps, record);
+    const ways = pumps instanceof MixedPumps ? new SetWays(pumps, record) : new CountWays(pumps);
+    const chosen = bestSequence(pumps, ways, record);
     let i = 0;
-    return (flow) => actionOf(pumps, counts[i++]!, flow);
+    return (flow) => ways.action(chosen[i++]!, flow);
   },
 };
 
-function actionOf(pumps: StagedPumps, count: number, flow: number): Action {
-  if (count === 0) return held(pumps.off);
-  const trim = pumps.trim(count, flow);
-  return trim.feasible ? pumps.action(trim, flow) : flatOut(pumps, flow);
+/** The running sets to choose from, by number; 0 is off. What each costs in an interval, and whether it may run there. */
+interface Ways {
+  readonly size: number;
+  /** Energy and cycling starts of the interval [J]. */
+  readonly cost: Float64Array;
+  /** Pumps that keep running through the interval, as bits: none where the set rests for part of it. */
+  readonly base: Uint32Array;
+  readonly may: Uint8Array;
+  fill(flow: number, seconds: number): void;
+  action(way: number, flow: number): Action;
 }
 
-/** What each count costs in one interval, and whether it may run there. */
-class IntervalCosts {
+/** Counts of equal pumps: way n is n pumps. */
+class CountWays implements Ways {
+  readonly size: number;
   readonly cost: Float64Array;
-  /** Pumps that keep running through the interval: none where the count rests for part of it. */
-  readonly base: Uint8Array;
+  readonly base: Uint32Array;
   readonly may: Uint8Array;
   private readonly pumps: StagedPumps;
-  private readonly penalty: number;
 
   constructor(pumps: StagedPumps) {
     this.pumps = pumps;
-    this.penalty = pumps.station.steady.startPenalty;
-    this.cost = new Float64Array(pumps.most + 1);
-    this.base = new Uint8Array(pumps.most + 1);
-    this.may = new Uint8Array(pumps.most + 1);
+    this.size = pumps.most + 1;
+    this.cost = new Float64Array(this.size);
+    this.base = new Uint32Array(this.size);
+    this.may = new Uint8Array(this.size);
   }
 
   fill(flow: number, seconds: number): void {
@@ -46,8 +57,6 @@ class IntervalCosts {
     may.fill(0);
     if (flow === 0) {
       may[0] = 1;
-      cost[0] = 0;
-      base[0] = 0;
       return;
     }
     let any = false;
@@ -55,26 +64,126 @@ class IntervalCosts {
       any = true;
       const n = trim.count;
       may[n] = 1;
-      base[n] = trim.rest ? 0 : n;
-      cost[n] = trim.power * seconds + this.penalty * this.cycleStarts(trim, flow, seconds);
+      base[n] = trim.rest ? 0 : setOf(n);
+      cost[n] = trim.power * seconds + cyclePenalty(pumps, trim.rest, flow, seconds);
       return false;
     });
     if (any) return;
     const n = pumps.most;
     may[n] = 1;
-    base[n] = n;
+    base[n] = setOf(n);
     cost[n] = pumps.flatOut(n).power * seconds;
   }
 
-  /** Starts within the interval of a count that shares it with rest; 0 where the volume is unknown. */
-  private cycleStarts(trim: Trim, flow: number, seconds: number): number {
-    const volume = this.pumps.station.storage.activeVolume;
-    if (!trim.rest || volume === null) return 0;
-    return (seconds / (volume / flow + volume / (trim.rest.flow - flow))) * trim.count;
+  action(way: number, flow: number): Action {
+    if (way === 0) return held(this.pumps.off);
+    const trim = this.pumps.trim(way, flow);
+    return trim.feasible ? this.pumps.action(trim, flow) : flatOut(this.pumps, flow);
   }
 }
 
-/** Entries into a count that have not yet run their least time, oldest first. */
+const MOST_ALL_SETS = 4;
+
+const OVERLOADED = 1;
+const OUTSIDE = 2;
+const CANNOT = 4;
+
+/** Sets of pumps that differ. */
+class SetWays implements Ways {
+  readonly size: number;
+  readonly cost: Float64Array;
+  readonly base: Uint32Array;
+  readonly may: Uint8Array;
+  private readonly pumps: MixedPumps;
+  private readonly sets: readonly FixedSet[];
+  /** Where the whole record has one static head, its figures are read off curves. */
+  private readonly curves: readonly SetCurve[] | null;
+  private readonly rests: (State | null)[];
+  private readonly doubts: Uint8Array;
+
+  constructor(pumps: MixedPumps, record: DemandRecord) {
+    this.pumps = pumps;
+    if (record.flow.length > 0) pumps.at(staticHeadAt(record, 0));
+    const full = setOf(pumps.most);
+    const bits = new Set<number>();
+    if (pumps.most <= MOST_ALL_SETS) for (let set = 1; set <= full; set++) bits.add(set);
+    else {
+      for (const set of setsInUse(pumps)) bits.add(set);
+      for (let n = 1; n <= pumps.most; n++) bits.add(setOf(n));
+    }
+    this.sets = [...bits].sort((a, b) => a - b).map((set) => new FixedSet(pumps, set));
+    this.curves = typeof record.staticHead === 'number' ? this.sets.map((set) => set.curve()) : null;
+    this.size = this.sets.length + 1;
+    this.cost = new Float64Array(this.size);
+    this.base = new Uint32Array(this.size);
+    this.may = new Uint8Array(this.size);
+    this.rests = new Array(this.size).fill(null);
+    this.doubts = new Uint8Array(this.size);
+  }
+
+  fill(flow: number, seconds: number): void {
+    const { pumps, cost, base, may } = this;
+    may.fill(0);
+    if (flow === 0) {
+      may[0] = 1;
+      return;
+    }
+    const { doubts, rests, sets, curves } = this;
+    // As for counts: those that overload no motor where there are any, of these those inside the range.
+    let sound = false;
+    let inside = false;
+    let soundInside = false;
+    for (let i = 0; i < sets.length; i++) {
+      const read = curves ? (curves[i]!.read(flow) ? curves[i]! : null) : sets[i]!.figuresAt(flow);
+      doubts[i] = CANNOT;
+      if (!read) continue;
+      doubts[i] = (read.overloaded ? OVERLOADED : 0) + (read.inside ? 0 : OUTSIDE);
+      if (!read.overloaded) sound = true;
+      if (read.inside) inside = true;
+      if (doubts[i] === 0) soundInside = true;
+      rests[i] = read.rest;
+      cost[i + 1] = read.power * seconds;
+    }
+    const forbidden = (sound ? OVERLOADED : 0) + ((sound ? soundInside : inside) ? OUTSIDE : 0) + CANNOT;
+    let any = false;
+    for (let i = 0; i < sets.length; i++) {
+      if ((doubts[i]! & forbidden) !== 0) continue;
+      any = true;
+      may[i + 1] = 1;
+      const rest = rests[i]!;
+      base[i + 1] = rest ? 0 : sets[i]!.set;
+      if (rest) cost[i + 1]! += cyclePenalty(pumps, rest, flow, seconds);
+    }
+    if (any) return;
+    const last = this.size - 1;
+    const state = pumps.flatOut(pumps.most);
+    may[last] = 1;
+    base[last] = state.set;
+    cost[last] = state.power * seconds;
+  }
+
+  action(way: number, flow: number): Action {
+    if (way === 0) return held(this.pumps.off);
+    return this.sets[way - 1]!.at(flow)?.action ?? flatOut(this.pumps, flow);
+  }
+}
+
+/** What the starts within an interval count for [J], where a set shares it with rest; 0 where the volume is unknown. */
+function cyclePenalty({ station }: StagedPumps, rest: State | null, flow: number, seconds: number): number {
+  const volume = station.storage.activeVolume;
+  if (!rest || volume === null) return 0;
+  return (station.steady.startPenalty * rest.count * seconds) / (volume / flow + volume / (rest.flow - flow));
+}
+
+/** Pumps of `to` that are not in `from`: so many start. */
+function startsBetween(from: number, to: number): number {
+  let rising = to & ~from;
+  let count = 0;
+  for (; rising !== 0; rising &= rising - 1) count++;
+  return count;
+}
+
+/** Entries into a set that have not yet run their least time, oldest first. */
 interface Waiting {
   entry: number[];
   value: number[];
@@ -82,14 +191,14 @@ interface Waiting {
 }
 
 /**
- * The count in each interval. For each count the cheapest way to be in it and free to leave is carried along, and the
- * ways in that must still wait; a way's cost since its entry is the same for all of them, so it is kept once, as a sum.
+ * The way taken in each interval. For each the cheapest path that is in it and free to leave is carried along, and the
+ * paths that must still wait; what a path costs since its entry is the same for all of them, so it is kept once, as a sum.
  */
-function bestCounts(pumps: StagedPumps, record: DemandRecord): Uint8Array {
+function bestSequence(pumps: StagedPumps, now: Ways, record: DemandRecord): Uint16Array {
   const { minRun, startPenalty } = pumps.station.steady;
   const n = record.flow.length;
-  const sets = pumps.most + 1;
-  const fromCount = new Uint8Array(n * sets);
+  const sets = now.size;
+  const fromWay = new Uint16Array(n * sets);
   const fromEntry = new Int32Array(n * sets).fill(-1);
   const free = new Float64Array(sets).fill(Infinity);
   const freeEntry = new Int32Array(sets).fill(-1);
@@ -98,13 +207,11 @@ function bestCounts(pumps: StagedPumps, record: DemandRecord): Uint8Array {
   const leave = new Float64Array(sets);
   const leaveEntry = new Int32Array(sets);
   const enter = new Float64Array(sets);
-  const now = new IntervalCosts(pumps);
-  const baseBefore = new Uint8Array(sets);
-  const chosen = new Uint8Array(n);
+  const baseBefore = new Uint32Array(sets);
+  const chosen = new Uint16Array(n);
   let stretch = 0;
 
   const start = (i: number) => record.startMs[i]! / 1000;
-  const rise = (from: number, to: number) => (to > from ? to - from : 0);
 
   for (let i = 0; i < n; i++) {
     pumps.at(staticHeadAt(record, i));
@@ -134,7 +241,7 @@ function bestCounts(pumps: StagedPumps, record: DemandRecord): Uint8Array {
       leave[s] = free[s]!;
       leaveEntry[s] = freeEntry[s]!;
       if (now.may[s]) continue;
-      // A count that cannot meet the flow may go at once, however short it has run.
+      // A set that cannot meet the flow may go at once, however short it has run.
       const { entry, value, head } = waiting[s]!;
       for (let k = head; k < entry.length; k++) {
         if (value[k]! + since[s]! >= leave[s]!) continue;
@@ -148,18 +255,18 @@ function bestCounts(pumps: StagedPumps, record: DemandRecord): Uint8Array {
       let best = -1;
       for (let from = 0; from < sets; from++) {
         if (from === to || leave[from] === Infinity) continue;
-        const cost = leave[from]! + startPenalty * rise(baseBefore[from]!, now.base[to]!);
+        const cost = leave[from]! + startPenalty * startsBetween(baseBefore[from]!, now.base[to]!);
         if (cost >= enter[to]!) continue;
         enter[to] = cost;
         best = from;
       }
       if (best < 0) continue;
-      fromCount[i * sets + to] = best;
+      fromWay[i * sets + to] = best;
       fromEntry[i * sets + to] = leaveEntry[best]!;
     }
     for (let s = 0; s < sets; s++) {
       if (now.may[s]) {
-        const stay = now.cost[s]! + startPenalty * rise(baseBefore[s]!, now.base[s]!);
+        const stay = now.cost[s]! + startPenalty * startsBetween(baseBefore[s]!, now.base[s]!);
         since[s]! += stay;
         free[s]! += stay;
         if (enter[s]! < Infinity) push(s, i, enter[s]! + now.cost[s]!);
@@ -171,7 +278,7 @@ function bestCounts(pumps: StagedPumps, record: DemandRecord): Uint8Array {
     }
   }
 
-  /** Ways into a count that have run their least time become free. */
+  /** Paths into a set that have run their least time become free. */
   function release(s: number, i: number): void {
     const wait = waiting[s]!;
     while (wait.head < wait.entry.length && start(i) - start(wait.entry[wait.head]!) >= minRun - 1e-6) {
@@ -215,7 +322,7 @@ function bestCounts(pumps: StagedPumps, record: DemandRecord): Uint8Array {
       if (entry <= first) break;
       const at = entry * sets + set;
       end = entry - 1;
-      set = fromCount[at]!;
+      set = fromWay[at]!;
       entry = fromEntry[at]!;
     }
   }
