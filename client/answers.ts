@@ -2,6 +2,7 @@ import type { PowerOverFlow } from '../server/staging/pictures.ts';
 import type { ComparisonResult, RuleId, RuleResult } from '../server/staging/result.ts';
 import type { StationFile } from '../server/station/stationFile.ts';
 import { type Format, inWords, list, ordinal, pumps, sentence } from './format.ts';
+import { aboveFloor } from './questions/cost/ledger.ts';
 import { ruleName } from './rules.ts';
 import { equipmentOf } from './station.ts';
 import { isScaled, type Weighing, weighingOf, yearCost, yearEnergy } from './yearly.ts';
@@ -139,10 +140,9 @@ export function costAnswer(open: Subject, format: Format): string {
 }
 
 function besideLeast({ today, least, weighing, rules }: Weighed, format: Format): string {
-  const { aboveFloorPercent } = today.rule;
-  if (aboveFloorPercent !== undefined) {
-    return `${format.say(format.percent, aboveFloorPercent)} above the least possible energy`;
-  }
+  const above = aboveFloor(today.rule);
+  if (above === 0) return 'the least possible energy';
+  if (above !== undefined) return `${format.say(format.percent, above)} above the least possible energy`;
   if (least === today) return `the least of ${rules.length} rules`;
   const less = format.say(format.percent, (100 * (today.perYear - least.perYear)) / today.perYear);
   return `${ruleName(least.rule.rule)} ${weighing === 'money' ? 'costs' : 'takes'} ${less} less`;

@@ -68,6 +68,13 @@ describe('the case to begin with', () => {
     expect(startOf(rules.filter(({ rule }) => rule !== 'flow-steps'))!.draft.baseline).toBe('fixed-speed');
   });
 
+  it('does not restage for less than half a percent', () => {
+    const near = rules.map((each) => (each.rule === 'flow-steps' ? { ...each, totalCost: 100.4 } : each));
+    expect(startOf(near)!.draft.options!.map(({ rule }) => rule)).toEqual(['one-trimmed']);
+    const off = rules.map((each) => (each.rule === 'flow-steps' ? { ...each, totalCost: 100.6 } : each));
+    expect(startOf(off)!.draft.options!.map(({ rule }) => rule)).toEqual(['fixed-speed', 'one-trimmed']);
+  });
+
   it('does not restage to what leaves flow unmet', () => {
     const short = rules.map((each) => (each.rule === 'fixed-speed' ? { ...each, shortfallHours: 3 } : each));
     const { options } = startOf([...short, { ...aBilledRule('batch', 110), needsDrives: 0 }])!.draft;

@@ -40,6 +40,7 @@ describe('the bars of the ledger', () => {
     expect(plain(ledgerSentence({ ...fixed, aboveFloorPercent: 33.33 }, aFormat()))).toBe(
       'At fixed speed 50 % of the energy lifts the water; the whole is 33.3 % above the least possible',
     );
+    expect(plain(ledgerSentence({ ...fixed, aboveFloorPercent: 9e-15 }, aFormat()))).toMatch(/takes less$/);
     expect(plain(ledgerSentence(fixed, aFormat()))).toBe('At fixed speed 50 % of the energy lifts the water');
   });
 });

@@ -64,8 +64,9 @@ export function startingCase(
   { rules, inputs }: Pick<ComparisonResult, 'rules' | 'inputs'>,
 ): CaseStart | null {
   const byId = (id: RuleId) => rules.find((rule) => rule.rule === id);
-  const baseline = (byId('flow-steps') ?? byId('fixed-speed') ?? rules[0])?.rule;
-  if (baseline === undefined) return null;
+  const today = byId('flow-steps') ?? byId('fixed-speed') ?? rules[0];
+  if (today === undefined) return null;
+  const baseline = today.rule;
   const { duty } = equipmentOf(station);
   const prices = drivePrices(station);
   const currency = inputs.currency;
@@ -76,9 +77,10 @@ export function startingCase(
     return asked.reduce<number>((sum, each) => sum + each!, 0);
   };
   const restaged = cheapest(rules.filter((rule) => rule.needsDrives === 0 && rule.rule !== baseline));
-  const restage = restaged
-    ? [{ name: `restaging to ${ruleName(restaged.rule)}`, rule: restaged.rule, capital: 0 }]
-    : [];
+  const restage =
+    restaged && saves(today, restaged)
+      ? [{ name: `restaging to ${ruleName(restaged.rule)}`, rule: restaged.rule, capital: 0 }]
+      : [];
   const one = byId('one-trimmed');
   const onePrice = price(1);
   const oneDrive =
@@ -117,8 +119,17 @@ export function startingCase(
   };
 }
 
+/** What a rule is weighed by: its bill, or without one its energy. */
+const weight = (rule: RuleResult) => rule.totalCost ?? rule.energyKwh;
+
+/** A smaller share of the baseline than this is no reason to restage; the server has the same. */
+const TELLING = 0.005;
+
+function saves(baseline: RuleResult, other: RuleResult): boolean {
+  return weight(other) < (1 - TELLING) * weight(baseline);
+}
+
 function cheapest(rules: readonly RuleResult[]): RuleResult | null {
-  const weight = (rule: RuleResult) => rule.totalCost ?? rule.energyKwh;
   // A rule that leaves flow unmet is no fair way to run.
   const met = rules.filter((rule) => rule.shortfallHours === 0);
   return (met.length > 0 ? met : rules).reduce<RuleResult | null>(

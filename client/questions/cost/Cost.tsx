@@ -12,6 +12,7 @@ import { RULE_TEXT, ruleName } from '../../rules.ts';
 import { type Bars, countsOf } from '../../series.ts';
 import { LedgerBars } from './LedgerBars.tsx';
 import { LedgerTable } from './LedgerTable.tsx';
+import { aboveFloor } from './ledger.ts';
 import { RuleDetails } from './RuleDetails.tsx';
 
 /** What it costs: the rules side by side, and what each takes above the least. */
@@ -124,7 +125,7 @@ function above(format: Format): Column<RuleResult> {
     unit: format.percent.unit,
     cell: (rule) => (
       <span class="above-floor">
-        <Figure of={format.percent} value={rule.aboveFloorPercent} bare />
+        <Figure of={format.percent} value={aboveFloor(rule)} bare />
       </span>
     ),
   };

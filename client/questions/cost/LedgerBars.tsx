@@ -5,7 +5,7 @@ import { type Format, sentence } from '../../format.ts';
 import { Exhibit } from '../../parts/Exhibit.tsx';
 import { RULE_TEXT } from '../../rules.ts';
 import { LedgerTable } from './LedgerTable.tsx';
-import { LEDGER_PARTS, ledgerBars } from './ledger.ts';
+import { aboveFloor, LEDGER_PARTS, ledgerBars } from './ledger.ts';
 
 interface LedgerBarsProps {
   readonly rules: readonly RuleResult[];
@@ -57,7 +57,11 @@ export function LedgerBars({ rules, today, floorKwh }: LedgerBarsProps) {
                 <div class="above-line">
                   <span style={{ width: percent(above.from) }} />
                   <i class="part above" style={{ width: percent(above.share) }} />
-                  <b>{format.say(format.percent, rule.aboveFloorPercent)} above</b>
+                  <b>
+                    {aboveFloor(rule) === 0
+                      ? 'the least possible'
+                      : `${format.say(format.percent, aboveFloor(rule))} above`}
+                  </b>
                 </div>
               )}
             </dd>
@@ -73,7 +77,8 @@ export function LedgerBars({ rules, today, floorKwh }: LedgerBarsProps) {
 export function ledgerSentence(rule: RuleResult, format: Format): string {
   const share = format.say(format.percent, (100 * rule.ledgerKwh.lift) / rule.energyKwh);
   const lift = `${sentence(asRun(rule.rule))} ${share} of the energy lifts the water`;
-  const above = rule.aboveFloorPercent;
+  const above = aboveFloor(rule);
   if (above === undefined) return lift;
+  if (above === 0) return `${lift}; no other way of running these pumps takes less`;
   return `${lift}; the whole is ${format.say(format.percent, above)} above the least possible`;
 }

@@ -59,3 +59,8 @@ export function ledgerBars<Rule extends Pick<RuleResult, 'ledgerKwh' | 'energyKw
         : { from: floorKwh / longest, share: withoutDust(Math.max(0, rule.energyKwh - floorKwh), longest) / longest },
   }));
 }
+
+/** How far a rule's energy is above the least possible [%], rounding left out; undefined where that is not known. */
+export function aboveFloor({ aboveFloorPercent }: Pick<RuleResult, 'aboveFloorPercent'>): number | undefined {
+  return aboveFloorPercent === undefined ? undefined : withoutDust(aboveFloorPercent, 100);
+}

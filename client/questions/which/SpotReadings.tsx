@@ -47,7 +47,7 @@ export function SpotReadings({ saved, without }: SpotReadingsProps) {
   // What is typed is in the unit of the reader; what is asked, in that of the station.
   const field = (i: number, name: 'flow' | 'head', measure: Measure, unit: number) => (
     <NumberField
-      label={name === 'flow' ? 'Total flow' : 'Header head'}
+      label={name === 'flow' ? 'Total flow' : 'Head across the pumps'}
       unit={measure.unit}
       scale={unit * measure.factor}
       value={rows[i]![name]}
