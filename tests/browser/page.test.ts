@@ -329,6 +329,21 @@ describe.skipIf(browserPath === null)('the page', () => {
     expect(await (await fetch(`${app.origin}/api/stations`)).json()).toEqual([]);
   });
 
+  it('lays gauge readings beside the curves, as the API does', async () => {
+    await withStation();
+    await page.getByText('Lay gauge readings').click();
+    await page.getByLabel('Total flow').fill('70');
+    await page.getByLabel('Pumps on').fill('2');
+    const row = page.locator('table', { hasText: 'Readings beside the curves' }).locator('tbody tr');
+    // Two pumps meet the system where 30 − 0.003·(Q/2)² = 12 + 0.001·Q²: Q = √(18/0.00175) = 101.4 L/s. At 70 L/s the
+    // system asks for 12 + 4.9 m, and the pumps give 30 − 0.003·35² = 26.3 m. The meter is 70/101.4 − 1 = −31 % off.
+    await expect
+      .poll(async () =>
+        (await row.locator('td').allTextContents()).slice(0, 6).map((text) => text.replaceAll('\u00a0', ' ')),
+      )
+      .toEqual(['70', '101', '-31 %', 'not read', '26.3', '16.9']);
+  });
+
   it('draws the map of the best count when it is asked for', async () => {
     await withStation();
     expect(await page.locator('svg.map').count()).toBe(0);
