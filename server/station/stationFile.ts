@@ -5,8 +5,13 @@ import { z } from 'zod';
  * `readStation` checks what the numbers mean.
  */
 
-const positive = z.number().positive();
-const notNegative = z.number().min(0);
+/** No quantity of a station is larger in any of the units; beyond it the arithmetic would overflow. */
+const LARGEST = 1e12;
+
+const positive = z.number().positive().max(LARGEST);
+const notNegative = z.number().min(0).max(LARGEST);
+/** A level above or below the datum. */
+const level = z.number().min(-LARGEST).max(LARGEST);
 const efficiency = z.number().gt(0).max(1);
 
 /** A number, a table over load, or the name of a published table. */
@@ -123,7 +128,7 @@ const range = z
   .strictObject({ from: notNegative, to: positive })
   .refine((r) => r.from < r.to, { message: 'from less than to' });
 
-const levelRange = z.strictObject({ start: z.number(), stop: z.number() });
+const levelRange = z.strictObject({ start: level, stop: level });
 
 export const stationFile = z.strictObject({
   format: z.literal('nth-pump/station/1'),
@@ -148,10 +153,10 @@ export const stationFile = z.strictObject({
   /** Least NPSH available as a multiple of NPSH required. */
   npshMargin: z.number().min(1).optional(),
   system: z.strictObject({
-    staticHead: z.number().min(0),
+    staticHead: notNegative,
     friction,
-    dischargeLevel: z.number().optional(),
-    suctionLevel: z.number().optional(),
+    dischargeLevel: level.optional(),
+    suctionLevel: level.optional(),
     /** Level of the impellers, over the same datum as the suction level. */
     pumpLevel: z.number().optional(),
     /** One point of the loss in each pump's own suction pipe; its flow is that of the one pump. */
@@ -166,7 +171,7 @@ export const stationFile = z.strictObject({
       activeVolume: positive.optional(),
       area: positive.optional(),
       points: z
-        .array(z.strictObject({ level: z.number(), volume: notNegative }))
+        .array(z.strictObject({ level, volume: notNegative }))
         .min(2)
         .optional(),
       levels: z.array(levelRange).min(1).optional(),
