@@ -1,4 +1,4 @@
-import type { DemandRecord } from '../../server/staging/demandRecord.ts';
+import { type DemandRecord, demandRecord } from '../../server/staging/demandRecord.ts';
 import { Floor } from '../../server/staging/floor.ts';
 import { floorPower } from '../../server/staging/floorOverRecord.ts';
 import { RULES } from '../../server/staging/rules/all.ts';
@@ -8,6 +8,7 @@ import { readStation } from '../../server/station/readStation.ts';
 import { billOf } from '../../server/tariff/bill.ts';
 import { planBill } from '../../server/tariff/plan.ts';
 import { readTariff } from '../../server/tariff/tariffFile.ts';
+import { MINUTE_MS } from '../../server/time.ts';
 import { JOULES_PER_KWH } from '../../server/units.ts';
 import { bareBestCount } from './bareLoop.ts';
 import { type Curves, flowsOf, PLAIN, START_MS, stationFile, TARIFF_FILE, YEAR_OF_MINUTES } from './made.ts';
@@ -59,7 +60,7 @@ function proveSameWork(record: DemandRecord): void {
 function movingHead(rounds: number): Measured {
   const flows = flowsOf(YEAR_OF_MINUTES, 6);
   const heads = Float64Array.from(flows, (_, i) => PLAIN.staticHead + 0.8 * Math.sin(i / 7));
-  const record = { ...recordOf(flows), staticHead: heads };
+  const record = recordOf(flows, heads);
   const station = readStation(stationFile(6, 'parabola'), 'bench.json');
   const rule = RULES.find(({ id }) => id === 'best-count')!;
   const bare = bareTime(record, 6, rounds);
@@ -115,19 +116,16 @@ function bareTime(record: DemandRecord, pumps: number, rounds: number): number {
   return shortest(rounds + 2, () => bareBestCount(record.flow, record.seconds, pumps, counts));
 }
 
-function recordOf(flow: Float64Array): DemandRecord {
-  const n = flow.length;
-  return {
-    startMs: Float64Array.from(flow, (_, i) => START_MS + i * 60_000),
-    seconds: new Float64Array(n).fill(60),
+function recordOf(flow: Float64Array, staticHead: Float64Array | null = null): DemandRecord {
+  const station = readStation(stationFile(6, 'parabola'), 'bench.json');
+  return demandRecord(station, {
+    startMs: Float64Array.from(flow, (_, i) => START_MS + i * MINUTE_MS),
+    seconds: new Float64Array(flow.length).fill(60),
     flow,
-    staticHead: PLAIN.staticHead,
-    suctionLevel: null,
-    fromMs: START_MS,
-    toMs: START_MS + n * 60_000,
-    coveredSeconds: n * 60,
-    gapSeconds: 0,
-    volume: flow.reduce((sum, q) => sum + q * 60, 0),
-    notes: [],
-  };
+    level: null,
+    staticHead,
+    power: null,
+    pumpsOn: null,
+    pumps: [],
+  });
 }
