@@ -1,0 +1,39 @@
+/** npm run accuracy: every figure of ours that is held against one from outside, and how far they differ. */
+import { readFileSync, writeFileSync } from 'node:fs';
+import { TOPICS } from '../tests/accuracy/all.ts';
+import { COLUMNS, cells, groupsOf, section, withSection } from '../tests/accuracy/table.ts';
+import { runCommand } from './support/command.ts';
+import { table } from './support/table.ts';
+
+const HELP = `npm run --silent accuracy -- [--write]
+
+Prints every check against an outside figure: what it is, where it is from, the figure printed there, ours, the
+difference, what is allowed and why.
+
+  --write   also renews the last section of README.md
+  --help    this text
+
+Exit code 0 where all differences are within what is allowed, 1 otherwise.
+`;
+
+runCommand(HELP, { values: [], switches: ['write'] }, (given) => {
+  const topics = TOPICS.map((topic) => ({ heading: topic.heading, groups: groupsOf(topic) }));
+  for (const { heading, groups } of topics) {
+    process.stdout.write(`\n${heading}\n`);
+    for (const { source, kind, why, rows } of groups) {
+      const lines = rows.map((row) => [...cells(row), row.passes ? '' : 'FAILS']);
+      process.stdout.write(`\n${kind}: ${source}\nallowed: ${why}\n${table([[...COLUMNS, ''], ...lines])}`);
+    }
+  }
+  const rows = topics.flatMap(({ groups }) => groups).flatMap((group) => group.rows);
+  const failed = rows.filter(({ passes }) => !passes);
+  process.stdout.write(`\n${rows.length} checks, ${failed.length} failed\n`);
+  for (const { check, ours } of failed) {
+    process.stderr.write(`${check.what} (${check.source}): printed ${check.printed}, ours ${ours}\n`);
+  }
+  if (failed.length > 0) process.exitCode = 1;
+  if (given.write === true) {
+    const readme = new URL('../README.md', import.meta.url);
+    writeFileSync(readme, withSection(readFileSync(readme, 'utf8'), section(TOPICS)));
+  }
+});
