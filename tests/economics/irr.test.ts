@@ -2,22 +2,9 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { internalRate } from '../../server/economics/irr.ts';
 import { presentValue } from '../../server/economics/presentValue.ts';
-import reference from '../reference/present-value.json' with { type: 'json' };
 
+// Worked examples of others, with one rate and with several, are in tests/accuracy/economics.ts.
 describe('the internal rate of return', () => {
-  it.each(reference.rates)('of $flows is $rate: $source', ({ flows, rate, tolerance }) => {
-    expect(Math.abs(internalRate(flows).rate! - rate)).toBeLessThan(tolerance);
-  });
-
-  it.each(reference.severalRates)('of $flows is not one: $source', ({ flows, rates, tolerance }) => {
-    const found = internalRate(flows);
-    if (found.rate !== null || found.reason !== 'several') throw new Error('one rate or none was found');
-    expect(found.rates.length).toBe(rates.length);
-    found.rates.forEach((rate, k) => {
-      expect(Math.abs(rate - rates[k]!)).toBeLessThan(tolerance);
-    });
-  });
-
   it.each([[[-100, -1, -2]], [[100, 1, 2]], [[0, 0]], [[]], [[5]], [[-100, 0, 0]]])(
     'does not exist for %j',
     (flows) => {

@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { drawdownTests } from '../../server/ingest/drawdown.ts';
 import { type Inflow, inflowFromLevels } from '../../server/ingest/inflow.ts';
-import { FOOT, INCH, US_GALLON } from '../../server/units.ts';
 import { aRecord } from '../support/aRecord.ts';
 
 const at = (seconds: number): string => new Date(Date.UTC(2025, 0, 1) + seconds * 1000).toISOString();
@@ -12,40 +11,7 @@ const levels = (rows: readonly (readonly (number | string)[])[], step: number, h
 
 const well = (area: number) => (level: number) => area * level;
 
-describe('a drawdown test with the influent shut', () => {
-  // Level falls evenly by `drop` in `minutes`, after a minute at rest with a level that stands still.
-  const pumped = (area: number, drop: number, minutes: number): number => {
-    const rows = Array.from({ length: minutes + 2 }, (_, k) => [
-      10 - (drop * Math.max(0, k - 1)) / minutes,
-      k === 0 ? 0 : 1,
-      0,
-    ]);
-    const [test] = drawdownTests(inflowFromLevels({ log: levels(rows, 60), volume: well(area), side: 'suction' }));
-    expect(test).toMatchObject({ seconds: minutes * 60, pumps: ['P1'], inflowM3s: 0 });
-    return test!.pumpedM3s / (US_GALLON / 60); // gpm
-  };
-
-  it.each([
-    // wastewater101.net 2019-08 "Time for math 33": printed with 7.48 gal/ft³ (exact 7.48052) and π = 3.14
-    ['10 ft across, 6 in in 2 min', Math.PI * (5 * FOOT) ** 2, 6 * INCH, 2, 146.8, 1e-3],
-    ['15 by 12 ft, 3 ft in 30 min', 15 * 12 * FOOT ** 2, 3 * FOOT, 30, 134.64, 1e-4],
-    // onsiteinstaller.com 2016-03, practice answers: 14.5 gal per inch
-    ['14.5 gal/in, 7.5 in in 3 min', (14.5 * US_GALLON) / INCH, 7.5 * INCH, 3, 36.25, 1e-9],
-    // F. Spellman, handbook example 11.1: inputs printed, 198 ft³ of 7.48 gal in 5 min worked by hand
-    ['10 by 9 ft, 2.2 ft in 5 min', 90 * FOOT ** 2, 2.2 * FOOT, 5, 296.2, 1e-4],
-  ])('%s', (_, area, drop, minutes, gpm, tolerance) => {
-    expect(Math.abs(pumped(area, drop, minutes) / gpm - 1)).toBeLessThan(tolerance);
-  });
-});
-
-it('measures a fill: 465 gpm into a well 18 ft across, 6 ft deep, takes 24.55 min', () => {
-  // wastewater101.net 2018-11 "Collection system study time 11", printed with 0.785·d² and 7.48 gal/ft³
-  const rows = Array.from({ length: 3 }, (_, k) => [(6 * FOOT * k) / 2, 0, 0]);
-  const log = levels(rows, 737); // 24.55 min in two steps, to the second
-  const { log: result } = inflowFromLevels({ log, volume: well(Math.PI * (9 * FOOT) ** 2), side: 'suction' });
-  expect(Math.abs(result.flow![0]! / (465 * (US_GALLON / 60)) - 1)).toBeLessThan(2e-3);
-});
-
+// Drawdown tests that others have worked out are in tests/accuracy/storage.ts.
 describe('with inflow running', () => {
   it('adds the inflow of the fills to what is drawn down', () => {
     // By hand: 4 m², up 0.60 m in 240 s is 10 L/s; down 0.60 m in 120 s is 20 L/s more out than in: 30 L/s.
