@@ -11,7 +11,7 @@ import type { StationFile } from '../../server/station/stationFile.ts';
 import { readTariff } from '../../server/tariff/tariffFile.ts';
 
 const demos = demoStations();
-const [wastewater, booster, hilltop] = demos as [Demo, Demo, Demo];
+const [wastewater, booster, hilltop, unequal] = demos as [Demo, Demo, Demo, Demo];
 type Demo = (typeof demos)[number];
 
 function compared(demo: Demo, stationFile: StationFile = demo.station) {
@@ -93,6 +93,32 @@ describe('the demo', () => {
     lowered.system.staticHead = 32;
     const low = compared(hilltop, lowered).result.rules;
     expect(cost(low, 'best-count')).toBeLessThan(0.9 * cost(low, 'fixed-speed'));
+  });
+
+  it('high-lift station: a jockey, two bigger pumps of which one has a drive, and two in series', () => {
+    const { duty } = readStation(unequal.station, 'station.json');
+    expect(duty.map(({ machines, driveFitted }) => [machines.length, driveFitted])).toEqual([
+      [1, false],
+      [1, true],
+      [1, false],
+      [2, false],
+    ]);
+    const [jockey, ...others] = duty.map((pump) => pump.endFlow(1));
+    expect(jockey!).toBeLessThan(Math.min(...others) / 1.5);
+    // Neither of the pair lifts the water alone.
+    for (const { curve } of duty.at(-1)!.machines)
+      expect(curve.shutoffHead).toBeLessThan(unequal.station.system.staticHead);
+  });
+
+  it('high-lift station: choosing the set saves what a controller costs within two years, and names its pumps', () => {
+    const { rules } = compared(unequal).result;
+    const saving = cost(rules, 'flow-steps') - cost(rules, 'best-count');
+    expect(2 * saving).toBeGreaterThan(unequal.caseFile.capital);
+    const { hoursBySet } = rules.find(({ rule }) => rule === 'best-count')!;
+    // The jockey has the nights and leaves the days to the pump with the drive; the pair is for the highest hours.
+    expect(hoursBySet.Jockey).toBeGreaterThan(1000);
+    expect(hoursBySet.Beck).toBeGreaterThan(4000);
+    expect(Object.keys(hoursBySet).filter((set) => set.includes('Pair')).length).toBeGreaterThan(0);
   });
 });
 
