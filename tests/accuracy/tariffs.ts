@@ -17,27 +17,32 @@ function daysOfRisingPower(): OutsideCheck[] {
       readTariff(published.tariff, 'published-bills.json'),
       powerOf({ from, stepMinutes: 15, kw: Array.from({ length: quarterHours }, (_, i) => i) }),
     );
-  return published.cases.flatMap(({ what, from, quarterHours, energyCost, demandCost }): OutsideCheck[] => {
-    const common = { kind: 'published', source: published.source, unit: 'USD' } as const;
-    const demand: OutsideCheck = {
+  const common = { kind: 'published', source: published.source, unit: 'USD' } as const;
+  const energy = published.cases.flatMap(({ what, from, quarterHours, energyCost }): OutsideCheck[] =>
+    energyCost === null
+      ? []
+      : [
+          {
+            ...common,
+            what: `Energy of ${what}, power rising by 1 kW a quarter-hour`,
+            printed: energyCost,
+            ours: () => bill(from, quarterHours).energyCost,
+            allowed: published.tolerance,
+            why: published.toleranceWhy,
+          },
+        ],
+  );
+  const demand = published.cases.map(
+    ({ what, from, quarterHours, demandCost }): OutsideCheck => ({
       ...common,
       what: `Demand charges of ${what}, power rising by 1 kW a quarter-hour`,
       printed: demandCost,
       ours: () => bill(from, quarterHours).demandCost,
       allowed: halfDigit(2),
       why: CENT,
-    };
-    if (energyCost === null) return [demand];
-    const energy: OutsideCheck = {
-      ...common,
-      what: `Energy of ${what}, power rising by 1 kW a quarter-hour`,
-      printed: energyCost,
-      ours: () => bill(from, quarterHours).energyCost,
-      allowed: published.tolerance,
-      why: published.toleranceWhy,
-    };
-    return [energy, demand];
-  });
+    }),
+  );
+  return [...energy, ...demand];
 }
 
 /** 1 kW for a day; the source lays a month's customer charge of 300 on that day, which is here a share of the month. */
