@@ -10,6 +10,8 @@ const LITRES: Record<StationFile['units']['flow'], number> = {
   gpm: 3.785411784 / 60,
   MGD: 3785411.784 / 86400,
 };
+/** m³ in the volume unit beside a flow unit: US gallons beside gpm and MGD. */
+const cubicMetres = (flow: StationFile['units']['flow']) => (flow === 'gpm' || flow === 'MGD' ? 3.785411784e-3 : 1);
 const METRES = { m: 1, ft: 0.3048 };
 const KILOWATTS = { kW: 1, hp: 0.7456998715822702 };
 
@@ -20,12 +22,14 @@ const POWERS = new Set(['ratedPower', 'power', 'standbyPower']);
 export function inUnits(file: StationFile, units: StationFile['units']): StationFile {
   const flow = LITRES[file.units.flow] / LITRES[units.flow];
   const head = METRES[file.units.head] / METRES[units.head];
+  const volume = cubicMetres(file.units.flow) / cubicMetres(units.flow);
   const power = KILOWATTS[file.units.power] / KILOWATTS[units.power];
   const exponent = 'exponent' in file.system.friction ? (file.system.friction.exponent ?? 2) : 2;
   const factorOf = (key: string): number => {
     if (FLOWS.has(key)) return flow;
     if (HEADS.has(key)) return head;
     if (POWERS.has(key)) return power;
+    if (key === 'activeVolume') return volume;
     if (key === 'coefficient') return head / flow ** exponent;
     return key === 'shape' || key === 'branchLoss' ? head / flow ** 2 : 1;
   };
