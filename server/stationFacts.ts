@@ -1,14 +1,14 @@
 import type { PartLoad } from './drive/partLoad.ts';
 import type { Note } from './errors.ts';
 import { fitParabola } from './hydraulics/curveFit.ts';
-import type { Machine, Pump } from './hydraulics/pump.ts';
+import type { Machine } from './hydraulics/pump.ts';
 import { vapourPressure, waterViscosity } from './hydraulics/water.ts';
 import { setName } from './staging/compare.ts';
 import { firmCapacity } from './staging/firmCapacity.ts';
 import { stagedPumps } from './staging/stagedPumps.ts';
 import type { State } from './staging/state.ts';
 import { npshRatio } from './staging/watch.ts';
-import type { Station } from './station/station.ts';
+import { pumpsByMake, type Station } from './station/station.ts';
 import { energyKwh, type FileUnits, FLOW_UNITS, HEAD_UNITS } from './units.ts';
 
 /**
@@ -90,7 +90,7 @@ const WORTH_A_LOOK = 0.05;
 /** The facts of a station, from its file alone. */
 export function stationFacts(station: Station): StationFacts {
   const { units, temperature, density, duty, standby } = station;
-  const pumps = makesOf([...duty, ...standby]).map((alike) => ({
+  const pumps = pumpsByMake([...duty, ...standby]).map((alike) => ({
     names: alike.map((pump) => pump.name),
     machines: alike[0]!.machines.map((machine) => machineFacts(machine, units)),
   }));
@@ -110,16 +110,6 @@ export function stationFacts(station: Station): StationFacts {
     firmCapacity: firmCapacity(station, duty) / FLOW_UNITS[units.flow],
     notes: [...station.notes, ...pumps.flatMap(fitNotes)],
   };
-}
-
-function makesOf(pumps: readonly Pump[]): Pump[][] {
-  const makes = new Map<string, Pump[]>();
-  for (const pump of pumps) {
-    const alike = makes.get(pump.make);
-    if (alike) alike.push(pump);
-    else makes.set(pump.make, [pump]);
-  }
-  return [...makes.values()];
 }
 
 function machineFacts({ curve, inSeries, npshr, motor, drive }: Machine, units: FileUnits): MachineFacts {

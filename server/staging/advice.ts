@@ -4,6 +4,7 @@ import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { Station } from '../station/station.ts';
 import { energyKwh } from '../units.ts';
 import { BestSets } from './bestSets.ts';
+import { deadHeadedNotes } from './deadHeaded.ts';
 import { MixedPumps } from './mixedPumps.ts';
 import { fixedSpeed } from './rules/fixedSpeed.ts';
 import { type StagedPumps, stagedPumps } from './stagedPumps.ts';
@@ -45,10 +46,17 @@ export function adviceNow(station: Station, duty: readonly Pump[], flow: number,
   const sound = ways.filter((action) => isSound(action.high, station));
   const ranked = (sound.length > 0 ? sound : ways).sort((a, b) => meanPower(a) - meanPower(b));
   const first = ranked[0];
+  const shut = (total: number) => deadHeadedNotes(station, duty, systemHead(station.friction, staticHead, total));
   if (!first) {
     const full = pumps.onDrives ? pumps.flatOut(pumps.most) : pumps.fixed(pumps.most);
     const best = full.count === 0 ? null : wayOf(station, held(full), full.flow);
-    return { best, nextBest: null, shortfall: flow - full.flow, headerHead, notes: capacityNotes(full) };
+    return {
+      best,
+      nextBest: null,
+      shortfall: flow - full.flow,
+      headerHead,
+      notes: [...capacityNotes(full), ...(best ? shut(full.flow) : [])],
+    };
   }
   const other = ranked.find((action) => action.high.set !== first.high.set);
   const best = wayOf(station, first, flow);
@@ -58,7 +66,7 @@ export function adviceNow(station: Station, duty: readonly Pump[], flow: number,
     nextBest: next && { ...next, extraPower: next.power - best.power },
     shortfall: 0,
     headerHead,
-    notes: stateNotes(first.high),
+    notes: [...stateNotes(first.high), ...shut(first.high.flow)],
   };
 }
 

@@ -3,8 +3,9 @@ import type { Pump } from '../hydraulics/pump.ts';
 import { root } from '../hydraulics/roots.ts';
 import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { Station } from '../station/station.ts';
-import { GRAVITY } from '../units.ts';
+import { GRAVITY, HEAD_UNITS } from '../units.ts';
 import { type Crossing, capacityOf, crossingsBetween, powerOfCount } from './crossings.ts';
+import { deadHeadedNotes, shutOutNotes } from './deadHeaded.ts';
 import { type SetStep, setLadder } from './setLadder.ts';
 import { type StagedPumps, stagedPumps } from './stagedPumps.ts';
 import { NEAR_DEAD_HEAD, type State } from './state.ts';
@@ -116,7 +117,7 @@ export function operatorCard(
     ratedSpeedRpm: duty[0]!.ratedSpeed,
     levels: station.storage.levels,
     moves: range && range.high > range.low ? { low: flowsAt(range.low), high: flowsAt(range.high) } : null,
-    notes: cardNotes(capacities, staticHead),
+    notes: cardNotes(station, duty, { capacities, staticHead }),
   };
 }
 
@@ -130,14 +131,18 @@ function levelRange(station: Station): { low: number; high: number } | null {
   return { low: Math.min(...heads), high: Math.max(...heads) };
 }
 
-function cardNotes(capacities: readonly number[], staticHead: number): Note[] {
-  if (capacities.every((flow) => flow > 0)) return [];
-  return [
-    {
-      code: 'cannot-lift',
-      text: `The pumps cannot lift the static head of ${staticHead.toPrecision(4)} m: none runs.`,
-    },
-  ];
+function cardNotes(
+  station: Station,
+  duty: readonly Pump[],
+  { capacities, staticHead }: { readonly capacities: readonly number[]; readonly staticHead: number },
+): Note[] {
+  const capacity = Math.max(...capacities);
+  if (capacity > 0) {
+    return [...deadHeadedNotes(station, duty, staticHead), ...shutOutNotes(station, duty, { staticHead, capacity })];
+  }
+  const unit = station.units.head;
+  const head = Number((staticHead / HEAD_UNITS[unit]).toPrecision(4));
+  return [{ code: 'cannot-lift', text: `The pumps cannot lift the static head of ${head} ${unit}: none runs.` }];
 }
 
 /** Of several crossings the highest at which n + 1 becomes the cheaper. */

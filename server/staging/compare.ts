@@ -7,6 +7,7 @@ import { type BillPlan, planBill } from '../tariff/plan.ts';
 import type { Bill, Tariff } from '../tariff/tariff.ts';
 import { isoUtc } from '../time.ts';
 import { energyKwh } from '../units.ts';
+import { deadHeadedOverRecord } from './deadHeaded.ts';
 import { type DemandRecord, demandRecord } from './demandRecord.ts';
 import { firmCapacity } from './firmCapacity.ts';
 import { floorPower } from './floorOverRecord.ts';
@@ -112,6 +113,7 @@ export function compareRules(request: ComparisonRequest): Comparison {
       ...notes,
       ...recordNotes(record),
       ...runNotes(runs, bills),
+      ...deadHeadedOverRecord(station, duty, record, runs),
       ...watchNotes(station, record, runs),
     ],
   };

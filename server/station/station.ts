@@ -76,3 +76,14 @@ export function dutyPumpsAreEqual(duty: readonly Pump[]): boolean {
   const first = duty[0];
   return first !== undefined && duty.every((pump) => pump.make === first.make);
 }
+
+/** Pumps of one make together, in the order in which the makes first appear. */
+export function pumpsByMake(pumps: readonly Pump[]): Pump[][] {
+  const makes = new Map<string, Pump[]>();
+  for (const pump of pumps) {
+    const alike = makes.get(pump.make);
+    if (alike) alike.push(pump);
+    else makes.set(pump.make, [pump]);
+  }
+  return [...makes.values()];
+}
