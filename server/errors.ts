@@ -14,15 +14,12 @@ export type FaultCode =
   | 'duplicate_name'
   // station
   | 'rising_curve'
-  | 'curve_too_short'
   | 'efficiency_out_of_range'
   | 'speed_range'
   | 'static_head_negative'
-  | 'static_head_too_high'
   | 'steps_fall'
   | 'levels_contradict'
   | 'no_duty_pump'
-  | 'unequal_pumps'
   // record
   | 'missing_column'
   | 'empty_record'
