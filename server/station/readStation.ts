@@ -49,6 +49,7 @@ export function readStation(value: unknown, fileName: string): Station {
   const flowSteps = readSteps(file, duty.length, reading);
   const storage = readStorage(file, reading);
   const suction = readSuction(file, storage, reading);
+  compareLevels(file, reading);
   if (faults.length > 0) throw new InputError(faults);
   return {
     name: file.name,
@@ -77,6 +78,18 @@ export function readStation(value: unknown, fileName: string): Station {
     },
     notes: reading.notes,
   };
+}
+
+/** The static head of the file stands; where its two levels give another, that is said. */
+function compareLevels({ system, units }: StationFile, reading: Reading): void {
+  const { staticHead, dischargeLevel, suctionLevel } = system;
+  if (dischargeLevel === undefined || suctionLevel === undefined) return;
+  const rise = dischargeLevel - suctionLevel;
+  if (Math.abs(rise - staticHead) <= DIFFERS * Math.max(staticHead, Math.abs(rise))) return;
+  reading.notes.push({
+    code: 'static-head-differs',
+    text: `system.staticHead is ${staticHead} ${units.head}, and dischargeLevel less suctionLevel is ${Number(rise.toPrecision(4))} ${units.head}: staticHead is taken where the record has neither levels nor static heads. A delivery pressure explains a difference.`,
+  });
 }
 
 function scaled(value: number | undefined, unit: number): number | null {
@@ -214,6 +227,13 @@ function readCurve(entry: CurveEntry, at: string, reading: Reading): PumpCurve |
     }
     shape = (entry.shutoffHead - head) / flow ** 2;
   } else shape = entry.shape;
+  // A pump is never at its best where it makes no head at all.
+  const noHead = Math.sqrt(entry.shutoffHead / shape);
+  if (entry.bestFlow >= noHead) {
+    const wanted = `less than ${Number(noHead.toPrecision(4))}, the flow at which this curve has no head left`;
+    reading.fault('out_of_range', `${at}.bestFlow`, `${entry.bestFlow}`, wanted);
+    return null;
+  }
   return new ParabolaCurve({
     shutoffHead: entry.shutoffHead * reading.head,
     shape: (shape * reading.head) / reading.flow ** 2,
@@ -367,6 +387,9 @@ function readSteps(file: StationFile, dutyCount: number, reading: Reading): Stat
 
 function readStorage(file: StationFile, reading: Reading): Storage {
   const entry = file.storage ?? {};
+  if (entry.area !== undefined && entry.points) {
+    reading.fault('unknown_field', 'storage.area', 'area beside points', 'one of the two');
+  }
   const side = entry.side ?? 'suction';
   const us = isUsFlow(file.units.flow);
   const volume = us ? US_GALLON : 1;
@@ -392,16 +415,22 @@ function readStorage(file: StationFile, reading: Reading): Storage {
     const area = entry.area * reading.head ** 2;
     table = { levels: [0, 1], volumes: [0, area] };
   }
-  checkLevels(entry.levels ?? [], side, reading);
+  checkLevels(entry, side, reading);
   const lead = levels[0];
   const fromLevels = table && lead ? Math.abs(volumeBetween(table, lead.start, lead.stop)) : null;
-  return {
-    side,
-    activeVolume: entry.activeVolume === undefined ? fromLevels : entry.activeVolume * volume,
-    table,
-    levels,
-  };
+  const given = scaled(entry.activeVolume, volume);
+  if (given !== null && fromLevels !== null && Math.abs(given / fromLevels - 1) > DIFFERS) {
+    const text = Number((fromLevels / volume).toPrecision(3));
+    reading.notes.push({
+      code: 'volume-differs',
+      text: `storage.activeVolume is ${entry.activeVolume}, and ${entry.points ? 'points' : 'area'} and levels of the first pump give ${text} ${us ? 'US gallons' : 'm³'}: activeVolume is taken.`,
+    });
+  }
+  return { side, activeVolume: given ?? fromLevels, table, levels };
 }
+
+/** Two fields that say the same by different numbers are told apart from one that is rounded. */
+const DIFFERS = 0.05;
 
 function volumeBetween(table: NonNullable<Storage['table']>, a: number, b: number): number {
   return volumeAt(table, a) - volumeAt(table, b);
@@ -409,13 +438,19 @@ function volumeBetween(table: NonNullable<Storage['table']>, a: number, b: numbe
 
 /** A wet well starts pumps as it fills and stops them as it empties; a tower the other way round. */
 function checkLevels(
-  levels: readonly { start: number; stop: number }[],
+  { levels = [], points }: NonNullable<StationFile['storage']>,
   side: Storage['side'],
   reading: Reading,
 ): void {
   const rises = side === 'suction';
+  const [lowest, highest] = points ? [points[0]!.level, points.at(-1)!.level] : [-Infinity, Infinity];
   levels.forEach((level, i) => {
     const at = `storage.levels[${i}]`;
+    for (const field of ['start', 'stop'] as const) {
+      if (level[field] >= lowest && level[field] <= highest) continue;
+      const wanted = `a level of storage.points, ${lowest} to ${highest}`;
+      reading.fault('levels_contradict', `${at}.${field}`, `${level[field]}`, wanted);
+    }
     if (rises ? level.stop >= level.start : level.stop <= level.start) {
       reading.fault(
         'levels_contradict',
