@@ -2,7 +2,7 @@
 import { basename } from 'node:path';
 import { readCase } from '../server/economics/caseFile.ts';
 import { makeCase } from '../server/makeCase.ts';
-import { list, readJson, recordFrom, required, runCommand, stationFrom, tariffFrom } from './support/command.ts';
+import { list, readJson, recordFrom, required, runCommand, stationFrom, tariffFrom, warn } from './support/command.ts';
 import { grouped, table } from './support/table.ts';
 
 const HELP = `npm run --silent case -- --station S.json --record R.csv --tariff T.json --case C.json [options]
@@ -23,7 +23,8 @@ Advice only: it controls nothing. Exit code 0 on success, 2 when something is to
 
 runCommand(HELP, { values: ['station', 'record', 'tariff', 'case', 'without'], switches: ['json'] }, (given) => {
   const { station } = stationFrom(required(given, 'station'));
-  const { log } = recordFrom(required(given, 'record'), station);
+  const { log, report } = recordFrom(required(given, 'record'), station);
+  warn(report.notes);
   const { tariff } = tariffFrom(required(given, 'tariff'));
   const casePath = required(given, 'case');
   const terms = readCase(readJson(casePath), basename(casePath));

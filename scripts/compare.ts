@@ -5,7 +5,7 @@ import { compareRules, resultOf } from '../server/staging/compare.ts';
 import { demandRecord } from '../server/staging/demandRecord.ts';
 import { flowOfLog } from '../server/staging/flowOfLog.ts';
 import type { ComparisonResult, RuleId } from '../server/staging/result.ts';
-import { list, optional, recordFrom, required, runCommand, stationFrom, tariffFrom } from './support/command.ts';
+import { list, optional, recordFrom, required, runCommand, stationFrom, tariffFrom, warn } from './support/command.ts';
 import { IntervalsFile } from './support/intervalsFile.ts';
 import { grouped, table } from './support/table.ts';
 
@@ -33,7 +33,7 @@ runCommand(
     const { log, report, data } = recordFrom(required(given, 'record'), station);
     const tariffPath = optional(given, 'tariff');
     const tariff = tariffPath === null ? null : tariffFrom(tariffPath);
-    for (const note of report.notes) process.stderr.write(`${note.code}: ${note.text}\n`);
+    warn(report.notes);
 
     const intervalsPath = optional(given, 'intervals');
     const intervals = intervalsPath === null ? null : open(intervalsPath);

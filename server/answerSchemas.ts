@@ -244,6 +244,7 @@ export const card = z.strictObject({
 });
 export const comparisonCard = card.extend({
   lateStaging: z.strictObject({ energyKwh: number, cost: orNull, hours: number }).nullable(),
+  ownOrder: z.strictObject({ energyKwh: number, cost: orNull, hours: number }).nullable(),
 });
 
 export const bestCountMap = z.strictObject({

@@ -41,6 +41,9 @@ export type FlowUnit = keyof typeof FLOW_UNITS;
 export type HeadUnit = keyof typeof HEAD_UNITS;
 export type PowerUnit = keyof typeof POWER_UNITS;
 
+/** Pascals in one pound-force per square inch: 0.45359237 kg · 9.80665 m/s² / (0.0254 m)². */
+export const PSI = (0.45359237 * GRAVITY) / 0.0254 ** 2;
+
 /** The units a station file is written in. */
 export interface FileUnits {
   readonly flow: FlowUnit;
@@ -51,6 +54,14 @@ export interface FileUnits {
 /** Whether a flow unit belongs to the US customary family; volumes beside it are then US gallons. */
 export function isUsFlow(unit: FlowUnit): boolean {
   return unit === 'gpm' || unit === 'MGD';
+}
+
+/**
+ * Frequency of the mains [Hz], at which a drive turns a pump at rated speed: 60 where flows are in US units or money in a
+ * currency of North America, 50 elsewhere. A guess: a reader can say.
+ */
+export function usualMainsHz({ units, currency }: { readonly units: FileUnits; readonly currency: string }): 50 | 60 {
+  return isUsFlow(units.flow) || ['USD', 'CAD', 'MXN'].includes(currency) ? 60 : 50;
 }
 
 /** m³ in the volume unit that goes with a flow unit: m³ with metric flow, US gallons with `gpm` or `MGD`. */

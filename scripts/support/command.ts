@@ -1,7 +1,7 @@
 import { existsSync, readFileSync } from 'node:fs';
 import { basename, resolve } from 'node:path';
 import { parseArgs } from 'node:util';
-import { faultLine, InputError, refuse } from '../../server/errors.ts';
+import { faultLine, InputError, type Note, refuse } from '../../server/errors.ts';
 import { publicHolidayDates } from '../../server/holidays.ts';
 import { type ReadRecord, type RecordOptions, readRecord } from '../../server/ingest/record.ts';
 import { parseJson } from '../../server/readFile.ts';
@@ -91,6 +91,11 @@ export function list(given: Given, name: string): string[] | undefined {
     .split(',')
     .map((part) => part.trim())
     .filter((part) => part !== '');
+}
+
+/** What was noticed in a record, where it does not get in the way of data. */
+export function warn(notes: readonly Note[]): void {
+  for (const { code, text } of notes) process.stderr.write(`${code}: ${text}\n`);
 }
 
 /** The bytes of a file, or a fault that names it. */

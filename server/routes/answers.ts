@@ -11,6 +11,7 @@ import { cardOf, lateStagingCost } from '../operatorCard.ts';
 import { readAs } from '../readFile.ts';
 import { bestCountMap, headSpan } from '../staging/bestCountMap.ts';
 import { dutyWithout } from '../staging/compare.ts';
+import { ownOrderCost } from '../staging/ownOrder.ts';
 import { laySpotReadings } from '../staging/spotReadings.ts';
 import { readStation } from '../station/readStation.ts';
 import { FLOW_UNITS, HEAD_UNITS } from '../units.ts';
@@ -90,7 +91,11 @@ export function answerRoutes(router: Router, { db }: Context): void {
           without: stored.choices.without,
           ...(span.varies && { range: { low: span.low, high: span.high } }),
         });
-        response.json({ ...card, lateStaging: lateStagingCost(stored.result) });
+        response.json({
+          ...card,
+          lateStaging: lateStagingCost(stored.result),
+          ownOrder: ownOrderCost(comparison),
+        });
       },
     ],
   });
@@ -107,5 +112,8 @@ export function answerRoutes(router: Router, { db }: Context): void {
 }
 
 function names(text: string | undefined): string[] {
-  return (text ?? '').split(',').filter((name) => name !== '');
+  return (text ?? '')
+    .split(',')
+    .map((name) => name.trim())
+    .filter((name) => name !== '');
 }

@@ -56,6 +56,7 @@ export interface OperatorCard {
   readonly sets: readonly SetStep[];
   /** Largest flow of each count, from one pump up [m³/s]. */
   readonly capacities: readonly number[];
+  /** null where unknown, or where the pumps differ in it. */
   readonly ratedSpeedRpm: number | null;
   /** Start and stop levels of each duty place, where the station file has them [m]. */
   readonly levels: readonly { readonly start: number; readonly stop: number }[];
@@ -114,7 +115,7 @@ export function operatorCard(
     steps,
     sets: setLadder(pumps),
     capacities,
-    ratedSpeedRpm: duty[0]!.ratedSpeed,
+    ratedSpeedRpm: duty.every((pump) => pump.ratedSpeed === duty[0]!.ratedSpeed) ? duty[0]!.ratedSpeed : null,
     levels: station.storage.levels,
     moves: range && range.high > range.low ? { low: flowsAt(range.low), high: flowsAt(range.high) } : null,
     notes: cardNotes(station, duty, { capacities, staticHead }),

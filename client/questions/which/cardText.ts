@@ -1,7 +1,7 @@
 import type { ComparisonBody } from '../../../server/api.ts';
 import type { HandedCard, LateStagingCost } from '../../../server/operatorCard.ts';
 import type { StationFile } from '../../../server/station/stationFile.ts';
-import { FLOW_UNITS, HEAD_UNITS } from '../../../server/units.ts';
+import { FLOW_UNITS, HEAD_UNITS, PSI, usualMainsHz } from '../../../server/units.ts';
 import { type Format, type Measure, ordinal } from '../../format.ts';
 
 /** The card that goes with a comparison, as the server hands it. */
@@ -15,20 +15,16 @@ export type Pressure = (typeof PRESSURES)[number];
 export const MAINS = ['auto', '50', '60'] as const;
 export type MainsChoice = (typeof MAINS)[number];
 
-/** Kilopascals in a pound-force per square inch: 0.45359237 kg · 9.80665 m/s² / (0.0254 m)², in thousands. */
-const KPA_PER_PSI = (0.45359237 * 9.80665) / 0.0254 ** 2 / 1000;
-
 /** A pressure from kilopascals, or a head from metres, in what the reader chose. */
 export function pressureMeasure(pressure: Pressure, format: Format): Measure {
   if (pressure === 'head') return format.head;
-  return { unit: pressure, factor: pressure === 'kPa' ? 1 : pressure === 'bar' ? 0.01 : 1 / KPA_PER_PSI };
+  return { unit: pressure, factor: pressure === 'kPa' ? 1 : pressure === 'bar' ? 0.01 : 1000 / PSI };
 }
 
-/** 60 Hz where flows are in US units or money in a currency of North America; 50 Hz elsewhere. A guess: a reader can say. */
-export function mainsOf(choice: MainsChoice, { units, currency }: Pick<StationFile, 'units' | 'currency'>): 50 | 60 {
+/** What the reader chose, else a guess from units and currency. */
+export function mainsOf(choice: MainsChoice, station: Pick<StationFile, 'units' | 'currency'>): 50 | 60 {
   if (choice !== 'auto') return choice === '50' ? 50 : 60;
-  const us = units.flow === 'gpm' || units.flow === 'MGD';
-  return us || ['USD', 'CAD', 'MXN'].includes(currency) ? 60 : 50;
+  return usualMainsHz(station);
 }
 
 /** A speed in the three ways an operator may read it; rpm is left out where the rated speed is not known. */
