@@ -15,7 +15,6 @@ export type FaultCode =
   // station
   | 'rising_curve'
   | 'efficiency_out_of_range'
-  | 'speed_range'
   | 'static_head_negative'
   | 'steps_fall'
   | 'levels_contradict'

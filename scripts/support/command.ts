@@ -1,7 +1,7 @@
 import { existsSync, readFileSync } from 'node:fs';
 import { basename, resolve } from 'node:path';
 import { parseArgs } from 'node:util';
-import { faultLine, InputError, type Note, refuse } from '../../server/errors.ts';
+import { type Fault, faultLine, InputError, type Note, refuse } from '../../server/errors.ts';
 import { publicHolidayDates } from '../../server/holidays.ts';
 import { type ReadRecord, type RecordOptions, readRecord } from '../../server/ingest/record.ts';
 import { parseJson } from '../../server/readFile.ts';
@@ -26,20 +26,27 @@ export function runCommand(
   options: { readonly values: readonly string[]; readonly switches?: readonly string[]; readonly operand?: boolean },
   main: (given: Given) => void | Promise<void>,
 ): void {
+  let given: Given = {};
   const run = async () => {
-    const given = readArguments(options.values, ['help', ...(options.switches ?? [])], options.operand ?? false);
+    given = readArguments(options.values, ['help', ...(options.switches ?? [])], options.operand ?? false);
     if (given.help === true) process.stdout.write(help);
     else await main(given);
   };
   run().catch((error: unknown) => {
     if (error instanceof InputError) {
-      process.stderr.write(`${error.faults.map(faultLine).join('\n')}\n`);
+      process.stderr.write(`${error.faults.map((fault) => faultLine(inFile(fault, given))).join('\n')}\n`);
       process.exitCode = 2;
     } else {
       console.error(error);
       process.exitCode = 1;
     }
   });
+}
+
+/** Where files do not go together the fault names a part, such as `tariff`; a person knows the file given as it. */
+function inFile(fault: Fault, given: Given): Fault {
+  const path = ['station', 'record', 'tariff'].includes(fault.file) ? given[fault.file] : undefined;
+  return typeof path === 'string' ? { ...fault, file: basename(path) } : fault;
 }
 
 function readArguments(values: readonly string[], switches: readonly string[], operand: boolean): Given {

@@ -84,7 +84,7 @@ export function compareRules(request: ComparisonRequest): Comparison {
   }
   const flowLog = flowOfLog(station, log);
   const record = demandRecord(station, flowLog.log);
-  const plan = tariff ? planBill(tariff, record.startMs, record.seconds) : null;
+  const plan = tariff ? planBill(tariff, record.startMs, record.seconds, 'tariff') : null;
   const { rules, notes } = rulesToRun(station, duty, request.rules);
   const pumps = stagedPumps(station, duty);
   const runs: Run[] = [];

@@ -194,14 +194,10 @@ type DriveEntry = {
 };
 
 function readDrive(entry: DriveEntry, ratedPower: number | null, at: string, reading: Reading): Drive {
-  const maxSpeed = entry.maxSpeed ?? 1;
-  if (entry.minSpeed > maxSpeed) {
-    reading.fault('speed_range', `${at}.minSpeed`, `${entry.minSpeed}`, `at most maxSpeed, ${maxSpeed}`);
-  }
   return {
     fitted: entry.fitted ?? true,
     minSpeed: entry.minSpeed,
-    maxSpeed,
+    maxSpeed: entry.maxSpeed ?? 1,
     efficiency: readDriveEfficiency(entry.efficiency, ratedPower, `${at}.efficiency`, reading),
   };
 }

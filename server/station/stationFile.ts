@@ -25,6 +25,7 @@ const motor = z.strictObject({
 
 const drive = z.strictObject({
   fitted: z.boolean().optional(),
+  /** With rated speed between the two, the least is never above the highest. */
   minSpeed: z.number().gt(0).max(1),
   maxSpeed: z.number().min(1).max(2).optional(),
   efficiency: partLoad,

@@ -19,6 +19,37 @@ export function command(name: string, args: readonly string[], env: Readonly<Rec
   return { code: status, stdout, stderr };
 }
 
+let runs = 0;
+
+/**
+ * Runs a command of scripts/ within this process, which is far faster: the file is taken in anew, what it uses is not.
+ * Only for commands that end within the turn they begin in.
+ */
+export async function commandHere(name: string, args: readonly string[]): Promise<Ended> {
+  const told = { stdout: '', stderr: '' };
+  const { argv, exitCode } = process;
+  const before = { stdout: process.stdout.write, stderr: process.stderr.write };
+  for (const stream of ['stdout', 'stderr'] as const) {
+    process[stream].write = (text: string | Uint8Array) => {
+      told[stream] += text;
+      return true;
+    };
+  }
+  process.argv = [argv[0]!, name, ...args];
+  process.exitCode = 0;
+  try {
+    const file = `../../scripts/${name}.ts?run=${runs++}`;
+    await import(/* @vite-ignore */ file);
+    await new Promise(setImmediate);
+    return { code: process.exitCode, ...told };
+  } finally {
+    process.stdout.write = before.stdout;
+    process.stderr.write = before.stderr;
+    process.argv = argv;
+    process.exitCode = exitCode;
+  }
+}
+
 export interface Server {
   /** What it printed as its address, without the line end. */
   readonly address: string;
