@@ -25,6 +25,7 @@ const bestCountInOrder: Rule = {
     let best: Trim | null = null;
     eachCandidate(pumps, flow, (trim) => {
       if (best === null || trim.power < best.power) best = trim;
+      return false;
     });
     return best === null ? flatOut(pumps, flow) : pumps.action(best, flow);
   },
