@@ -1,7 +1,7 @@
 /** npm run accuracy: every figure of ours that is held against one from outside, and how far they differ. */
 import { readFileSync, writeFileSync } from 'node:fs';
 import { TOPICS } from '../tests/accuracy/all.ts';
-import { COLUMNS, cells, groupsOf, section, withSection } from '../tests/accuracy/table.ts';
+import { groupsOf, section, tableOf, withSection } from '../tests/accuracy/table.ts';
 import { runCommand } from './support/command.ts';
 import { table } from './support/table.ts';
 
@@ -20,9 +20,11 @@ runCommand(HELP, { values: [], switches: ['write'] }, (given) => {
   const topics = TOPICS.map((topic) => ({ heading: topic.heading, groups: groupsOf(topic) }));
   for (const { heading, groups } of topics) {
     process.stdout.write(`\n${heading}\n`);
-    for (const { source, kind, why, rows } of groups) {
-      const lines = rows.map((row) => [...cells(row), row.passes ? '' : 'FAILS']);
-      process.stdout.write(`\n${kind}: ${source}\nallowed: ${why}\n${table([[...COLUMNS, ''], ...lines])}`);
+    for (const group of groups) {
+      const [head, ...lines] = tableOf(group);
+      const marked = lines.map((line, i) => [...line, group.rows[i]!.passes ? '' : 'FAILS']);
+      const allowed = group.why === null ? '' : `allowed: ${group.why}\n`;
+      process.stdout.write(`\n${group.kind}: ${group.source}\n${allowed}${table([[...head!, ''], ...marked])}`);
     }
   }
   const rows = topics.flatMap(({ groups }) => groups).flatMap((group) => group.rows);

@@ -2,7 +2,7 @@ import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { TOPICS } from './all.ts';
 import type { OutsideCheck } from './check.ts';
-import { cells, found, groupsOf, section, withSection } from './table.ts';
+import { found, groupsOf, section, tableOf, withSection } from './table.ts';
 
 describe.each(TOPICS)('$heading', ({ checks }) => {
   const named = checks.map((check) => [`${check.what} (${check.source})`, check] as const);
@@ -40,10 +40,17 @@ describe('the table', () => {
     why: 'two digits',
   };
 
+  const rowsOf = (...checks: readonly OutsideCheck[]) => groupsOf({ heading: '', checks }).map(tableOf);
+
   it('cuts a figure of ours below what is allowed', () => {
-    expect(cells(found(check))).toEqual(['A third', '–', '0.33', '0.3333', '0.0033', '0.005']);
     const zero = { ...check, printed: 0, ours: () => -1e-17, allowed: 1e-9 };
-    expect(cells(found(zero)).slice(2)).toEqual(['0', '0', '0', '1e-9']);
+    expect(rowsOf(check, zero)).toEqual([
+      [
+        ['what', 'unit', 'printed', 'ours', 'difference', 'allowed'],
+        ['A third', '–', '0.33', '0.3333', '0.0033', '0.005'],
+        ['A third', '–', '0', '0', '0', '1e-9'],
+      ],
+    ]);
   });
 
   it('fails what is too far off, or no number', () => {
@@ -52,9 +59,10 @@ describe('the table', () => {
     expect(found({ ...check, ours: () => Number.NaN }).passes).toBe(false);
   });
 
-  it('says once what neighbours share', () => {
-    const groups = groupsOf({ heading: '', checks: [check, check, { ...check, why: 'other' }] });
-    expect(groups.map(({ rows }) => rows.length)).toEqual([2, 1]);
+  it('says once what neighbours share, and each reason where they differ', () => {
+    const [two, other] = rowsOf(check, { ...check, why: 'other' }, { ...check, source: 'a book' });
+    expect(two!.map((row) => row[6])).toEqual(['why', 'two digits', 'other']);
+    expect(other!.map((row) => row.length)).toEqual([6, 6]);
   });
 
   it('goes to the end of a document, in the place of an older one', () => {

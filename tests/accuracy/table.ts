@@ -17,32 +17,42 @@ export function found(check: OutsideCheck): Found {
   return { check, ours, difference, passes: Math.abs(difference) <= check.allowed };
 }
 
-/** Neighbours that share source, kind and reason, so that these are said once above them. */
+/** Neighbours that share their source and kind, so that these are said once above them. */
 export interface Group {
   readonly source: string;
   readonly kind: Kind;
-  readonly why: string;
+  /** Why they may differ so much, where the reason is one for all of them. */
+  readonly why: string | null;
   readonly rows: readonly Found[];
 }
 
 export function groupsOf(topic: Topic): Group[] {
-  const groups: (Group & { rows: Found[] })[] = [];
+  const groups: Found[][] = [];
   for (const check of topic.checks) {
-    const { source, kind, why } = check;
     const last = groups[groups.length - 1];
-    if (last && last.source === source && last.kind === kind && last.why === why) last.rows.push(found(check));
-    else groups.push({ source, kind, why, rows: [found(check)] });
+    const { source, kind } = last?.[0]?.check ?? {};
+    if (last && source === check.source && kind === check.kind) last.push(found(check));
+    else groups.push([found(check)]);
   }
-  return groups;
+  return groups.map((rows) => {
+    const { source, kind, why } = rows[0]!.check;
+    return { source, kind, why: rows.every(({ check }) => check.why === why) ? why : null, rows };
+  });
 }
 
-export const COLUMNS = ['what', 'unit', 'printed', 'ours', 'difference', 'allowed'] as const;
+const COLUMNS = ['what', 'unit', 'printed', 'ours', 'difference', 'allowed'];
+
+/** The table of a group: its head and its rows; the reasons are a column where they differ. */
+export function tableOf({ why, rows }: Group): string[][] {
+  if (why !== null) return [COLUMNS, ...rows.map(cells)];
+  return [[...COLUMNS, 'why'], ...rows.map((row) => [...cells(row), row.check.why])];
+}
 
 /**
  * The cells of a row. Ours and the difference are cut one digit below the first of what is allowed, where the rounding of
  * one machine or another is not seen.
  */
-export function cells({ check, ours, difference }: Found): string[] {
+function cells({ check, ours, difference }: Found): string[] {
   const decimals = Math.min(20, Math.max(0, Math.ceil(-Math.log10(check.allowed)) + 1));
   return [
     check.what,
@@ -93,16 +103,20 @@ export function section(topics: readonly Topic[]): string {
 }
 
 function topicText(topic: Topic): string {
-  const groups = groupsOf(topic).map(
-    ({ source, kind, why, rows }) => `*${kind}*: ${source}. Allowed: ${why}.\n\n${markdown(COLUMNS, rows.map(cells))}`,
-  );
+  const groups = groupsOf(topic).map((group) => {
+    const { source, kind, why } = group;
+    const [head, ...rows] = tableOf(group);
+    return `*${kind}*: ${source}.${why === null ? '' : ` Allowed: ${why}.`}\n\n${markdown(head!, rows)}`;
+  });
   const count = topic.checks.length === 1 ? '1 check' : `${topic.checks.length} checks`;
   return [`### ${topic.heading}`, `<details><summary>${count}</summary>`, ...groups, '</details>'].join('\n\n');
 }
 
+const WORDS = ['what', 'unit', 'why', 'checks'];
+
 function markdown(head: readonly string[], rows: readonly (readonly string[])[]): string {
   const line = (row: readonly string[]) => `| ${row.map((cell) => cell.replaceAll('|', '\\|')).join(' | ')} |`;
-  const rule = head.map((name) => (name === 'what' || name === 'unit' || name === 'checks' ? '---' : '---:'));
+  const rule = head.map((name) => (WORDS.includes(name) ? '---' : '---:'));
   return [line(head), `|${rule.join('|')}|`, ...rows.map(line)].join('\n');
 }
 
