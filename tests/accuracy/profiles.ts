@@ -1,9 +1,11 @@
 import { readRecord } from '../../server/ingest/record.ts';
 import { halfDigit, type OutsideCheck } from './check.ts';
-import { CUBIC_METRES } from './stations.ts';
+import { CUBIC_METRES, once } from './stations.ts';
 
 /** Flows of the 24 hours of a day, drawn as a year by the program and read back as the first day's readings [m³/h]. */
-function dayOf(hours: readonly number[]): number[] {
+const dayOf = (hours: readonly number[]) => once(() => drawn(hours));
+
+function drawn(hours: readonly number[]): number[] {
   const { log } = readRecord({
     fileName: 'profile.json',
     data: JSON.stringify({ format: 'nth-pump/profile/1', year: 2025, flow: { weekday: hours, weekend: hours } }),
@@ -23,19 +25,19 @@ const sum = (day: readonly number[]) => day.reduce((total, flow) => total + flow
 
 const WELLINGTON =
   'Wellington Water, Wastewater Regional Modelling Specifications, v11 draft, June 2020, appendix F (commit d988411)';
-const RESIDENTIAL = [
+const RESIDENTIAL = dayOf([
   0.25, 0.08, 0.07, 0.08, 0.11, 0.58, 1.63, 2.12, 1.83, 1.68, 1.51, 1.23, 1.14, 1.12, 0.92, 0.95, 1.16, 1.26, 1.44,
   1.16, 1.05, 1.11, 0.96, 0.56,
-];
-const COMMERCIAL = [
+]);
+const COMMERCIAL = dayOf([
   0.31, 0.3, 0.3, 0.3, 0.28, 0.29, 0.33, 0.43, 0.96, 1.42, 1.96, 2.02, 2.1, 2.14, 1.91, 1.69, 1.78, 1.7, 0.99, 0.68,
   0.68, 0.6, 0.45, 0.38,
-];
+]);
 const ADAMS = 'H. C. Adams, The Sewerage of Sea Coast Towns, table 4 (Project Gutenberg 7980)';
-const OF_4000 = [
+const OF_4000 = dayOf([
   1.3, 0.8, 0, 0, 0, 0, 0.5, 1.5, 2.5, 4.8, 7, 10, 10.3, 6.7, 7, 6.5, 7, 6.3, 4.8, 5.8, 5.5, 4.5, 4, 3.2,
-];
-const OF_8000 = [1.8, 1, 0.3, 0, 0, 0, 0.7, 2, 4, 6, 8, 9, 9.2, 7.3, 6.2, 6.3, 6.2, 6, 5, 5.5, 5, 4.5, 3, 3];
+]);
+const OF_8000 = dayOf([1.8, 1, 0.3, 0, 0, 0, 0.7, 2, 4, 6, 8, 9, 9.2, 7.3, 6.2, 6.3, 6.2, 6, 5, 5.5, 5, 4.5, 3, 3]);
 
 const exact = { kind: 'published', allowed: 1e-9, why: 'a sum of printed figures, exact but for rounding' } as const;
 
@@ -45,7 +47,7 @@ const block = (day: readonly number[], hours: number, pick: (...sums: number[]) 
 
 const blocks = (
   people: string,
-  hours: readonly number[],
+  day: () => readonly number[],
   most: readonly (readonly [number, number])[],
   least: readonly (readonly [number, number])[],
 ): OutsideCheck[] =>
@@ -62,7 +64,7 @@ const blocks = (
         source: ADAMS,
         printed,
         unit: '%',
-        ours: () => block(dayOf(hours), length, pick),
+        ours: () => block(day(), length, pick),
       }),
     ),
   );
@@ -75,7 +77,7 @@ export const PROFILES: readonly OutsideCheck[] = [
     source: WELLINGTON,
     printed: 24,
     unit: '–',
-    ours: () => sum(dayOf(RESIDENTIAL)),
+    ours: () => sum(RESIDENTIAL()),
   },
   {
     ...exact,
@@ -83,7 +85,7 @@ export const PROFILES: readonly OutsideCheck[] = [
     source: WELLINGTON,
     printed: 2.12,
     unit: '–',
-    ours: () => Math.max(...dayOf(RESIDENTIAL)),
+    ours: () => Math.max(...RESIDENTIAL()),
   },
   {
     ...exact,
@@ -91,7 +93,7 @@ export const PROFILES: readonly OutsideCheck[] = [
     source: WELLINGTON,
     printed: 0.07,
     unit: '–',
-    ours: () => Math.min(...dayOf(RESIDENTIAL)),
+    ours: () => Math.min(...RESIDENTIAL()),
   },
   {
     ...exact,
@@ -99,21 +101,21 @@ export const PROFILES: readonly OutsideCheck[] = [
     source: WELLINGTON,
     printed: 24,
     unit: '–',
-    ours: () => sum(dayOf(COMMERCIAL)),
+    ours: () => sum(COMMERCIAL()),
   },
   ...(
     [
       ['4000', OF_4000, 2.472],
       ['8000', OF_8000, 2.208],
     ] as const
-  ).flatMap(([people, hours, peak]): OutsideCheck[] => [
+  ).flatMap(([people, day, peak]): OutsideCheck[] => [
     {
       ...exact,
       what: `Sum of the hourly percentages of a day, ${people} people`,
       source: ADAMS,
       printed: 100,
       unit: '%',
-      ours: () => sum(dayOf(hours)),
+      ours: () => sum(day()),
     },
     {
       kind: 'closed form',
@@ -121,7 +123,7 @@ export const PROFILES: readonly OutsideCheck[] = [
       source: `${ADAMS}; worked by hand`,
       printed: peak,
       unit: '–',
-      ours: () => (24 * Math.max(...dayOf(hours))) / sum(dayOf(hours)),
+      ours: () => (24 * Math.max(...day())) / sum(day()),
       allowed: halfDigit(3),
       why: 'half of the last digit worked out',
     },

@@ -27,6 +27,15 @@ export const LOSSLESS = { efficiency: 1 };
 /** A drive that loses nothing, where an example speaks of speed. */
 export const LOSSLESS_DRIVE = { minSpeed: 0.05, efficiency: 1 };
 
+/** What takes a while is made when it is first asked for, and kept. */
+export function once<T>(make: () => T): () => T {
+  let made: { readonly value: T } | null = null;
+  return () => {
+    made ??= { value: make() };
+    return made.value;
+  };
+}
+
 /** A station of a bank of pumps; `more` are further fields of the file. */
 export function stationOf(
   units: FileUnits,
