@@ -136,15 +136,18 @@ export function App() {
   const answers = useMemo(() => {
     if (open === null || format === null) return null;
     const all = answersOf(open, format);
-    return made ? { ...all, change: caseAnswer(made, placeholder) } : all;
+    return made ? { ...all, change: caseAnswer(made, format, { placeholder }) } : all;
   }, [open, format, made, placeholder]);
   const others = useVerdicts(entries ?? [], { openId, ready: answers !== null, choice: units });
   const verdicts = useMemo(
     () =>
       answers && openId !== null
-        ? new Map([...others, [openId, `${isWhatIf ? 'What if: ' : ''}${made ? shortVerdict(made) : answers.change}`]])
+        ? new Map([
+            ...others,
+            [openId, `${isWhatIf ? 'What if: ' : ''}${made && format ? shortVerdict(made, format) : answers.change}`],
+          ])
         : others,
-    [others, answers, openId, isWhatIf, made],
+    [others, answers, openId, isWhatIf, made, format],
   );
 
   const openStation = (id: number) => {

@@ -53,18 +53,42 @@ export function whichAnswer({ power, comparison }: Opened, format: Format): stri
 
 /** Where each further pump comes on, without the static head. */
 export function stepsText(power: PowerOverFlow, format: Format): string {
+  if (power.stretches.length > 0) return setsText(power, format);
   const able = power.counts.filter((each) => each.capacityM3s > 0);
   const last = able.at(-1);
   if (last === undefined) return 'No pump can lift the static head';
-  if (able.length === 1) return `One pump, up to ${format.say(format.flow, last.capacityM3s)}`;
-  const steps = able.slice(1).map(({ count }) => `${ordinal(count)} ${stepText(power, count, format)}`);
-  return sentence(steps.join(', ').replace(/^(\S+) /, '$1 pump '));
+  const who = power.alike ? 'One pump' : last.pumps[0];
+  if (able.length === 1) return `${who}, up to ${format.say(format.flow, last.capacityM3s)}`;
+  const steps = able.slice(1).map(({ count, pumps: names }) => {
+    const joins = power.alike ? ordinal(count) : names.at(-1);
+    return `${joins} ${stepText(power, count, format)}`;
+  });
+  return power.alike ? sentence(steps.join(', ').replace(/^(\S+) /, '$1 pump ')) : steps.join(', ');
+}
+
+/** More sets than this in a row are counted. */
+const NAMED_SETS = 3;
+
+/** `Jockey to 94 L/s, Beck to 249 L/s, Jockey and Beck to 261 L/s, then 4 more sets to 420 L/s` */
+function setsText({ sets, stretches }: PowerOverFlow, format: Format): string {
+  const few = stretches.length <= NAMED_SETS + 1;
+  const named = few ? stretches : stretches.slice(0, NAMED_SETS);
+  const texts = named.map(({ set, toM3s }) => `${list(sets[set]!.pumps)} to ${format.say(format.flow, toM3s)}`);
+  if (!few) {
+    const top = format.say(format.flow, stretches.at(-1)!.toM3s);
+    texts.push(`then ${stretches.length - NAMED_SETS} more sets to ${top}`);
+  }
+  return texts.join(', ');
 }
 
 function stepText(power: PowerOverFlow, count: number, format: Format): string {
   const crossings = power.crossings.filter((each) => each.to === count);
-  const capacity = power.counts.find((each) => each.count === count - 1)?.capacityM3s ?? 0;
-  if (crossings.length === 0) return `beyond ${format.say(format.flow, capacity)}, where ${fallsShort(count - 1)}`;
+  const before = power.counts.find((each) => each.count === count - 1);
+  const capacity = before?.capacityM3s ?? 0;
+  if (crossings.length === 0) {
+    const short = power.alike || !before ? fallsShort(count - 1) : namedShort(before.pumps);
+    return `beyond ${format.say(format.flow, capacity)}, where ${short}`;
+  }
   const parts: string[] = [];
   for (const [i, crossing] of crossings.entries()) {
     if (!crossing.rising) continue;
@@ -76,6 +100,10 @@ function stepText(power: PowerOverFlow, count: number, format: Format): string {
   if (!first.rising) parts.unshift(`up to ${format.say(format.flow, first.flowM3s)}`);
   if (!crossings.at(-1)!.rising) parts.push(`beyond ${format.say(format.flow, capacity)}`);
   return list(parts);
+}
+
+function namedShort(names: readonly string[]): string {
+  return `${list(names)} ${names.length === 1 ? 'falls' : 'fall'} short`;
 }
 
 function fallsShort(count: number): string {

@@ -20,11 +20,15 @@ export interface SpotReading {
   readonly flow: number | null;
   readonly head: number | null;
   readonly powerKw: number | null;
-  readonly pumpsOn: number;
+  /** How many, of equal pumps; of those that differ, which. */
+  readonly pumpsOn?: number;
+  readonly pumps?: readonly string[];
 }
 
 /** A reading beside what the curves say. */
 export interface LaidReading extends SpotReading {
+  readonly pumpsOn: number;
+  readonly pumps: readonly string[];
   /** Of the pumps, behind their branches, and of the system, at the flow that was read. */
   readonly curveHead: number | null;
   readonly systemHead: number | null;

@@ -15,7 +15,6 @@ import {
   Tooltip,
   type TooltipItem,
 } from 'chart.js';
-import { pumps } from './format.ts';
 import { type Box, placeNames, raiseClear } from './labels.ts';
 import type { Axis, Bars, Curves, HoursByFlow, Point, RecordSteps, Ticks } from './series.ts';
 
@@ -89,16 +88,16 @@ const RIGHT = 18;
 /** Room behind the longest bar for what it comes to. */
 const BAR_TEXT = 84;
 
-/** Power over flow: each count a line, heavy where it draws least, named where it ends; crossings stand on the axis. */
+/** Power over flow: each who may run a line, heavy where it draws least, named where it ends; crossings stand on the axis. */
 export function drawCurves(canvas: HTMLCanvasElement, curves: Curves, look: Look): Drawn {
-  const most = curves.lines.at(-1)?.count ?? 1;
+  const most = curves.lines.at(-1)?.id ?? 1;
   return draw(canvas, look, {
     type: 'line',
     data: {
-      datasets: curves.lines.map(({ count, points, least }) => {
-        const colour = countColour(count, most, look);
+      datasets: curves.lines.map(({ id, name, points, least }) => {
+        const colour = countColour(id, most, look);
         return {
-          label: pumps(count),
+          label: name,
           data: plotted(points),
           borderColor: colour,
           backgroundColor: colour,
@@ -124,16 +123,16 @@ export function drawCurves(canvas: HTMLCanvasElement, curves: Curves, look: Look
   });
 }
 
-/** Hours at each flow, in the shade of the count that draws least there. */
+/** Hours at each flow, in the shade of who draws least there. */
 export function drawHours(canvas: HTMLCanvasElement, hours: HoursByFlow, curves: Curves, look: Look): Drawn {
-  const most = curves.lines.at(-1)?.count ?? 1;
+  const most = curves.lines.at(-1)?.id ?? 1;
   return draw(canvas, look, {
     type: 'bar',
     data: {
       datasets: [
         {
           data: hours.bars.map((bar) => ({ x: (bar.from + bar.to) / 2, y: bar.hours })),
-          backgroundColor: hours.bars.map(({ count }) => (count === null ? look.warm : countColour(count, most, look))),
+          backgroundColor: hours.bars.map(({ who }) => (who === null ? look.warm : countColour(who, most, look))),
           barPercentage: 0.92,
           categoryPercentage: 1,
           grouped: false,
@@ -214,7 +213,8 @@ export function drawRecord(
   look: Look,
 ): Drawn {
   const stepped = { stepped: 'before', pointRadius: 0, spanGaps: false, borderWidth: 1.25 } as const;
-  const { band, counts, mostCount } = record;
+  const { band, counts, mostCount, lanes } = record;
+  const rows = lanes.length > 0 ? lanes.length : mostCount;
   const bandSets = band
     ? [
         { ...stepped, data: plotted(band.least), yAxisID: 'flow', borderWidth: 0, label: '' },
@@ -235,7 +235,16 @@ export function drawRecord(
       datasets: [
         ...bandSets,
         { ...stepped, data: plotted(record.flow), yAxisID: 'flow', borderColor: look.ink, label: 'Flow' },
-        ...counts.map((points, k) => {
+        ...lanes.map(({ name, share }, k) => ({
+          ...stepped,
+          data: plotted(share.map(({ x, y }) => ({ x, y: y === null ? null : laneFoot(k, rows) + LANE_HEIGHT * y }))),
+          yAxisID: 'count',
+          borderWidth: 0,
+          backgroundColor: countColour(k + 1, rows, look),
+          fill: { value: laneFoot(k, rows) },
+          label: name,
+        })),
+        ...(lanes.length > 0 ? [] : counts).map((points, k) => {
           const colour = countColour(k + 1, mostCount, look);
           return {
             ...stepped,
@@ -274,14 +283,24 @@ export function drawRecord(
           },
         },
         count: {
-          ...fixedWidth(linear({ title: 'Pumps', min: 0, max: mostCount + 0.4 }, look)),
+          ...fixedWidth(linear({ title: lanes.length > 0 ? '' : 'Pumps', min: 0, max: rows + 0.4 }, look)),
           stack: 'both',
           stackWeight: 2,
           position: 'left',
           afterBuildTicks: (axis: { ticks: { value: number }[] }) => {
-            axis.ticks = Array.from({ length: mostCount + 1 }, (_, value) => ({ value }));
+            axis.ticks =
+              lanes.length > 0
+                ? lanes.map((_, k) => ({ value: laneFoot(k, rows) + LANE_HEIGHT / 2 }))
+                : Array.from({ length: mostCount + 1 }, (_, value) => ({ value }));
           },
-          ticks: { color: look.ink, stepSize: 1, precision: 0, font: { family: look.font, size: 12 } },
+          ticks: {
+            color: look.ink,
+            stepSize: 1,
+            precision: 0,
+            autoSkip: false,
+            font: { family: look.font, size: 12 },
+            ...(lanes.length > 0 && { callback: (_: unknown, i: number) => clipped(lanes[i]?.name ?? '') }),
+          },
         },
         flow: {
           ...fixedWidth(linear(record.flowAxis, look, { ticks: 4 })),
@@ -294,14 +313,31 @@ export function drawRecord(
         tooltip: {
           ...tip(look, {
             title: (x) => instantText(x),
-            label: (name, y) =>
-              name === 'Flow' ? `${figures(y)} ${unitOf(record.flowAxis.title)}` : `${figures(y)} pumps`,
+            label: (name, y) => {
+              if (name === 'Flow') return `${figures(y)} ${unitOf(record.flowAxis.title)}`;
+              const lane = lanes.findIndex((each) => each.name === name);
+              if (lane < 0) return `${figures(y)} pumps`;
+              return `${name}: ${figures((100 * (y - laneFoot(lane, rows))) / LANE_HEIGHT)} % of the time`;
+            },
           }),
           filter: (item) => item.dataset.label !== '',
         },
       },
     },
   });
+}
+
+/** Height of a full lane; the rest of its row keeps it clear of the next. */
+const LANE_HEIGHT = 0.8;
+
+/** Where the lane of a pump stands: the first on top. */
+function laneFoot(k: number, rows: number): number {
+  return rows - 1 - k + 0.1;
+}
+
+/** As much of a name as fits beside an axis. */
+function clipped(name: string): string {
+  return name.length > 9 ? `${name.slice(0, 8)}…` : name;
 }
 
 /** What the record's picture says in words and local time. */
@@ -447,7 +483,7 @@ function lineNames(curves: Curves, look: Look): Plugin<'line'> {
       ctx.font = `600 12px ${look.font}`;
       ctx.fillStyle = look.ink;
       ctx.textBaseline = 'top';
-      const names = curves.lines.map(({ count }) => pumps(count));
+      const names = curves.lines.map(({ name }) => name);
       const boxes = placeNames({
         lines: curves.lines.map(({ points }) => plotted(points.filter((point) => point.y !== null)).map(spot)),
         sizes: names.map((name) => ({ width: ctx.measureText(name).width, height: 12 })),
@@ -464,10 +500,10 @@ function lineNames(curves: Curves, look: Look): Plugin<'line'> {
   };
 }
 
-/** Where a name has no room beside its line, its number stands on the line where that is heavy. */
+/** Where a name has no room beside its line, its short form stands on the line where that is heavy. */
 function numberOnLine(
   ctx: CanvasRenderingContext2D,
-  { count, points, least }: Curves['lines'][number],
+  { short, points, least }: Curves['lines'][number],
   spot: (at: { x: number; y: number }) => { x: number; y: number },
   look: Look,
 ): void {
@@ -475,7 +511,7 @@ function numberOnLine(
   const middle = drawn[Math.floor(drawn.length / 2)] ?? points.findLast((point) => point.y !== null);
   if (middle?.y == null) return;
   const { x, y } = spot({ x: middle.x, y: middle.y });
-  const text = String(count);
+  const text = short;
   const { width } = ctx.measureText(text);
   ctx.fillStyle = look.paper;
   ctx.fillRect(x - width / 2 - 2, y - 7, width + 4, 14);

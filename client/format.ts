@@ -157,7 +157,8 @@ function flowUnit(file: FlowUnit, choice: UnitChoice): FlowUnit {
   return fileIsUs ? METRIC_FLOW : file;
 }
 
-function shownFlowUnit(unit: FlowUnit): string {
+/** A unit of flow as it is written on the page. */
+export function shownFlowUnit(unit: FlowUnit): string {
   return unit.replace('m3', 'm³');
 }
 
@@ -202,6 +203,11 @@ export function pumps(n: number): string {
 /** The first letter of a sentence in capitals. */
 export function sentence(text: string): string {
   return text.charAt(0).toUpperCase() + text.slice(1);
+}
+
+/** A sentence of the server with its units as they are written on the page: `m³/h` for `m3/h`. */
+export function typeset(text: string): string {
+  return text.replace(/\bm3(?=\/[sh]\b)/g, 'm³');
 }
 
 /** `a, b and c` */

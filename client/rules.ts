@@ -9,7 +9,10 @@ export const RULE_TEXT: Readonly<Record<RuleId, { readonly name: string; readonl
     says: 'One more pump only when those running are flat out: the usual habit.',
   },
   'flow-steps': { name: 'Own steps', says: "The operator's own table of flows: how the station runs today." },
-  'best-count': { name: 'Best count', says: 'For each interval the count of pumps that draws least.' },
+  'best-count': {
+    name: 'Best count',
+    says: 'For each interval the count, or the set of pumps that differ, that draws least.',
+  },
   steady: { name: 'Steady', says: 'As best count, but each start and each short run counts against it.' },
   batch: { name: 'Batch', says: 'Run at the best point, then rest.' },
   'as-logged': { name: 'As logged', says: 'What the log says was done.' },

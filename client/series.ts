@@ -2,6 +2,7 @@ import type { PowerOverFlow, RuleSeries } from '../server/staging/pictures.ts';
 import type { RuleResult } from '../server/staging/result.ts';
 import { DAY_MS, HOUR_MS, instantsOfWallClock, offsetMs } from '../server/time.ts';
 import type { Format } from './format.ts';
+import { runnersOf } from './runners.ts';
 
 /** A point of a picture in the reader's units; y is null in a gap. */
 export interface Point {
@@ -15,49 +16,82 @@ export interface Axis {
   readonly max: number;
 }
 
-/** Mean power over flow, one line a count. */
+/** Mean power over flow, one line for each who may run. */
 export interface Curves {
   readonly x: Axis;
   readonly y: Axis;
   readonly lines: readonly {
-    readonly count: number;
+    readonly id: number;
+    readonly name: string;
+    readonly short: string;
     readonly points: readonly Point[];
-    /** By point: whether this count draws least there. */
+    /** By point: whether this one draws least there. */
     readonly least: readonly boolean[];
   }[];
   readonly crossings: readonly {
     readonly x: number;
     readonly y: number;
     readonly label: string;
+    /** Who draws less above. */
     readonly to: number;
   }[];
 }
 
-/** Power over flow as a picture; a flow that a count cannot meet is a gap in its line. */
+/** Power over flow as a picture; a flow that cannot be met is a gap in the line. */
 export function curvesOf(power: PowerOverFlow, format: Format): Curves {
   const flow = power.flowM3s.map((value) => value * format.flow.factor);
-  const least = leastCounts(power);
+  const least = leastRunners(power);
   let top = 0;
-  const lines = power.counts.map(({ count, powerKw }) => {
+  const lines = runnersOf(power).map(({ id, name, short, powerKw }) => {
     const points = powerKw.map((y, i) => ({ x: flow[i]!, y }));
     for (const y of powerKw) top = Math.max(top, y ?? 0);
-    return { count, points, least: least.map((each) => each === count) };
+    return { id, name, short, points, least: least.map((each) => each === id) };
   });
   return {
     x: flowAxis(power, format),
     y: { title: `Mean power, ${format.power.unit}`, min: 0, max: niceTop(top) },
     lines,
-    crossings: power.crossings.map(({ flowM3s, powerKw, rising, from, to }) => ({
+    crossings: crossingsOf(power).map(({ flowM3s, powerKw, to }) => ({
       x: flowM3s * format.flow.factor,
       y: powerKw,
       label: format.say(format.flow, flowM3s),
-      to: rising ? to : from,
+      to,
     })),
   };
 }
 
-/** The count that draws least at each flow of the picture; null where none can meet it. */
-export function leastCounts(power: PowerOverFlow): (number | null)[] {
+/** Where one who runs gives way to another, and who that is. */
+export interface Change {
+  readonly flowM3s: number;
+  readonly powerKw: number;
+  readonly from: number;
+  readonly to: number;
+}
+
+/** Of counts, where two draw the same; of sets, where another becomes the best. */
+export function crossingsOf({ crossings, stretches }: Pick<PowerOverFlow, 'crossings' | 'stretches'>): Change[] {
+  if (stretches.length > 0)
+    return stretches.flatMap(({ set, fromM3s, fromKw }, i) =>
+      i > 0 && fromKw !== null
+        ? [{ flowM3s: fromM3s, powerKw: fromKw, from: stretches[i - 1]!.set + 1, to: set + 1 }]
+        : [],
+    );
+  return crossings.map(({ flowM3s, powerKw, rising, from, to }) => ({
+    flowM3s,
+    powerKw,
+    from: rising ? from : to,
+    to: rising ? to : from,
+  }));
+}
+
+/** Who draws least at each flow of the picture; null where none can meet it. */
+export function leastRunners(power: PowerOverFlow): (number | null)[] {
+  const { stretches } = power;
+  if (stretches.length > 0)
+    return power.flowM3s.map((flow) => {
+      const here = stretches.find(({ fromM3s, toM3s }) => flow > fromM3s && flow <= toM3s);
+      return here === undefined ? null : here.set + 1;
+    });
   return power.flowM3s.map((_, i) => {
     let best: number | null = null;
     let bestKw = Number.POSITIVE_INFINITY;
@@ -76,17 +110,17 @@ export function leastCounts(power: PowerOverFlow): (number | null)[] {
 export interface HoursByFlow {
   readonly x: Axis;
   readonly y: Axis;
-  /** `count` draws least in the middle of the class; null where none can meet it. */
+  /** `who` draws least in the middle of the class; null where none can meet it. */
   readonly bars: readonly {
     readonly from: number;
     readonly to: number;
     readonly hours: number;
-    readonly count: number | null;
+    readonly who: number | null;
   }[];
 }
 
 export function hoursByFlow(power: PowerOverFlow, format: Format): HoursByFlow {
-  const least = leastCounts(power);
+  const least = leastRunners(power);
   const nearest = (flow: number) => {
     const step = power.flowM3s[0] ?? 1;
     return least[Math.min(least.length - 1, Math.max(0, Math.round(flow / step) - 1))] ?? null;
@@ -95,7 +129,7 @@ export function hoursByFlow(power: PowerOverFlow, format: Format): HoursByFlow {
     from: fromM3s * format.flow.factor,
     to: toM3s * format.flow.factor,
     hours,
-    count: nearest((fromM3s + toM3s) / 2),
+    who: nearest((fromM3s + toM3s) / 2),
   }));
   return {
     x: flowAxis(power, format),
@@ -154,6 +188,8 @@ export interface RecordSteps {
   /** Entry k holds min(count, k + 1): drawn one over the other they make a stair of as many shades. */
   readonly counts: readonly (readonly Point[])[];
   readonly mostCount: number;
+  /** For pumps that differ, a lane for each in place of the stair: between 0 and 1 as share of the time that it ran. */
+  readonly lanes: readonly { readonly name: string; readonly share: readonly Point[] }[];
 }
 
 /** Times closer than this belong together. */
@@ -194,6 +230,7 @@ export function recordSteps(series: RuleSeries, format: Format, duty: number): R
       ),
     ),
     mostCount: most,
+    lanes: series.pumps.map(({ name, share }) => ({ name, share: steps(series, share) })),
   };
 }
 

@@ -1,6 +1,6 @@
 import type { StationFile } from '../server/station/stationFile.ts';
 import { FLOW_UNITS, HEAD_UNITS, POWER_UNITS, volumeUnit } from '../server/units.ts';
-import type { Format, Measure } from './format.ts';
+import { type Format, type Measure, shownFlowUnit } from './format.ts';
 import type { Path } from './station.ts';
 
 /** A number of the station file that a reader may try out. */
@@ -21,7 +21,7 @@ export function touchables({ units, pumps }: StationFile, format: Format): Touch
     {
       label: 'Friction coefficient',
       path: ['system', 'friction', 'coefficient'],
-      measure: { unit: `${units.head} at 1 ${units.flow}`, factor: 1 },
+      measure: { unit: `${units.head} at 1 ${shownFlowUnit(units.flow)}`, factor: 1 },
       fileFactor: 1,
       step: 1e-5,
     },
@@ -41,7 +41,7 @@ export function touchables({ units, pumps }: StationFile, format: Format): Touch
     },
   ];
   for (let i = 0; i < pumps.length; i++) {
-    const of = pumps.length === 1 ? '' : `, entry ${i + 1}`;
+    const of = pumps.length === 1 ? '' : `, ${pumps[i]!.name}`;
     all.push(
       {
         label: `Flow at best efficiency${of}`,

@@ -51,6 +51,7 @@ async function verdictOn(entry: StationEntry, choice: UnitChoice, signal: AbortS
   const open = { station, comparison, fixedPerMonth: tariff?.fixedPerMonth ?? 0 };
   const start = comparison.inputs.tariff === null ? null : startingCase(station, comparison);
   const terms = start && caseFileOf(start.draft);
-  if (terms) return shortVerdict(await api.makeCase(comparison.id, terms, signal));
-  return changeAnswer(open, new Format({ file, choice, currency, timeZone }));
+  const format = new Format({ file, choice, currency, timeZone });
+  if (terms) return shortVerdict(await api.makeCase(comparison.id, terms, signal), format);
+  return changeAnswer(open, format);
 }

@@ -177,8 +177,13 @@ export const comparisonBody = z.strictObject({
 export const powerOverFlow = z.strictObject({
   staticHeadM: number,
   onDrives: z.boolean(),
+  alike: z.boolean(),
   flowM3s: numbers,
-  counts: z.array(z.strictObject({ count: whole, capacityM3s: number, powerKw: z.array(orNull) })),
+  counts: z.array(
+    z.strictObject({ count: whole, pumps: z.array(text), capacityM3s: number, powerKw: z.array(orNull) }),
+  ),
+  sets: z.array(z.strictObject({ pumps: z.array(text), powerKw: z.array(orNull) })),
+  stretches: z.array(z.strictObject({ set: whole, fromM3s: number, toM3s: number, fromKw: orNull })),
   crossings: z.array(z.strictObject({ from: whole, to: whole, flowM3s: number, powerKw: number, rising: z.boolean() })),
   hours: z.array(z.strictObject({ fromM3s: number, toM3s: number, hours: number })),
 });
@@ -194,10 +199,12 @@ export const ruleSeries = z.strictObject({
   powerKw: numbers,
   count: numbers,
   mostCount: numbers,
+  pumps: z.array(z.strictObject({ name: text, share: numbers })),
   shortfallM3: numbers,
 });
 
 const cardPoint = z.strictObject({ speedBefore: number, speedAfter: number, headerHead: number, headerKpa: number });
+const cardSpeed = z.strictObject({ pump: text, speed: number, rpm: orNull, onDrive: z.boolean() });
 const cardMove = z.strictObject({ staticHead: number, flows: z.array(orNull) });
 export const card = z.strictObject({
   format: z.literal('nth-pump/card/1'),
@@ -207,11 +214,13 @@ export const card = z.strictObject({
   bandPercent: number,
   basis: z.enum(['drives', 'proposed-drives', 'direct-on-line']),
   pumps: z.array(text),
+  alike: z.boolean(),
   ratedSpeedRpm: orNull,
   steps: z.array(
     z.strictObject({
       from: whole,
       to: whole,
+      pump: text,
       flow: number,
       bringOn: number,
       dropOff: number,
@@ -234,6 +243,16 @@ export const card = z.strictObject({
       rests: z.boolean(),
       savedKw: orNull,
       text,
+      change: z
+        .strictObject({
+          bringOn: number,
+          dropOff: number,
+          headerHead: number,
+          headerKpa: number,
+          before: z.array(cardSpeed),
+          after: z.array(cardSpeed),
+        })
+        .nullable(),
     }),
   ),
   capacities: numbers,
@@ -251,6 +270,8 @@ export const bestCountMap = z.strictObject({
   flowM3s: numbers,
   staticHeadM: numbers,
   count: z.array(z.array(whole)),
+  sets: z.array(z.array(text)),
+  set: z.array(z.array(whole.nullable())),
   hours: z.array(numbers),
 });
 
@@ -335,6 +356,7 @@ export const spotReadings = z.strictObject({
       head: orNull,
       powerKw: orNull,
       pumpsOn: whole,
+      pumps: z.array(text),
       curveHead: orNull,
       systemHead: orNull,
       curveFlow: number,

@@ -63,12 +63,17 @@ export const adviceQuery = z.strictObject({
 export const spotRequest = z.strictObject({
   readings: z
     .array(
-      z.strictObject({
-        flow: z.number().min(0).nullable().optional(),
-        head: z.number().min(0).nullable().optional(),
-        powerKw: z.number().min(0).nullable().optional(),
-        pumpsOn: z.int().min(1).max(20),
-      }),
+      z
+        .strictObject({
+          flow: z.number().min(0).nullable().optional(),
+          head: z.number().min(0).nullable().optional(),
+          powerKw: z.number().min(0).nullable().optional(),
+          pumpsOn: z.int().min(1).max(20).optional(),
+          pumps: z.array(z.string()).min(1).optional(),
+        })
+        .refine((reading) => (reading.pumpsOn === undefined) !== (reading.pumps === undefined), {
+          message: "either pumpsOn, how many of the station's order ran, or pumps, their names",
+        }),
     )
     .min(1)
     .max(500),

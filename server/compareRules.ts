@@ -13,9 +13,11 @@ import { existing } from './context.ts';
 import { jsonDigest } from './digest.ts';
 import { refuse } from './errors.ts';
 import { publicHolidayDates } from './holidays.ts';
-import { type Comparison, compareRules, resultOf } from './staging/compare.ts';
+import { type Comparison, compareRules, dutyWithout, resultOf } from './staging/compare.ts';
 import type { RuleId } from './staging/result.ts';
+import { RunSets } from './staging/runSets.ts';
 import { readStation } from './station/readStation.ts';
+import { dutyPumpsAreEqual } from './station/station.ts';
 import { readTariff } from './tariff/tariffFile.ts';
 
 /** What to compare: ids as they were sent, rules and pumps by name. */
@@ -66,8 +68,8 @@ export function compareStored(db: Db, request: StoredComparisonRequest, nowMs: n
   if (tariff) rememberTariff(db, station.id, tariff.id);
   const same = findSameComparison(db, { ...ids, ...files, choices });
   if (same) return same;
-  const comparison = compute(db, { recordId: record.id, choices, ...files });
-  const result = resultOf(comparison, {
+  const computed = compute(db, { recordId: record.id, choices, ...files });
+  const result = resultOf(computed.comparison, {
     station: jsonDigest(files.stationFile),
     record: record.sha256,
     tariff: tariff && jsonDigest(tariff.file),
@@ -77,24 +79,38 @@ export function compareStored(db: Db, request: StoredComparisonRequest, nowMs: n
     keepNewest(db, station.id, KEPT_PER_STATION);
     return made;
   })();
+  keep(db, id, computed);
   return findComparison(db, id)!;
+}
+
+/** A comparison with what its pictures need beside it. */
+export interface Computed {
+  readonly comparison: Comparison;
+  /** Which pumps ran in each interval; null where they are alike and the count says it. */
+  readonly sets: RunSets | null;
 }
 
 /** How many comparisons are kept in memory with all their columns: the one on the screen, and a few beside it. */
 const KEPT = 4;
+const keptOf = new WeakMap<Db, Map<number, Computed>>();
+
+function keep(db: Db, id: number, computed: Computed): void {
+  const kept = keptOf.get(db) ?? new Map<number, Computed>();
+  keptOf.set(db, kept);
+  kept.delete(id);
+  kept.set(id, computed);
+  for (const oldest of kept.keys()) if (kept.size > KEPT) kept.delete(oldest);
+}
 
 /**
  * Stored comparisons worked out once more from the files they were made from, with the columns that pictures need. The
- * last few are kept, so that the pictures of one comparison cost one computation.
+ * last few are kept, those just made among them, so that the pictures of one comparison cost no computation.
  */
-export function recomputer(db: Db): (stored: StoredComparison) => Comparison {
-  const kept = new Map<number, Comparison>();
+export function recomputer(db: Db): (stored: StoredComparison) => Computed {
   return (stored) => {
-    const comparison = kept.get(stored.id) ?? compute(db, stored);
-    kept.delete(stored.id);
-    kept.set(stored.id, comparison);
-    for (const oldest of kept.keys()) if (kept.size > KEPT) kept.delete(oldest);
-    return comparison;
+    const computed = keptOf.get(db)?.get(stored.id) ?? compute(db, stored);
+    keep(db, stored.id, computed);
+    return computed;
   };
 }
 
@@ -106,12 +122,17 @@ function compute(
     tariffFile,
     choices,
   }: Pick<StoredComparison, 'recordId' | 'stationFile' | 'tariffFile' | 'choices'>,
-): Comparison {
-  return compareRules({
-    station: readStation(stationFile, 'station.json'),
-    log: readLog(db, recordId)!,
+): Computed {
+  const station = readStation(stationFile, 'station.json');
+  const log = readLog(db, recordId)!;
+  const sets = dutyPumpsAreEqual(dutyWithout(station, choices.without)) ? null : new RunSets(log.startMs.length);
+  const comparison = compareRules({
+    station,
+    log,
     tariff: tariffFile === null ? null : readTariff(tariffFile, 'tariff.json', publicHolidayDates),
     rules: choices.rules ?? undefined,
     without: choices.without,
+    onAction: sets ? (rule, i, action) => sets.add(rule, i, action) : undefined,
   });
+  return { comparison, sets };
 }

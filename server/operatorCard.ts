@@ -1,9 +1,11 @@
 import { type Note, refuse } from './errors.ts';
 import type { Pump } from './hydraulics/pump.ts';
+import { systemHead } from './hydraulics/systemCurve.ts';
 import { type CardStep, headerPressure, operatorCard, type StepReason } from './staging/card.ts';
 import { dutyWithout } from './staging/compare.ts';
 import type { ComparisonResult } from './staging/result.ts';
-import type { Station } from './station/station.ts';
+import type { SpeedsOfSet } from './staging/setLadder.ts';
+import { dutyPumpsAreEqual, type Station } from './station/station.ts';
 import { type FileUnits, FLOW_UNITS, HEAD_UNITS } from './units.ts';
 
 /** The card as it is handed over: in the units of the station file, with what must stand beside it. */
@@ -15,6 +17,8 @@ export interface HandedCard {
   readonly bandPercent: number;
   readonly basis: 'drives' | 'proposed-drives' | 'direct-on-line';
   readonly pumps: readonly string[];
+  /** Whether they are equal, so that a count says who runs. */
+  readonly alike: boolean;
   readonly ratedSpeedRpm: number | null;
   readonly steps: readonly HandedStep[];
   /** For pumps that differ: which set is the best as flow rises, against the station's own order; empty otherwise. */
@@ -33,6 +37,8 @@ export interface HandedCard {
 export interface HandedStep {
   readonly from: number;
   readonly to: number;
+  /** Name of the pump that comes on, the next in the station's order. */
+  readonly pump: string;
   readonly flow: number;
   readonly bringOn: number;
   readonly dropOff: number;
@@ -56,6 +62,24 @@ export interface HandedSet {
   readonly savedKw: number | null;
   /** `add B, drop J` */
   readonly text: string;
+  /** When to change into this set and back, and at what speeds; null for the first. */
+  readonly change: {
+    readonly bringOn: number;
+    readonly dropOff: number;
+    readonly headerHead: number;
+    readonly headerKpa: number;
+    readonly before: readonly HandedSpeed[];
+    readonly after: readonly HandedSpeed[];
+  } | null;
+}
+
+export interface HandedSpeed {
+  readonly pump: string;
+  /** Share of rated speed; 1 direct on line. */
+  readonly speed: number;
+  /** null where the rated speed is not known. */
+  readonly rpm: number | null;
+  readonly onDrive: boolean;
 }
 
 /** Speeds as share of rated; header head in the file's unit, and as a pressure. */
@@ -129,6 +153,14 @@ export function cardOf(
     headerHead: at.headerHead / head,
     headerKpa: headerPressure(station, at.headerHead) / 1000,
   });
+  const headerAt = (q: number) => {
+    const made = systemHead(station.friction, card.staticHead, q);
+    return { headerHead: made / head, headerKpa: headerPressure(station, made) / 1000 };
+  };
+  const speedOf = ({ place, speed, onDrive }: SpeedsOfSet[number]): HandedSpeed => {
+    const { name, ratedSpeed } = duty[place]!;
+    return { pump: name, speed, rpm: ratedSpeed === null ? null : speed * ratedSpeed, onDrive };
+  };
   const moved = (side: { staticHead: number; flows: readonly (number | null)[] }) => ({
     staticHead: side.staticHead / head,
     flows: side.flows.map((each) => (each === null ? null : each / flow)),
@@ -141,9 +173,11 @@ export function cardOf(
     bandPercent,
     basis: card.basis,
     pumps: duty.map((pump) => pump.name),
+    alike: dutyPumpsAreEqual(duty),
     ratedSpeedRpm: card.ratedSpeedRpm,
     steps: card.steps.map((step) => ({
       ...step,
+      pump: duty[step.to - 1]!.name,
       flow: step.flow / flow,
       bringOn: step.bringOn / flow,
       dropOff: step.dropOff / flow,
@@ -168,6 +202,13 @@ export function cardOf(
         rests: step.rests,
         savedKw: step.savedPower === null ? null : step.savedPower / 1000,
         text,
+        change: step.change && {
+          bringOn: step.change.bringOn / flow,
+          dropOff: step.change.dropOff / flow,
+          ...headerAt(step.change.bringOn),
+          before: step.change.before.map(speedOf),
+          after: step.change.after.map(speedOf),
+        },
       };
     }),
     capacities: card.capacities.map((each) => each / flow),

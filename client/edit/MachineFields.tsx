@@ -1,4 +1,5 @@
 import type { CurveEntry, StationFile } from '../../server/station/stationFile.ts';
+import { shownFlowUnit } from '../format.ts';
 import type { Path } from '../station.ts';
 import { useEditing } from './context.ts';
 import { NumberAt, RowsAt } from './fields.tsx';
@@ -13,7 +14,8 @@ interface MachineFieldsProps {
 /** Curve, motor and drive of one pump, or of one in a train. */
 export function MachineFields({ path, file }: MachineFieldsProps) {
   const { set } = useEditing();
-  const { flow, head, power } = file.units;
+  const { head, power } = file.units;
+  const flow = shownFlowUnit(file.units.flow);
   const curve = valueAt(file, [...path, 'curve']) as CurveEntry;
   const kind = kindOf(curve);
   const drive = valueAt(file, [...path, 'drive']);

@@ -1,10 +1,10 @@
 import type { Station } from '../../server/station/station.ts';
-import { Format, pumps } from '../format.ts';
+import { Format, list, pumps } from '../format.ts';
 import { Exhibit } from '../parts/Exhibit.tsx';
 import { Table } from '../parts/Table.tsx';
 import { countShade } from '../questions/which/Ladder.tsx';
 import { niceTicks } from '../series.ts';
-import { pumpPicture, type Spot } from './livePicture.ts';
+import { type PumpPicture, pumpPicture, type Spot } from './livePicture.ts';
 
 const WIDTH = 520;
 const HEIGHT = 380;
@@ -26,7 +26,7 @@ export function PumpsPicture({ station }: { readonly station: Station }) {
   const most = picture.counts.length;
   const last = able.at(-1);
   const title = last
-    ? `${last.count === 1 ? 'One pump gives' : `${last.count} pumps give`} ${format.say(format.flow, last.point!.flow)} against ${format.say(format.head, last.point!.head)}`
+    ? `${whoGives(picture.alike, last)} ${format.say(format.flow, last.point!.flow)} against ${format.say(format.head, last.point!.head)}`
     : 'No pump can lift the static head';
   return (
     <Exhibit
@@ -37,7 +37,10 @@ export function PumpsPicture({ station }: { readonly station: Station }) {
           caption="Where pumps and system meet, at rated speed"
           rows={able}
           keyOf={({ count }) => String(count)}
-          name={{ head: 'Running', cell: ({ count }) => pumps(count) }}
+          name={{
+            head: 'Running',
+            cell: ({ count, pumps: names }) => (picture.alike ? pumps(count) : list(names)),
+          }}
           columns={[
             { head: 'Flow', unit: format.flow.unit, cell: ({ point }) => format.bare(format.flow, point!.flow).text },
             { head: 'Head', unit: format.head.unit, cell: ({ point }) => format.bare(format.head, point!.head).text },
@@ -103,7 +106,17 @@ export function PumpsPicture({ station }: { readonly station: Station }) {
           </text>
         </g>
       </svg>
-      <p class="aside">At rated speed, direct on line, behind each pump's branch. Each number is a count of pumps.</p>
+      <p class="aside">
+        At rated speed, direct on line, behind each pump's branch.{' '}
+        {picture.alike
+          ? 'Each number is a count of pumps.'
+          : `In the station's order: ${picture.counts.map(({ count, pumps: names }) => `${count} ${count === 1 ? 'is' : 'adds'} ${names.at(-1)}`).join(', ')}.`}
+      </p>
     </Exhibit>
   );
+}
+
+function whoGives(alike: boolean, { count, pumps: names }: PumpPicture['counts'][number]): string {
+  if (!alike) return `${list(names)} ${count === 1 ? 'gives' : 'give'}`;
+  return count === 1 ? 'One pump gives' : `${count} pumps give`;
 }

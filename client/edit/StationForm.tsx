@@ -1,12 +1,13 @@
-import type { StationFile } from '../../server/station/stationFile.ts';
+import type { PumpEntry, StationFile } from '../../server/station/stationFile.ts';
 import { FLOW_UNITS, HEAD_UNITS, isUsFlow, POWER_UNITS } from '../../server/units.ts';
+import { shownFlowUnit } from '../format.ts';
 import { dutyNames, type Path } from '../station.ts';
 import { Confirm } from './Confirm.tsx';
 import { useEditing } from './context.ts';
 import { Cell, ChoiceAt, NumberAt, RowsAt, TextAt } from './fields.tsx';
 import { MachineFields } from './MachineFields.tsx';
 import { valueAt } from './paths.ts';
-import { firstSteps, frictionAs } from './reshape.ts';
+import { asTrain, firstSteps, frictionAs, type TrainEntry, withoutPart, withPart } from './reshape.ts';
 
 const names = <T extends string>(values: readonly T[], called: Partial<Record<T, string>> = {}) =>
   values.map((value) => ({ value, name: called[value] ?? value }));
@@ -110,7 +111,8 @@ export function StationForm({ file }: { readonly file: StationFile }) {
 
 function FrictionFields({ file }: { readonly file: StationFile }) {
   const { set } = useEditing();
-  const { flow, head } = file.units;
+  const { head } = file.units;
+  const flow = shownFlowUnit(file.units.flow);
   const friction = file.system.friction ?? {};
   const kind = 'pipes' in friction ? 'pipes' : 'points' in friction ? 'points' : 'coefficient';
   const small = head === 'ft' ? 'in' : 'mm';
@@ -169,7 +171,8 @@ function PumpFields({ file, at }: { readonly file: StationFile; readonly at: num
   const { set } = useEditing();
   const entry = file.pumps[at]!;
   const path: Path = ['pumps', at];
-  const { head, flow } = file.units;
+  const { head } = file.units;
+  const flow = shownFlowUnit(file.units.flow);
   return (
     <fieldset class="pump">
       <legend>
@@ -201,16 +204,53 @@ function PumpFields({ file, at }: { readonly file: StationFile; readonly at: num
         hint="own pipe and valves"
       />
       {'train' in entry ? (
-        entry.train.map((part, i) => (
-          <fieldset key={i} class="pump">
-            <legend>In series {part.name ?? i + 1}</legend>
-            <MachineFields path={[...path, 'train', i]} file={file} />
-          </fieldset>
-        ))
+        <TrainFields file={file} path={path} entry={entry} onChange={(next) => set(path, next)} />
       ) : (
-        <MachineFields path={path} file={file} />
+        <>
+          <MachineFields path={path} file={file} />
+          <p>
+            <button type="button" class="quiet" onClick={() => set(path, asTrain(entry))}>
+              Another kind of pump in series with it
+            </button>
+          </p>
+        </>
       )}
     </fieldset>
+  );
+}
+
+interface TrainFieldsProps {
+  readonly file: StationFile;
+  readonly path: Path;
+  readonly entry: TrainEntry;
+  readonly onChange: (entry: PumpEntry) => void;
+}
+
+/** Pumps in series, one after the other; the last that is left is a pump by itself again. */
+function TrainFields({ file, path, entry, onChange }: TrainFieldsProps) {
+  return (
+    <>
+      {entry.train.map((part, i) => (
+        <fieldset key={i} class="pump">
+          <legend>
+            {entry.name}, in series {part.name ?? i + 1}{' '}
+            <Confirm
+              ask="Take out of the series"
+              says={`The curve of ${part.name ?? `number ${i + 1}`} would be gone.`}
+              does="Take it out"
+              onDo={() => onChange(withoutPart(entry, i))}
+            />
+          </legend>
+          <TextAt path={[...path, 'train', i, 'name']} label="Name" />
+          <MachineFields path={[...path, 'train', i]} file={file} />
+        </fieldset>
+      ))}
+      <p>
+        <button type="button" class="quiet" onClick={() => onChange(withPart(entry))}>
+          One more in series
+        </button>
+      </p>
+    </>
   );
 }
 
@@ -232,7 +272,7 @@ function AddPump({ file }: { readonly file: StationFile }) {
 /** The operator's own table: at which flow each further pump comes on, and at which it goes off again. */
 function StepFields({ file }: { readonly file: StationFile }) {
   const { set, faults } = useEditing();
-  const { flow } = file.units;
+  const flow = shownFlowUnit(file.units.flow);
   const steps = Math.max(0, dutyNames(file).length - 1);
   const path: Path = ['rules', 'flow-steps'];
   const has = valueAt(file, path) !== undefined;

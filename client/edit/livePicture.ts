@@ -1,15 +1,19 @@
 import { systemHead } from '../../server/hydraulics/systemCurve.ts';
 import { stagedPumps } from '../../server/staging/stagedPumps.ts';
-import type { Station } from '../../server/station/station.ts';
+import { dutyPumpsAreEqual, type Station } from '../../server/station/station.ts';
 import { GRAVITY } from '../../server/units.ts';
 
 /** Pumps and system as curves of head over total flow, with the point each count settles at; SI throughout. */
 export interface PumpPicture {
   readonly topFlow: number;
   readonly topHead: number;
+  /** Whether the pumps are equal, so that a count says who runs. */
+  readonly alike: boolean;
   readonly system: readonly Spot[];
   readonly counts: readonly {
     readonly count: number;
+    /** Their names in the station's order. */
+    readonly pumps: readonly string[];
     /** The first so many pumps at rated speed, behind their branches. */
     readonly curve: readonly Spot[];
     /** null where they cannot lift the static head. */
@@ -71,7 +75,7 @@ export function pumpPicture(station: Station): PumpPicture {
             overloaded: state.doubts.overloaded,
           }
         : null;
-    return { count: i + 1, curve, point };
+    return { count: i + 1, pumps: set.map((pump) => pump.name), curve, point };
   });
   const farthest = Math.max(...counts.map(({ point }) => point?.flow ?? 0));
   const topFlow =
@@ -80,5 +84,5 @@ export function pumpPicture(station: Station): PumpPicture {
     const flow = (topFlow * k) / POINTS;
     return { flow, head: systemHead(friction, staticHead, flow) };
   });
-  return { topFlow, topHead: Math.max(shutoff, staticHead) * 1.08, system, counts };
+  return { alike: dutyPumpsAreEqual(duty), topFlow, topHead: Math.max(shutoff, staticHead) * 1.08, system, counts };
 }

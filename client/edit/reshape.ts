@@ -1,7 +1,7 @@
 import { InputError } from '../../server/errors.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import type { Station } from '../../server/station/station.ts';
-import type { CurveEntry, StationFile } from '../../server/station/stationFile.ts';
+import type { CurveEntry, PumpEntry, StationFile } from '../../server/station/stationFile.ts';
 import { FLOW_UNITS, HEAD_UNITS } from '../../server/units.ts';
 import { valueAt } from './paths.ts';
 
@@ -49,6 +49,31 @@ export function firstSteps(file: StationFile, steps: number): { bringOn: number[
   const round = (value: number) => Number(value.toPrecision(2));
   const bringOn = Array.from({ length: steps }, (_, i) => round(best * (i + 1)));
   return { bringOn, dropOff: bringOn.map((flow) => round(flow * 0.85)) };
+}
+
+export type TrainEntry = Extract<PumpEntry, { readonly train: unknown }>;
+type SingleEntry = Exclude<PumpEntry, TrainEntry>;
+
+/** A pump, or so many of it in series, as a train of two to begin with: itself and one like it. */
+export function asTrain({ curve, motor, drive, inSeries, ...shared }: SingleEntry): TrainEntry {
+  const part = { curve, motor, ...(drive !== undefined && { drive }) };
+  return { ...shared, train: [{ ...part, ...(inSeries !== undefined && inSeries > 1 && { inSeries }) }, part] };
+}
+
+/** One more in series, like the last. */
+export function withPart(entry: TrainEntry): TrainEntry {
+  const { name: _name, ...like } = entry.train.at(-1)!;
+  return { ...entry, train: [...entry.train, like] };
+}
+
+/** The series without one of it: a pump by itself where one is left. */
+export function withoutPart(entry: TrainEntry, at: number): PumpEntry {
+  const left = entry.train.filter((_, i) => i !== at);
+  const [only] = left;
+  if (left.length > 1 || only === undefined) return { ...entry, train: left };
+  const { train: _train, ...shared } = entry;
+  const { name: _name, ...machine } = only;
+  return { ...shared, ...machine };
 }
 
 export type CurveKind = 'point' | 'shape' | 'points';

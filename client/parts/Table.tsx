@@ -7,6 +7,13 @@ export interface Column<Row> {
   readonly cell: (row: Row) => ComponentChildren;
   /** Left out where the screen is narrow; the row's details then have it. */
   readonly wide?: boolean;
+  /** Words, not figures: they begin at the left. */
+  readonly words?: boolean;
+}
+
+function classOf({ wide, words }: Pick<Column<never>, 'wide' | 'words'>): string | undefined {
+  const names = [wide && 'wide', words && 'words'].filter(Boolean).join(' ');
+  return names === '' ? undefined : names;
 }
 
 interface TableProps<Row> {
@@ -32,7 +39,7 @@ export function Table<Row>({ caption, rows, name, columns, keyOf, mark, details,
         <thead>
           <tr>
             {[name, ...columns].map((column) => (
-              <th key={`${column.head} ${column.unit}`} scope="col" class={column.wide ? 'wide' : undefined}>
+              <th key={`${column.head} ${column.unit}`} scope="col" class={classOf(column)}>
                 {column.head}
                 {column.unit && <span class="unit">{column.unit}</span>}
               </th>
@@ -80,7 +87,7 @@ function Row<R>({ row, name, columns, mark, details }: RowProps<R>) {
           {mark && <span class="mark">{mark}</span>}
         </th>
         {columns.map((column) => (
-          <td key={`${column.head} ${column.unit}`} class={column.wide ? 'wide' : undefined}>
+          <td key={`${column.head} ${column.unit}`} class={classOf(column)}>
             {column.cell(row)}
           </td>
         ))}

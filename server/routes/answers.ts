@@ -7,6 +7,8 @@ import { jsonBody, resource } from '../body.ts';
 import { caseOfStored } from '../caseOfStored.ts';
 import { recomputer } from '../compareRules.ts';
 import { type Context, existing } from '../context.ts';
+import { refuse } from '../errors.ts';
+import type { Pump } from '../hydraulics/pump.ts';
 import { cardOf, lateStagingCost } from '../operatorCard.ts';
 import { readAs } from '../readFile.ts';
 import { bestCountMap, headSpan } from '../staging/bestCountMap.ts';
@@ -51,14 +53,16 @@ export function answerRoutes(router: Router, { db }: Context): void {
         const head = HEAD_UNITS[station.units.head];
         const scaled = (value: number | null, unit: number) => (value === null ? null : value * unit);
         const back = (value: number | null, unit: number) => (value === null ? null : value / unit);
+        const duty = dutyWithout(station, without ?? []);
         const laid = laySpotReadings(
           station,
-          dutyWithout(station, without ?? []),
-          readings.map((reading) => ({
+          readings.map((reading, i) => ({
             flow: scaled(reading.flow ?? null, flow),
             head: scaled(reading.head ?? null, head),
             power: scaled(reading.powerKw ?? null, 1000),
-            pumpsOn: reading.pumpsOn,
+            pumps: reading.pumps
+              ? named(duty, reading.pumps, `readings[${i}].pumps`)
+              : duty.slice(0, Math.min(reading.pumpsOn!, duty.length)),
           })),
         );
         response.json({
@@ -67,7 +71,8 @@ export function answerRoutes(router: Router, { db }: Context): void {
             flow: back(one.flow, flow),
             head: back(one.head, head),
             powerKw: back(one.power, 1000),
-            pumpsOn: one.pumpsOn,
+            pumpsOn: one.pumps.length,
+            pumps: one.pumps.map((pump) => pump.name),
             curveHead: back(one.curveHead, head),
             systemHead: back(one.systemHead, head),
             curveFlow: one.curveFlow / flow,
@@ -84,7 +89,7 @@ export function answerRoutes(router: Router, { db }: Context): void {
       (request, response) => {
         const stored = findStored(request.params.id);
         const { without: _without, ...query } = readAs(cardQuery, request.query, 'query');
-        const comparison = recomputed(stored);
+        const { comparison } = recomputed(stored);
         const span = headSpan(comparison);
         const card = cardOf(comparison.station, {
           ...query,
@@ -100,7 +105,9 @@ export function answerRoutes(router: Router, { db }: Context): void {
     ],
   });
   resource(router, '/comparisons/:id/map', {
-    get: [(request, response) => void response.json(bestCountMap(recomputed(findStored(request.params.id))))],
+    get: [
+      (request, response) => void response.json(bestCountMap(recomputed(findStored(request.params.id)).comparison)),
+    ],
   });
 
   resource(router, '/cases', {
@@ -109,6 +116,16 @@ export function answerRoutes(router: Router, { db }: Context): void {
       (request, response) => void response.json(caseOfStored(db, readAs(caseRequest, request.body, 'request'))),
     ],
   });
+}
+
+/** Duty pumps by their names, in the station's order. */
+function named(duty: readonly Pump[], asked: readonly string[], at: string): readonly Pump[] {
+  for (const name of asked) {
+    if (duty.some((pump) => pump.name === name)) continue;
+    const wanted = `one of ${duty.map((pump) => pump.name).join(', ')}`;
+    refuse({ code: 'unknown_name', file: 'request', at, found: `'${name}'`, wanted });
+  }
+  return duty.filter((pump) => asked.includes(pump.name));
 }
 
 function names(text: string | undefined): string[] {

@@ -43,14 +43,15 @@ export function comparisonRoutes(router: Router, { db, now }: Context): void {
 
   const recomputed = recomputer(db);
   resource(router, '/comparisons/:id/power-over-flow', {
-    get: [(request, response) => void response.json(powerOverFlow(recomputed(find(request.params.id))))],
+    get: [(request, response) => void response.json(powerOverFlow(recomputed(find(request.params.id)).comparison))],
   });
   resource(router, '/comparisons/:id/series', {
     get: [
       (request, response) => {
         const stored = find(request.params.id);
         const { rule, ...part } = readAs(seriesQuery, request.query, 'query');
-        const series = ruleSeries(recomputed(stored), rule, part);
+        const { comparison, sets } = recomputed(stored);
+        const series = ruleSeries(comparison, rule, part, sets);
         if (series === null) {
           const wanted = `one of ${stored.result.rules.map((each) => each.rule).join(', ')}`;
           refuse({ code: 'not_found', file: 'query', at: 'rule', found: `'${rule}', which was not run`, wanted });

@@ -1,7 +1,9 @@
+import { dutyPumpsAreEqual } from '../station/station.ts';
 import type { Comparison } from './compare.ts';
 import { capacityOf } from './crossings.ts';
 import { fixedSpeed } from './rules/fixedSpeed.ts';
 import { bestCount } from './rules/trimmedCounts.ts';
+import { placesOf } from './setLadder.ts';
 import { stagedPumps } from './stagedPumps.ts';
 
 /** Which count of pumps is best over flow and static head, and the hours the record spends in each cell. */
@@ -11,6 +13,9 @@ export interface BestCountMap {
   readonly staticHeadM: readonly number[];
   /** By row, then column: the best count (0 where none can), the pumps running at most where states share the time. */
   readonly count: readonly (readonly number[])[];
+  /** For pumps that differ: the sets met, by names of their pumps, and by row, then column, which of them is best. */
+  readonly sets: readonly (readonly string[])[];
+  readonly set: readonly (readonly (number | null)[])[];
   /** By row, then column: hours of the record. */
   readonly hours: readonly (readonly number[])[];
 }
@@ -27,13 +32,15 @@ export function bestCountMap(comparison: Comparison): BestCountMap {
   const flowM3s = Array.from({ length: COLUMNS }, (_, i) => (top * (i + 0.5)) / COLUMNS);
   const staticHeadM = Array.from({ length: ROWS }, (_, i) => low + ((high - low) * (i + 0.5)) / ROWS);
   const decide = (pumps.onDrives ? bestCount : fixedSpeed).start(pumps, record);
-  const count = staticHeadM.map((head) => {
+  const bits = staticHeadM.map((head) => {
     pumps.at(head);
     return flowM3s.map((flow) => {
       const { high: state, shortfall } = decide(flow);
-      return shortfall > 0 ? 0 : state.count;
+      return shortfall > 0 ? 0 : state.set;
     });
   });
+  const met = dutyPumpsAreEqual(duty) ? [] : [...new Set(bits.flat())].filter((set) => set > 0);
+  const names = (set: number) => placesOf(set).map((place) => duty[place]!.name);
   const hours = staticHeadM.map(() => new Array<number>(COLUMNS).fill(0));
   for (let i = 0; i < record.flow.length; i++) {
     const head = typeof record.staticHead === 'number' ? record.staticHead : record.staticHead[i]!;
@@ -41,7 +48,14 @@ export function bestCountMap(comparison: Comparison): BestCountMap {
     const column = Math.min(COLUMNS - 1, Math.floor((record.flow[i]! / top) * COLUMNS));
     hours[row]![column]! += record.seconds[i]! / 3600;
   }
-  return { flowM3s, staticHeadM, count, hours };
+  return {
+    flowM3s,
+    staticHeadM,
+    count: bits.map((row) => row.map((set) => placesOf(set).length)),
+    sets: met.map(names),
+    set: met.length === 0 ? [] : bits.map((row) => row.map((set) => (set === 0 ? null : met.indexOf(set)))),
+    hours,
+  };
 }
 
 /** Lowest and highest static head of a record [m]; the station's number, a quarter either way, where it is one. */

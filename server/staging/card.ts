@@ -6,6 +6,8 @@ import type { Station } from '../station/station.ts';
 import { GRAVITY, HEAD_UNITS } from '../units.ts';
 import { type Crossing, capacityOf, crossingsBetween, powerOfCount } from './crossings.ts';
 import { deadHeadedNotes, shutOutNotes } from './deadHeaded.ts';
+import { lastWithin } from './lastWithin.ts';
+import { MixedPumps } from './mixedPumps.ts';
 import { type SetStep, setLadder } from './setLadder.ts';
 import { type StagedPumps, stagedPumps } from './stagedPumps.ts';
 import { NEAR_DEAD_HEAD, type State } from './state.ts';
@@ -113,7 +115,7 @@ export function operatorCard(
         ? 'proposed-drives'
         : 'drives',
     steps,
-    sets: setLadder(pumps),
+    sets: setLadder(pumps, band),
     capacities,
     ratedSpeedRpm: duty.every((pump) => pump.ratedSpeed === duty[0]!.ratedSpeed) ? duty[0]!.ratedSpeed : null,
     levels: station.storage.levels,
@@ -213,27 +215,35 @@ function cardStep(pumps: StagedPumps, from: number, band: number): CardStep | nu
     atBringOn: at(Math.min(bringOn, near)),
     atDropOff: at(dropOff),
     reason,
-    text: reasonText(reason, from),
+    text: reasonText(reason, pumps, from),
     crossings: crossings.map((crossing) => crossing.flow),
   };
 }
 
-function reasonText(reason: StepReason, n: number): string {
-  const these = n === 1 ? 'one pump' : `${n} pumps`;
+function reasonText(reason: StepReason, pumps: StagedPumps, n: number): string {
+  const these = whoRuns(pumps, n);
+  const more = whoRuns(pumps, n + 1);
   switch (reason) {
     case 'crossing':
-      return `Above this flow ${n + 1} pumps draw less than ${these}.`;
+      return `Above this flow ${more} draw less than ${these}.`;
     case 'cheaper-to-capacity':
       return `Up to its capacity ${these} draw${n === 1 ? 's' : ''} less: the next pump is for flow, not for economy.`;
     case 'always-cheaper':
-      return `At every flow they may run at, ${n + 1} pumps draw less than ${these}.`;
+      return `At every flow they may run at, ${more} draw less than ${these}.`;
     case 'least-flow':
-      return `${n + 1} pumps would pay earlier, but run too far below their best-efficiency flow there.`;
+      return `${more} would pay earlier, but run too far below their best-efficiency flow there.`;
     case 'most-flow':
       return `Beyond this flow ${these} would leave the allowable range or overload a motor.`;
     case 'no-drives':
       return `Direct on line a pump is added when ${these} cannot meet the flow.`;
   }
+}
+
+/** The first n pumps in a sentence: by their count where they are equal, else by name. */
+function whoRuns(pumps: StagedPumps, n: number): string {
+  if (!(pumps instanceof MixedPumps)) return n === 1 ? 'one pump' : `${n} pumps`;
+  const names = pumps.duty.slice(0, n).map((pump) => pump.name);
+  return n === 1 ? names[0]! : `${names.slice(0, -1).join(', ')} and ${names[n - 1]}`;
 }
 
 function speedOf(pumps: StagedPumps, count: number, flow: number): number {
@@ -273,30 +283,6 @@ function mostFlow(pumps: StagedPumps, count: number): number {
     return state.greatestShareOfBest <= to && !state.doubts.overloaded;
   };
   return fits(capacity) ? Infinity : lastWithin(capacity * 1e-3, capacity, fits);
-}
-
-/**
- * The farthest flow from `start` towards `end` up to which a condition holds without a break: found on a grid, then by
- * bisection. `start` where it does not hold there.
- */
-function lastWithin(start: number, end: number, holds: (flow: number) => boolean): number {
-  const steps = 200;
-  let good = start;
-  for (let i = 1; i <= steps; i++) {
-    const flow = start + ((end - start) * i) / steps;
-    if (holds(flow)) {
-      good = flow;
-      continue;
-    }
-    let bad = flow;
-    for (let k = 0; k < 50; k++) {
-      const middle = (good + bad) / 2;
-      if (holds(middle)) good = middle;
-      else bad = middle;
-    }
-    return good;
-  }
-  return good;
 }
 
 /** Pressure in the header [Pa] of a head of the station's liquid. */

@@ -9,7 +9,8 @@ export interface SpotReading {
   readonly head: number | null;
   /** Electric power of the station [W]. */
   readonly power: number | null;
-  readonly pumpsOn: number;
+  /** Those that ran. */
+  readonly pumps: readonly Pump[];
 }
 
 /** A reading laid on the curves: what they give there, all direct on line at rated speed. */
@@ -25,14 +26,10 @@ export interface LaidReading extends SpotReading {
 }
 
 /** Lays readings on the pump and system curves, to see whether these explain what was measured. */
-export function laySpotReadings(
-  station: Station,
-  duty: readonly Pump[],
-  readings: readonly SpotReading[],
-): LaidReading[] {
-  const pumps = stagedPumps(station, duty);
+export function laySpotReadings(station: Station, readings: readonly SpotReading[]): LaidReading[] {
   return readings.map((reading) => {
-    const count = Math.min(Math.max(1, reading.pumpsOn), pumps.most);
+    const pumps = stagedPumps(station, reading.pumps);
+    const count = pumps.most;
     const point = pumps.fixed(count);
     const { flow } = reading;
     const state = flow === null || flow <= 0 ? null : pumps.throttled(count, flow);

@@ -15,7 +15,12 @@ const format = aFormat();
 const plain = (text: string) => text.replaceAll('\u00a0', ' ');
 const rising = (to: number, flowM3s: number) => ({ from: to - 1, to, flowM3s, powerKw: 9, rising: true });
 const falling = (to: number, flowM3s: number) => ({ ...rising(to, flowM3s), rising: false });
-const three = [0.055, 0.09, 0.12].map((capacityM3s, i) => ({ count: i + 1, capacityM3s, powerKw: [] }));
+const three = [0.055, 0.09, 0.12].map((capacityM3s, i) => ({
+  count: i + 1,
+  pumps: ['A', 'B', 'C'].slice(0, i + 1),
+  capacityM3s,
+  powerKw: [],
+}));
 
 describe('which pump, when', () => {
   it('names the flow from which each further pump pays, and the static head', () => {

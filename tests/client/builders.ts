@@ -54,11 +54,14 @@ export function aPower(fields: Partial<PowerOverFlow> = {}): PowerOverFlow {
   return {
     staticHeadM: 14,
     onDrives: true,
+    alike: true,
     flowM3s: [0.02, 0.04, 0.06, 0.08],
     counts: [
-      { count: 1, capacityM3s: 0.055, powerKw: [4, 8, null, null] },
-      { count: 2, capacityM3s: 0.09, powerKw: [6, 9, 13, 18] },
+      { count: 1, pumps: ['A'], capacityM3s: 0.055, powerKw: [4, 8, null, null] },
+      { count: 2, pumps: ['A', 'B'], capacityM3s: 0.09, powerKw: [6, 9, 13, 18] },
     ],
+    sets: [],
+    stretches: [],
     crossings: [],
     hours: [],
     ...fields,

@@ -18,6 +18,7 @@ function aStep(from: number, dropOff: number, bringOn: number): HandedStep {
   return {
     from,
     to: from + 1,
+    pump: ['A', 'B', 'C'][from]!,
     flow: (dropOff + bringOn) / 2,
     bringOn,
     dropOff,
@@ -40,6 +41,7 @@ function aCard(steps: readonly HandedStep[], capacities: readonly number[]): Han
     bandPercent: 1,
     basis: 'drives',
     pumps: ['A', 'B', 'C'],
+    alike: true,
     ratedSpeedRpm: 1475,
     steps,
     sets: [],
@@ -56,21 +58,21 @@ describe('the ladder', () => {
     // Top is what three pumps give, 100: so every share is the flow in hundredths.
     const ladder = ladderOf(aCard([aStep(1, 38, 42), aStep(2, 70, 75)], [50, 80, 100]))!;
     expect(ladder.top).toBe(100);
-    expect(ladder.counts).toEqual([
-      { count: 1, from: 0, to: 0.42, middle: 0.19 },
-      { count: 2, from: 0.38, to: 0.75, middle: 0.56 },
-      { count: 3, from: 0.7, to: 1, middle: 0.875 },
+    expect(ladder.zones).toEqual([
+      { id: 1, name: '1', from: 0, to: 0.42, middle: 0.19 },
+      { id: 2, name: '2', from: 0.38, to: 0.75, middle: 0.56 },
+      { id: 3, name: '3', from: 0.7, to: 1, middle: 0.875 },
     ]);
     expect(ladder.rungs).toEqual([
-      { from: 1, to: 2, dropOff: 0.38, bringOn: 0.42, told: 0.25 },
-      { from: 2, to: 3, dropOff: 0.7, bringOn: 0.75, told: 0.75 },
+      { id: 2, dropOff: 0.38, bringOn: 0.42, told: 0.25 },
+      { id: 3, dropOff: 0.7, bringOn: 0.75, told: 0.75 },
     ]);
   });
 
   it('of one pump has no rung, and there is none where no pump can lift', () => {
     expect(ladderOf(aCard([], [50]))).toEqual({
       top: 50,
-      counts: [{ count: 1, from: 0, to: 1, middle: 0.5 }],
+      zones: [{ id: 1, name: '1', from: 0, to: 1, middle: 0.5 }],
       rungs: [],
     });
     expect(ladderOf(aCard([], [0, 0]))).toBeNull();
@@ -78,7 +80,7 @@ describe('the ladder', () => {
   });
 
   it('begins with the first count that can lift at all', () => {
-    expect(ladderOf(aCard([aStep(2, 38, 42)], [0, 50, 80]))!.counts.map(({ count }) => count)).toEqual([2, 3]);
+    expect(ladderOf(aCard([aStep(2, 38, 42)], [0, 50, 80]))!.zones.map(({ id }) => id)).toEqual([2, 3]);
   });
 
   it('is told in a sentence, in the units of the reader', () => {

@@ -18,7 +18,7 @@ import type { StationFile } from '../../server/station/stationFile.ts';
 import { readTariff } from '../../server/tariff/tariffFile.ts';
 import { aStationFile } from '../support/aStation.ts';
 import { resultFor } from '../support/comparing.ts';
-import { aBilledRule, anOpened, aRule } from './builders.ts';
+import { aBilledRule, aFormat, anOpened, aRule } from './builders.ts';
 
 const pump = (fields: object) => ({ ...((aStationFile().pumps as object[])[0] as object), ...fields });
 const aStation = (...pumps: object[]) => aStationFile(pumps.length > 0 ? { pumps } : {}) as StationFile;
@@ -103,17 +103,18 @@ describe('the case to begin with', () => {
     expect(isPlaceholder(start.draft, start)).toBe(true);
     expect(isPlaceholder({ ...start.draft, capital: 33_000 }, start)).toBe(false);
     const sentence = 'It pays: a drive saves 1 200 EUR a year; net present value 9 000 EUR.';
-    expect(caseAnswer({ sentence }, true)).toMatch(/EUR\. The price is a placeholder$/);
-    expect(caseAnswer({ sentence }, false)).toMatch(/9\u00a0000\u00a0EUR$/);
+    const format = aFormat();
+    expect(caseAnswer({ sentence }, format, { placeholder: true })).toMatch(/€9,000\. The price is a placeholder$/);
+    expect(caseAnswer({ sentence }, format, { placeholder: false })).toMatch(/€9,000$/);
   });
 
-  it('keeps figures together and calls rules by the names of the page', () => {
-    expect(readable('the same pumps under fixed-speed save 2 680 EUR')).toBe(
-      'the same pumps under fixed speed save 2\u00a0680\u00a0EUR',
+  it('writes money as everywhere on the page and calls rules by its names', () => {
+    expect(readable('the same pumps under fixed-speed save 2 680 EUR and -12 300.5 EUR, 45 %', aFormat())).toBe(
+      'the same pumps under fixed speed save €2,680 and -€12,300, 45\u00a0%',
     );
-    expect(shortVerdict({ sentence: 'Restage first: they save 2.5 MWh for nothing. Beyond that, no.' })).toBe(
-      'Restage first: they save 2.5 MWh for nothing',
-    );
+    expect(
+      shortVerdict({ sentence: 'Restage first: they save 2.5 MWh for nothing. Beyond that, no.' }, aFormat()),
+    ).toBe('Restage first: they save 2.5 MWh for nothing');
   });
 });
 

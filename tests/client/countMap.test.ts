@@ -11,6 +11,8 @@ function aMap(count: readonly (readonly number[])[]): BestCountMap {
     flowM3s: count[0]!.map((_, i) => 0.005 + 0.01 * i),
     staticHeadM: count.map((_, i) => 10 + 2 * i),
     count,
+    sets: [],
+    set: [],
     hours: count.map((row) => row.map(() => 0)),
   };
 }
@@ -23,9 +25,9 @@ describe('the map of the best count', () => {
 
   it('puts cells of one count together, edge to edge', () => {
     expect(cellOf(map).head).toBe(2);
-    const runs = runsOf(map).map(({ row, count, fromM3s, toM3s }) => [
+    const runs = runsOf(map).map(({ row, who, fromM3s, toM3s }) => [
       row,
-      count,
+      who,
       Math.round(fromM3s * 1e5) / 100,
       Math.round(toM3s * 1e5) / 100,
     ]);
@@ -39,7 +41,7 @@ describe('the map of the best count', () => {
   });
 
   it('names each count once, in a long run', () => {
-    const names = namesOf(runsOf(map)).map(({ count, row, flowM3s }) => [count, row, Math.round(flowM3s * 1e4) / 10]);
+    const names = namesOf(runsOf(map)).map(({ who, row, flowM3s }) => [who, row, Math.round(flowM3s * 1e4) / 10]);
     expect(names).toEqual([
       [0, 1, 45],
       [1, 0, 10],

@@ -3,7 +3,7 @@ import {
   countsOf,
   curvesOf,
   hoursByFlow,
-  leastCounts,
+  leastRunners,
   neighbour,
   niceTop,
   recordSteps,
@@ -29,9 +29,11 @@ describe('power over flow', () => {
   });
 
   it('knows the count that draws least; a tie goes to fewer pumps', () => {
-    expect(leastCounts(aPower())).toEqual([1, 1, 2, 2]);
-    const tie = aPower({ counts: [1, 2].map((count) => ({ count, capacityM3s: 1, powerKw: [5, 5, null, null] })) });
-    expect(leastCounts(tie)).toEqual([1, 1, null, null]);
+    expect(leastRunners(aPower())).toEqual([1, 1, 2, 2]);
+    const tie = aPower({
+      counts: [1, 2].map((count) => ({ count, pumps: [], capacityM3s: 1, powerKw: [5, 5, null, null] })),
+    });
+    expect(leastRunners(tie)).toEqual([1, 1, null, null]);
   });
 
   it('marks a crossing with the count that is cheaper above it', () => {
@@ -56,8 +58,8 @@ describe('power over flow', () => {
     expect(hours.x).toEqual(curvesOf(power, format).x);
     expect(hours.x.max).toBe(100);
     expect(hours.bars).toEqual([
-      { from: 0, to: 50, hours: 10, count: 1 },
-      { from: 50, to: 100, hours: 0, count: 2 },
+      { from: 0, to: 50, hours: 10, who: 1 },
+      { from: 50, to: 100, hours: 0, who: 2 },
     ]);
   });
 });
@@ -87,6 +89,7 @@ describe('steps', () => {
     powerKw: [1, 2],
     count: [0.5, 1.5],
     mostCount: [1, 2],
+    pumps: [],
     shortfallM3: [0, 0],
   };
 

@@ -1,6 +1,6 @@
 import type { QuestionProps } from '../../context.ts';
 import { usePage } from '../../context.ts';
-import { stepText } from '../../format.ts';
+import { stepText, typeset } from '../../format.ts';
 import { Cautions } from '../../parts/Cautions.tsx';
 import { Figure } from '../../parts/Figure.tsx';
 import { Table } from '../../parts/Table.tsx';
@@ -99,7 +99,7 @@ function Notes({ notes }: { readonly notes: readonly { readonly code: string; re
   return (
     <ul class="notes">
       {notes.map((note) => (
-        <li key={`${note.code} ${note.text}`}>{note.text}</li>
+        <li key={`${note.code} ${note.text}`}>{typeset(note.text)}</li>
       ))}
     </ul>
   );

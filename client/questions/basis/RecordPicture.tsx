@@ -5,7 +5,7 @@ import type { RuleId } from '../../../server/staging/result.ts';
 import { api, linesOf } from '../../api.ts';
 import { drawRecord } from '../../chart.ts';
 import { usePage } from '../../context.ts';
-import { type Format, sentence } from '../../format.ts';
+import { type Format, list, sentence } from '../../format.ts';
 import { Picture } from '../../parts/Picture.tsx';
 import { Table } from '../../parts/Table.tsx';
 import { RULE_TEXT, ruleName } from '../../rules.ts';
@@ -20,7 +20,7 @@ interface RecordPictureProps {
 const WINDOW_NAMES: Record<WindowKind, string> = { day: 'Day', week: 'Week', month: 'Month', all: 'All' };
 const TICKS = 8;
 
-/** The record over time with the count that a rule chose; a part of it on a press, its neighbours on the arrow keys. */
+/** The record over time with the pumps that a rule chose; a part of it on a press, its neighbours on the arrow keys. */
 export function RecordPicture({ comparison, whole, duty }: RecordPictureProps) {
   const { format } = usePage();
   const ids = comparison.rules.map((rule) => rule.rule);
@@ -126,8 +126,31 @@ function recordSentence(series: RuleSeries, rule: RuleId, format: Format): strin
   const peak = Math.max(...series.mostFlowM3s);
   const gaps = series.startMs.filter((startMs, i) => i > 0 && startMs - series.endMs[i - 1]! > 500).length;
   const gapText = gaps === 0 ? '' : `; ${gaps === 1 ? 'one gap is' : `${gaps} gaps are`} left open`;
+  if (series.pumps.length > 0) {
+    return sentence(`${ruleName(rule)} runs ${list(sharesOf(series, format))} of the time${gapText}`);
+  }
   const count = most === 0 ? 'no pump' : most === 1 ? 'one pump' : `up to ${most} pumps`;
   return sentence(`${ruleName(rule)} runs ${count} for flows up to ${format.say(format.flow, peak)}${gapText}`);
+}
+
+/** How much of the time shown each pump runs, most first: `Beck 63 %` */
+function sharesOf({ pumps, startMs, endMs }: RuleSeries, format: Format): string[] {
+  const length = startMs.map((from, i) => endMs[i]! - from);
+  const whole = length.reduce((sum, each) => sum + each, 0);
+  return pumps
+    .map(({ name, share }) => ({ name, share: share.reduce((sum, each, i) => sum + each * length[i]!, 0) / whole }))
+    .sort((a, b) => b.share - a.share)
+    .map(({ name, share }) => `${name} ${share === 0 ? 'none' : format.say(format.percent, 100 * share)}`);
+}
+
+/** Who ran in a bucket: `Beck, Jockey for 24 %` */
+function ranText({ pumps }: RuleSeries, i: number, format: Format): string {
+  const ran = pumps.flatMap(({ name, share }) => {
+    const part = share[i]!;
+    if (part <= 0) return [];
+    return [part >= 1 - 1e-9 ? name : `${name} for ${format.say(format.percent, 100 * part)}`];
+  });
+  return ran.length === 0 ? 'none' : ran.join(', ');
 }
 
 function SeriesNumbers({ series }: { readonly series: RuleSeries }) {
@@ -148,8 +171,12 @@ function SeriesNumbers({ series }: { readonly series: RuleSeries }) {
         column('To', '', (i) => format.instant(series.endMs[i]!)),
         column('Flow', format.flow.unit, (i) => format.bare(format.flow, series.flowM3s[i]).full),
         column('Power', 'kW', (i) => format.bare(format.power, series.powerKw[i]).full),
-        column('Pumps, mean', '', (i) => format.bare(format.plain, series.count[i]).full),
-        column('Pumps, most', '', (i) => String(series.mostCount[i])),
+        ...(series.pumps.length > 0
+          ? [{ ...column('Running', '', (i) => ranText(series, i, format)), words: true }]
+          : [
+              column('Pumps, mean', '', (i) => format.bare(format.plain, series.count[i]).full),
+              column('Pumps, most', '', (i) => String(series.mostCount[i])),
+            ]),
         column('Shortfall', format.volume.unit, (i) => format.bare(format.volume, series.shortfallM3[i]).full),
       ]}
     />

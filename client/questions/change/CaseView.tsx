@@ -20,20 +20,20 @@ export function CaseView({ result, placeholder, brief = false }: CaseViewProps) 
   const { format, printing } = usePage();
   return (
     <>
-      <p class={`judgement ${result.advice}`}>{readable(result.sentence)}</p>
+      <p class={`judgement ${result.advice}`}>{readable(result.sentence, format)}</p>
       {placeholder && (
         <p class="aside">
           <span class="mark">placeholder</span> The price is ours, not a quotation: the verdict stands or falls with it.
         </p>
       )}
-      <p>{readable(result.reason)}</p>
+      <p>{readable(result.reason, format)}</p>
       {/* The page of all four questions has two sides; the case printed by itself has room. */}
       {result.wouldChange.length > 0 && !printing && (
         <>
           <h3>What would change it</h3>
           <ul class="notes">
             {result.wouldChange.map((line) => (
-              <li key={line}>{readable(line)}</li>
+              <li key={line}>{readable(line, format)}</li>
             ))}
           </ul>
         </>
@@ -113,7 +113,7 @@ function OptionsTable({ result, brief }: { readonly result: CaseResult; readonly
   );
 }
 
-function linesOf({ years }: CaseResult, format: Format): Line[] {
+function linesOf({ years, options }: CaseResult, format: Format): Line[] {
   const figure = (name: string, of: Measure, value: (option: OptionResult) => number, detail?: true): Line => ({
     name,
     unit: of.unit,
@@ -125,7 +125,10 @@ function linesOf({ years }: CaseResult, format: Format): Line[] {
   const time: Measure = { unit: 'years', factor: 1 };
   const bought = (option: OptionResult) => option.capital - option.incentive > 0;
   return [
-    { name: 'Verdict', cell: (option) => <b>{ADVICE_TEXT[option.advice]}</b> },
+    {
+      name: 'Verdict',
+      cell: (option) => <b>{option === options[0] ? 'as it is' : ADVICE_TEXT[option.advice]}</b>,
+    },
     { name: 'Runs by', cell: (option) => RULE_TEXT[option.rule as RuleId].name.toLowerCase() },
     { name: 'Drives needed', cell: (option) => String(option.needsDrives), detail: true },
     figure('Capital', format.money, (option) => option.capital),

@@ -3,6 +3,7 @@ import type { CaseResult, OptionResult } from '../../../server/makeCase.ts';
 import { type ComparisonResult, RULE_IDS, type RuleId, type RuleResult } from '../../../server/staging/result.ts';
 import type { PumpEntry, StationFile } from '../../../server/station/stationFile.ts';
 import { POWER_UNITS } from '../../../server/units.ts';
+import type { Format } from '../../format.ts';
 import { ruleName } from '../../rules.ts';
 import { equipmentOf } from '../../station.ts';
 
@@ -158,21 +159,29 @@ export const ADVICE_TEXT: Readonly<Record<OptionResult['advice'], string>> = {
   leave: 'leave',
 };
 
-/** A sentence of the server as the page writes it: rules by their names here, figures kept together with their unit. */
-export function readable(text: string): string {
+/** A sentence of the server as the page writes it: rules by their names here, money and figures as everywhere on it. */
+export function readable(text: string, format: Format): string {
   const named = RULE_IDS.reduce((said, id) => said.replaceAll(id, ruleName(id)), text);
-  return named.replace(/(\d) (?=\d{3}\b|[A-Z]{3}\b|%|kWh)/g, '$1\u00a0');
+  const amounts = new RegExp(`(-?\\d[\\d ]*(?:\\.\\d+)?) ${format.money.unit}\\b`, 'g');
+  const priced = named.replace(amounts, (_, amount: string) =>
+    format.say(format.money, Number(amount.replaceAll(' ', ''))),
+  );
+  return priced.replace(/(\d) (?=\d{3}\b|%|kWh)/g, '$1\u00a0');
 }
 
 /** The one line of the answer: the sentence of the case, with a word where its price is not yet one. */
-export function caseAnswer(result: Pick<CaseResult, 'sentence'>, placeholder: boolean): string {
-  const sentence = readable(result.sentence).replace(/\.$/, '');
+export function caseAnswer(
+  result: Pick<CaseResult, 'sentence'>,
+  format: Format,
+  { placeholder }: { readonly placeholder: boolean },
+): string {
+  const sentence = readable(result.sentence, format).replace(/\.$/, '');
   return placeholder ? `${sentence}. The price is a placeholder` : sentence;
 }
 
 /** The first sentence of a case: `Restage first: the same pumps under batch save 4 190 EUR a year for nothing` */
-export function shortVerdict(result: Pick<CaseResult, 'sentence'>): string {
-  return readable(result.sentence)
+export function shortVerdict(result: Pick<CaseResult, 'sentence'>, format: Format): string {
+  return readable(result.sentence, format)
     .split(/\.\s|;/)[0]!
     .replace(/\.$/, '');
 }

@@ -9,6 +9,7 @@ import { Figure } from '../../parts/Figure.tsx';
 import { Picture } from '../../parts/Picture.tsx';
 import { type Column, Table } from '../../parts/Table.tsx';
 import { RULE_TEXT, ruleName } from '../../rules.ts';
+import { setText } from '../../runners.ts';
 import { type Bars, countsOf } from '../../series.ts';
 import { LedgerBars } from './LedgerBars.tsx';
 import { LedgerTable } from './LedgerTable.tsx';
@@ -50,7 +51,7 @@ export function Cost({ open }: QuestionProps) {
         {table}
       </Picture>
       {/* Paper has room for two sides; the shares of the best count are under its picture. */}
-      {!printing && <HoursTable rules={rules} />}
+      {!printing && (open.power.alike ? <HoursTable rules={rules} /> : <SetHoursTable rules={rules} />)}
       {printing ? (
         <LedgerTable rules={rules} />
       ) : (
@@ -144,6 +145,29 @@ function HoursTable({ rules }: { readonly rules: readonly RuleResult[] }) {
           head: count === 0 ? 'None' : pumps(count),
           unit: 'h',
           cell: (rule) => <Figure of={format.hours} value={rule.hoursByCount[count] ?? 0} bare />,
+        }),
+      )}
+    />
+  );
+}
+
+/** For pumps that differ: hours of each set, by rule. */
+function SetHoursTable({ rules }: { readonly rules: readonly RuleResult[] }) {
+  const { format } = usePage();
+  const sets = [...new Set(rules.flatMap((rule) => Object.keys(rule.hoursBySet)))].sort(
+    (a, b) => (a === 'off' ? 0 : a.split('+').length) - (b === 'off' ? 0 : b.split('+').length),
+  );
+  return (
+    <Table
+      caption="Hours with each set running"
+      rows={sets}
+      keyOf={(set) => set}
+      name={{ head: 'Running', cell: (set) => sentence(setText(set)) }}
+      columns={rules.map(
+        (rule): Column<string> => ({
+          head: RULE_TEXT[rule.rule].name,
+          unit: 'h',
+          cell: (set) => <Figure of={format.hours} value={rule.hoursBySet[set] ?? 0} bare />,
         }),
       )}
     />

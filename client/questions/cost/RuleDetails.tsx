@@ -1,8 +1,10 @@
 import type { RuleResult } from '../../../server/staging/result.ts';
 import { usePage } from '../../context.ts';
+import { sentence } from '../../format.ts';
 import { Figure } from '../../parts/Figure.tsx';
 import { type Column, Table } from '../../parts/Table.tsx';
 import { RULE_TEXT } from '../../rules.ts';
+import { setText } from '../../runners.ts';
 
 interface RuleDetailsProps {
   readonly rule: RuleResult;
@@ -87,7 +89,7 @@ export function RuleDetails({ rule, columns }: RuleDetailsProps) {
         caption="Hours of each set of pumps"
         rows={Object.entries(rule.hoursBySet).filter(([, hours]) => hours > 0)}
         keyOf={([set]) => set}
-        name={{ head: 'Running', cell: ([set]) => set || 'none' }}
+        name={{ head: 'Running', cell: ([set]) => sentence(setText(set)) }}
         columns={[{ head: 'Hours', unit: 'h', cell: ([, hours]) => <Figure of={format.hours} value={hours} bare /> }]}
       />
       {rule.periods && (

@@ -2,7 +2,7 @@ import { useEffect, useState } from 'preact/hooks';
 import type { HandedSet } from '../../../server/operatorCard.ts';
 import { api, linesOf } from '../../api.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
-import { ordinal, sentence } from '../../format.ts';
+import { list, ordinal, sentence, typeset } from '../../format.ts';
 import { useRemembered } from '../../hooks.ts';
 import { Table } from '../../parts/Table.tsx';
 import { withoutDust } from '../cost/ledger.ts';
@@ -134,18 +134,21 @@ function CardParts({ card, mains, pressure }: CardPartsProps) {
     <>
       {sets.length > 0 && (
         <p class="aside">
-          The ladder keeps to the station's order, {card.pumps.join(', ')}: one pump is {card.pumps[0]}. The table under
-          it picks the best set of all.
+          The best set of all at each flow; beside it in the table what it saves against the best that the station's own
+          order, {list(card.pumps)}, can do.
         </p>
       )}
       <Ladder card={card} mains={mains} pressure={pressure} />
       <div class="card-tables">
-        {moves && card.steps.length > 0 && (
+        {moves && card.steps.length > 0 && sets.length === 0 && (
           <Table
             caption="How the step moves with static head"
             rows={card.steps}
             keyOf={(step) => String(step.to)}
-            name={{ head: 'Same power', cell: (step) => `${step.from} and ${step.to} pumps` }}
+            name={{
+              head: 'Same power',
+              cell: (step) => (card.alike ? `${step.from} and ${step.to} pumps` : `with and without ${step.pump}`),
+            }}
             columns={[
               {
                 head: `Lowest, ${format.say(format.head, head(moves.low.staticHead))}`,
@@ -170,7 +173,13 @@ function CardParts({ card, mains, pressure }: CardPartsProps) {
             caption="Start and stop levels"
             rows={levels.map((level, i) => ({ ...level, place: i + 1 }))}
             keyOf={(level) => String(level.place)}
-            name={{ head: 'Pump', cell: (level) => sentence(ordinal(level.place)) }}
+            name={{
+              head: 'Pump',
+              cell: (level) =>
+                card.alike
+                  ? sentence(ordinal(level.place))
+                  : (card.pumps[level.place - 1] ?? sentence(ordinal(level.place))),
+            }}
             columns={[
               {
                 head: 'Start',
@@ -190,7 +199,7 @@ function CardParts({ card, mains, pressure }: CardPartsProps) {
       {card.notes.length > 0 && (
         <ul class="notes card-notes">
           {card.notes.map((note) => (
-            <li key={note.code + note.text}>{note.text}</li>
+            <li key={note.code + note.text}>{typeset(note.text)}</li>
           ))}
         </ul>
       )}
@@ -210,10 +219,10 @@ function SetTable({ sets, card }: { readonly sets: readonly HandedSet[]; readonl
       name={{ head: 'From', unit: format.flow.unit, cell: (set) => format.bare(format.flow, flow(set.from)).text }}
       columns={[
         { head: 'To', unit: format.flow.unit, cell: (set) => format.bare(format.flow, flow(set.to)).text },
-        { head: 'Run', cell: (set) => `${set.pumps.join(' and ')}${set.rests ? ', with rests' : ''}` },
-        { head: 'Change', cell: (set) => set.text || 'none' },
+        { head: 'Run', words: true, cell: (set) => `${list(set.pumps) || 'none'}${set.rests ? ', with rests' : ''}` },
+        { head: 'Change', words: true, cell: (set) => set.text || 'none' },
         {
-          head: 'Saves against the usual order',
+          head: 'Saves against the own order',
           unit: 'kW',
           cell: (set) =>
             set.savedKw === null ? 'cannot' : format.bare(format.power, withoutDust(set.savedKw, 1)).text,

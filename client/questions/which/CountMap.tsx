@@ -9,11 +9,18 @@ import { cellOf, mapSentence, namesOf, rowText, runsOf } from './countMap.ts';
 import { countShade } from './Ladder.tsx';
 
 /** The map, asked for when it is opened. */
-export function CountMap({ comparisonId, most }: { readonly comparisonId: number; readonly most: number }) {
+interface CountMapProps {
+  readonly comparisonId: number;
+  readonly most: number;
+  /** Whether a count says who runs. */
+  readonly alike: boolean;
+}
+
+export function CountMap({ comparisonId, most, alike }: CountMapProps) {
   const [open, setOpen] = useState(false);
   return (
     <details class="more" open={open} onToggle={(event) => setOpen(event.currentTarget.open)}>
-      <summary>Map of the best count over flow and static head</summary>
+      <summary>Map of the best {alike ? 'count' : 'set'} over flow and static head</summary>
       {open && <Loaded comparisonId={comparisonId} most={most} />}
     </details>
   );
@@ -43,10 +50,14 @@ const LEFT = 64;
 const BOTTOM = 48;
 const TOP = 10;
 const RIGHT = 12;
+/** Height of the ground of a name, and width of a letter in it. */
+const CHIP = 26;
+const LETTER = 10;
 /** Radius of the dot for the cell with most hours. */
 const LARGEST_DOT = 8;
 
-function MapPicture({ map, most }: { readonly map: BestCountMap; readonly most: number }) {
+function MapPicture({ map, most: pumpsThere }: { readonly map: BestCountMap; readonly most: number }) {
+  const most = map.sets.length > 0 ? map.sets.length : pumpsThere;
   const { format } = usePage();
   const title = mapSentence(map, format);
   const drawn = useMemo(() => {
@@ -64,7 +75,7 @@ function MapPicture({ map, most }: { readonly map: BestCountMap; readonly most: 
         each > 0 ? [{ row, column, hours: each, r: Math.max(0.7, LARGEST_DOT * Math.sqrt(each / mostHours)) }] : [],
       ),
     );
-    return { cell, rows, top, lowest, highest, x, y, runs, names: namesOf(runs), dots };
+    return { cell, rows, top, lowest, highest, x, y, runs, chips: chipsOf(map, namesOf(runs), { x, y }), dots };
   }, [map]);
   const { cell, x, y } = drawn;
   const ticks = {
@@ -76,7 +87,7 @@ function MapPicture({ map, most }: { readonly map: BestCountMap; readonly most: 
       title={title}
       numbers={() => (
         <Table
-          caption="Best count by static head"
+          caption={map.sets.length > 0 ? 'Best set by static head' : 'Best count by static head'}
           tall
           rows={map.staticHeadM.map((head, row) => ({ head, row }))}
           keyOf={({ row }) => String(row)}
@@ -95,20 +106,20 @@ function MapPicture({ map, most }: { readonly map: BestCountMap; readonly most: 
                   map.hours[row]!.reduce((a, b) => a + b, 0),
                 ).text,
             },
-            { head: 'Best count as flow rises', cell: ({ row }) => rowText(map, row, format) },
+            { head: 'Best as flow rises', words: true, cell: ({ row }) => rowText(map, row, format) },
           ]}
         />
       )}
     >
       <svg class="map" viewBox={`0 0 ${WIDTH} ${HEIGHT}`} role="img" aria-label={title}>
-        {drawn.runs.map(({ row, count, fromM3s, toM3s }) => (
+        {drawn.runs.map(({ row, who, fromM3s, toM3s }) => (
           <rect
             key={`${row} ${fromM3s}`}
             x={x(fromM3s)}
             width={x(toM3s) - x(fromM3s) + 0.5}
             y={y(map.staticHeadM[row]! + cell.head / 2)}
             height={y(0) - y(cell.head) + 0.5}
-            style={{ fill: count === 0 ? 'var(--line)' : countShade(count, most) }}
+            style={{ fill: who === 0 ? 'var(--line)' : countShade(who, most) }}
           />
         ))}
         {drawn.dots.map(({ row, column, hours, r }) => (
@@ -122,14 +133,11 @@ function MapPicture({ map, most }: { readonly map: BestCountMap; readonly most: 
             <title>{`${format.say(format.hours, hours)} near ${format.say(format.flow, map.flowM3s[column])}`}</title>
           </circle>
         ))}
-        {drawn.names.map(({ count, row, flowM3s }) => (
-          <g
-            key={count}
-            transform={`translate(${Math.min(x(flowM3s), WIDTH - RIGHT - (count === 0 ? 44 : 13))} ${y(map.staticHeadM[row]!)})`}
-          >
-            <rect class="chip" x={count === 0 ? -44 : -13} y="-13" width={count === 0 ? 88 : 26} height="26" />
-            <text text-anchor="middle" dy="0.35em" class="which">
-              {count === 0 ? 'none can' : count}
+        {drawn.chips.map(({ who, left, top, width, text }) => (
+          <g key={who} transform={`translate(${left} ${top})`}>
+            <rect class="chip" width={width} height={CHIP} />
+            <text x={width / 2} y={CHIP / 2} text-anchor="middle" dy="0.35em" class="which">
+              {text}
             </text>
           </g>
         ))}
@@ -153,7 +161,44 @@ function MapPicture({ map, most }: { readonly map: BestCountMap; readonly most: 
           </text>
         </g>
       </svg>
-      <p class="aside">Numbers are counts of pumps; dots are hours of the record, by their area.</p>
+      <p class="aside">
+        {map.sets.length > 0
+          ? 'Names are the pumps that run; dots are hours of the record, by their area.'
+          : 'Numbers are counts of pumps; dots are hours of the record, by their area.'}
+      </p>
     </Exhibit>
   );
+}
+
+interface Chip {
+  readonly who: number;
+  readonly left: number;
+  readonly top: number;
+  readonly width: number;
+  readonly text: string;
+}
+
+/** The names on their grounds, moved up or down until they clear one another; one that finds no room is left to the table. */
+function chipsOf(
+  map: BestCountMap,
+  names: ReturnType<typeof namesOf>,
+  { x, y }: { x: (flow: number) => number; y: (head: number) => number },
+): Chip[] {
+  const taken: Chip[] = [];
+  for (const { who, row, flowM3s } of names) {
+    const text = who === 0 ? 'none can' : map.sets.length > 0 ? map.sets[who - 1]!.join(' + ') : String(who);
+    const width = Math.max(CHIP, text.length * LETTER + 12);
+    const left = Math.min(Math.max(x(flowM3s) - width / 2, LEFT + 2), WIDTH - RIGHT - width);
+    const at = y(map.staticHeadM[row]!) - CHIP / 2;
+    const clear = (top: number) =>
+      top >= TOP &&
+      top + CHIP <= HEIGHT - BOTTOM &&
+      taken.every(
+        (other) =>
+          left > other.left + other.width + 2 || left + width + 2 < other.left || Math.abs(top - other.top) > CHIP + 2,
+      );
+    const top = [0, 1, -1, 2, -2, 3, -3, 4, -4].map((k) => at + k * (CHIP + 4)).find(clear);
+    if (top !== undefined) taken.push({ who, left, top, width, text });
+  }
+  return taken;
 }

@@ -1,5 +1,7 @@
+import type { HandedSpeed, HandedStep } from '../../../server/operatorCard.ts';
 import { usePage } from '../../context.ts';
-import { ordinal } from '../../format.ts';
+import { list, ordinal } from '../../format.ts';
+import { setText } from '../../runners.ts';
 import {
   type ComparisonCard,
   type Ladder as LadderShape,
@@ -16,6 +18,9 @@ interface LadderProps {
   readonly pressure: Pressure;
 }
 
+/** A set with less of the ladder's height than this has no room for its name. */
+const LEAST_NAMED = 0.045;
+
 const percent = (share: number) => `${100 * share}%`;
 
 /** One hue, and more pumps are darker; the style sheet mixes it, so that it follows light, dark and paper. */
@@ -29,79 +34,151 @@ export function Ladder({ card, mains, pressure }: LadderProps) {
   const { format } = usePage();
   const ladder = ladderOf(card);
   if (ladder === null) return <p>No pump can lift the static head, so there is no step to make.</p>;
-  const { flow, head } = siOf(card);
+  const { flow } = siOf(card);
   const sayFlow = (value: number) => format.say(format.flow, flow(value));
-  const measure = pressureMeasure(pressure, format);
-  const header = (at: { headerHead: number; headerKpa: number }) =>
-    format.say(measure, pressure === 'head' ? head(at.headerHead) : at.headerKpa);
-  const turns = { mains, ratedSpeedRpm: card.ratedSpeedRpm };
-  const most = card.capacities.length;
+  const { rungs, zones } = ladder;
+  const most = card.sets.length > 0 ? zones.length : card.capacities.length;
+  const many = rungs.length > 5 ? 'many' : '';
   return (
     <div
-      class={card.steps.length > 5 ? 'ladder many' : 'ladder'}
-      style={{ '--steps': String(Math.max(1, card.steps.length)) }}
+      class={`ladder ${many} ${card.sets.length > 0 ? 'of-sets' : ''}`}
+      style={{ '--steps': String(Math.max(1, rungs.length)) }}
     >
       <div class="rail-of-flow" aria-hidden="true">
         <span class="end top">{sayFlow(ladder.top)}</span>
         <span class="end foot">0</span>
-        {ladder.counts.map(({ count, from, to }) => (
+        {zones.map(({ id, from, to }) => (
           <div
-            key={count}
+            key={id}
             class="count"
-            style={{ bottom: percent(from), height: percent(to - from), background: countShade(count, most) }}
+            style={{ bottom: percent(from), height: percent(to - from), background: countShade(id, most) }}
           />
         ))}
-        {ladder.rungs.map(({ to, dropOff, bringOn }) => (
-          <div key={to} class="band" style={{ bottom: percent(dropOff), height: percent(bringOn - dropOff) }} />
+        {rungs.map(({ id, dropOff, bringOn }) => (
+          <div key={id} class="band" style={{ bottom: percent(dropOff), height: percent(bringOn - dropOff) }} />
         ))}
-        {ladder.counts.map(({ count, middle }) => (
-          <b key={count} style={{ bottom: percent(middle) }}>
-            {count}
-          </b>
-        ))}
+        {zones
+          .filter(({ from, to }) => card.sets.length === 0 || to - from > LEAST_NAMED)
+          .map(({ id, name, middle }) => (
+            <b key={id} style={{ bottom: percent(middle) }}>
+              {name}
+            </b>
+          ))}
       </div>
       <Leaders ladder={ladder} />
-      <ol class="rungs">
-        {[...card.steps].reverse().map((step) => (
-          <li key={step.to}>
-            <p class="on">
-              <span aria-hidden="true">▲</span> {ordinal(step.to)} pump on at <b>{sayFlow(step.bringOn)}</b>
-            </p>
-            <p class="turns">
-              {card.basis === 'direct-on-line' ? (
-                'full speed, direct on line'
-              ) : (
-                <>
-                  {speedText(step.atBringOn.speedBefore, turns, format)} →{' '}
-                  {speedText(step.atBringOn.speedAfter, turns, format)}
-                </>
-              )}
-              ; <span class="figure">header {header(step.atBringOn)}</span>
-            </p>
-            <p class="off">
-              <span aria-hidden="true">▼</span> {ordinal(step.to)} pump off at <b>{sayFlow(step.dropOff)}</b>
-            </p>
-            <p class="turns">
-              {card.basis !== 'direct-on-line' && (
-                <>
-                  {speedText(step.atDropOff.speedAfter, turns, format)} →{' '}
-                  {speedText(step.atDropOff.speedBefore, turns, format)};{' '}
-                </>
-              )}
-              <span class="figure">header {header(step.atDropOff)}</span>
-            </p>
-            <p class="why">{step.text}</p>
+      {card.sets.length > 0 ? (
+        <SetRungs card={card} mains={mains} pressure={pressure} />
+      ) : (
+        <CountRungs card={card} mains={mains} pressure={pressure} top={sayFlow(ladder.top)} />
+      )}
+    </div>
+  );
+}
+
+/** Head or pressure of the header as the reader wants it. */
+function useHeader({ card, pressure }: Pick<LadderProps, 'card' | 'pressure'>) {
+  const { format } = usePage();
+  const { head } = siOf(card);
+  const measure = pressureMeasure(pressure, format);
+  return (at: { readonly headerHead: number; readonly headerKpa: number }) =>
+    format.say(measure, pressure === 'head' ? head(at.headerHead) : at.headerKpa);
+}
+
+/** Equal pumps, or pumps in the station's order: one more comes on, or goes off. */
+function CountRungs({ card, mains, pressure, top }: LadderProps & { readonly top: string }) {
+  const { format } = usePage();
+  const { flow } = siOf(card);
+  const header = useHeader({ card, pressure });
+  const sayFlow = (value: number) => format.say(format.flow, flow(value));
+  const turns = { mains, ratedSpeedRpm: card.ratedSpeedRpm };
+  const who = ({ to, pump }: HandedStep) => (card.alike ? `${ordinal(to)} pump` : pump);
+  return (
+    <ol class="rungs">
+      {[...card.steps].reverse().map((step) => (
+        <li key={step.to}>
+          <p class="on">
+            <span aria-hidden="true">▲</span> {who(step)} on at <b>{sayFlow(step.bringOn)}</b>
+          </p>
+          <p class="turns">
+            {card.basis === 'direct-on-line' ? (
+              'full speed, direct on line'
+            ) : (
+              <>
+                {speedText(step.atBringOn.speedBefore, turns, format)} →{' '}
+                {speedText(step.atBringOn.speedAfter, turns, format)}
+              </>
+            )}
+            ; <span class="figure">header {header(step.atBringOn)}</span>
+          </p>
+          <p class="off">
+            <span aria-hidden="true">▼</span> {who(step)} off at <b>{sayFlow(step.dropOff)}</b>
+          </p>
+          <p class="turns">
+            {card.basis !== 'direct-on-line' && (
+              <>
+                {speedText(step.atDropOff.speedAfter, turns, format)} →{' '}
+                {speedText(step.atDropOff.speedBefore, turns, format)};{' '}
+              </>
+            )}
+            <span class="figure">header {header(step.atDropOff)}</span>
+          </p>
+          <p class="why">{step.text}</p>
+        </li>
+      ))}
+      {card.steps.length === 0 && (
+        <li>
+          <p class="on">
+            {card.alike ? 'One pump' : card.pumps[0]}, up to <b>{top}</b>
+          </p>
+        </li>
+      )}
+    </ol>
+  );
+}
+
+/** Pumps that differ: which to add and to drop, and which then run. */
+function SetRungs({ card, mains, pressure }: LadderProps) {
+  const { format } = usePage();
+  const { flow } = siOf(card);
+  const header = useHeader({ card, pressure });
+  const sayFlow = (value: number) => format.say(format.flow, flow(value));
+  const speeds = (set: readonly HandedSpeed[]) =>
+    list(
+      set.map(({ pump, speed, rpm, onDrive }) =>
+        onDrive
+          ? `${pump} at ${speedText(speed, { mains, ratedSpeedRpm: rpm === null ? null : rpm / speed }, format)}`
+          : `${pump} at full speed`,
+      ),
+    );
+  return (
+    <ol class="rungs">
+      {card.sets
+        .map((set, i) => ({ ...set, below: card.sets[i - 1] }))
+        .reverse()
+        .map(({ from, pumps, text, rests, change, below }) => (
+          <li key={from}>
+            {change && below ? (
+              <>
+                <p class="on">
+                  <span aria-hidden="true">▲</span> {text} at <b>{sayFlow(change.bringOn)}</b>
+                </p>
+                <p class="turns">
+                  then {speeds(change.after)}
+                  {rests && ', with rests'}; <span class="figure">header {header(change)}</span>
+                </p>
+                <p class="off">
+                  <span aria-hidden="true">▼</span> back to {setText(below.pumps.join('+'))} at{' '}
+                  <b>{sayFlow(change.dropOff)}</b>
+                </p>
+              </>
+            ) : (
+              <p class="on">
+                {pumps.length === 0 ? 'No set of pumps can run' : `${list(pumps)} from 0${rests ? ', with rests' : ''}`}
+              </p>
+            )}
           </li>
         ))}
-        {card.steps.length === 0 && (
-          <li>
-            <p class="on">
-              One pump, up to <b>{sayFlow(ladder.top)}</b>
-            </p>
-          </li>
-        )}
-      </ol>
-    </div>
+    </ol>
   );
 }
 
@@ -109,9 +186,9 @@ export function Ladder({ card, mains, pressure }: LadderProps) {
 function Leaders({ ladder }: { readonly ladder: LadderShape }) {
   return (
     <svg class="leaders" viewBox="0 0 10 100" preserveAspectRatio="none" aria-hidden="true">
-      {ladder.rungs.map(({ to, bringOn, dropOff, told }) => (
+      {ladder.rungs.map(({ id, bringOn, dropOff, told }) => (
         <path
-          key={to}
+          key={id}
           d={`M0 ${100 - 50 * (bringOn + dropOff)} L10 ${100 - 100 * told}`}
           fill="none"
           stroke="currentColor"

@@ -2,22 +2,28 @@ import { useEffect, useState } from 'preact/hooks';
 import { FLOW_UNITS, HEAD_UNITS } from '../../../server/units.ts';
 import { api, type LaidReading, linesOf, type SpotReading, type StationBody } from '../../api.ts';
 import { usePage } from '../../context.ts';
-import type { Format, Measure } from '../../format.ts';
+import { type Format, list, type Measure } from '../../format.ts';
 import { NumberField } from '../../parts/Field.tsx';
 import { type Column, Table } from '../../parts/Table.tsx';
+import { dutyNames } from '../../station.ts';
 
 interface SpotReadingsProps {
   readonly saved: StationBody;
   readonly without: readonly string[];
+  /** Whether a count says who ran. */
+  readonly alike: boolean;
 }
 
-const FIRST: SpotReading = { flow: null, head: null, powerKw: null, pumpsOn: 1 };
+const UNREAD = { flow: null, head: null, powerKw: null };
 const SETTLE_MS = 300;
 
 /** A handful of gauge readings beside the curves: a first look at whether the curves are those of the pumps. */
-export function SpotReadings({ saved, without }: SpotReadingsProps) {
+export function SpotReadings({ saved, without, alike }: SpotReadingsProps) {
   const { format } = usePage();
-  const [rows, setRows] = useState<readonly SpotReading[]>([FIRST]);
+  const names = dutyNames(saved).filter((name) => !without.includes(name));
+  const [rows, setRows] = useState<readonly SpotReading[]>(() => [
+    { ...UNREAD, ...(alike ? { pumpsOn: 1 } : { pumps: names.slice(0, 1) }) },
+  ]);
   const [laid, setLaid] = useState<readonly LaidReading[]>([]);
   const [faults, setFaults] = useState<readonly string[]>([]);
   const flow = FLOW_UNITS[saved.units.flow];
@@ -61,12 +67,16 @@ export function SpotReadings({ saved, without }: SpotReadingsProps) {
         {rows.map((row, i) => (
           <fieldset key={i} class="reading">
             <legend>Reading {i + 1}</legend>
-            <NumberField
-              label="Pumps on"
-              step={1}
-              value={row.pumpsOn}
-              onChange={(pumpsOn) => change(i, { pumpsOn: pumpsOn ?? 1 })}
-            />
+            {row.pumps ? (
+              <PumpsOn names={names} on={row.pumps} onChange={(pumps) => change(i, { pumps })} />
+            ) : (
+              <NumberField
+                label="Pumps on"
+                step={1}
+                value={row.pumpsOn ?? 1}
+                onChange={(pumpsOn) => change(i, { pumpsOn: pumpsOn ?? 1 })}
+              />
+            )}
             {field(i, 'flow', format.flow, flow)}
             {field(i, 'head', format.head, head)}
             <NumberField label="Power" unit="kW" value={row.powerKw} onChange={(powerKw) => change(i, { powerKw })} />
@@ -97,7 +107,7 @@ export function SpotReadings({ saved, without }: SpotReadingsProps) {
             caption="Readings beside the curves"
             rows={laid.map((reading, i) => ({ ...reading, i }))}
             keyOf={({ i }) => String(i)}
-            name={{ head: 'Reading', cell: ({ i }) => String(i + 1) }}
+            name={{ head: 'Reading', cell: ({ i, pumps }) => (alike ? String(i + 1) : `${i + 1}, ${list(pumps)}`) }}
             columns={columnsOf(format, { flow, head })}
           />
           <p class="aside">
@@ -107,6 +117,32 @@ export function SpotReadings({ saved, without }: SpotReadingsProps) {
         </>
       )}
     </details>
+  );
+}
+
+interface PumpsOnProps {
+  readonly names: readonly string[];
+  readonly on: readonly string[];
+  readonly onChange: (on: readonly string[]) => void;
+}
+
+/** Which of the pumps ran; the last one stays. */
+function PumpsOn({ names, on, onChange }: PumpsOnProps) {
+  return (
+    <fieldset class="out">
+      <legend class="label">Pumps on</legend>
+      {names.map((name) => (
+        <label key={name}>
+          <input
+            type="checkbox"
+            checked={on.includes(name)}
+            disabled={on.length === 1 && on[0] === name}
+            onChange={() => onChange(names.filter((each) => (each === name) !== on.includes(each)))}
+          />{' '}
+          {name}
+        </label>
+      ))}
+    </fieldset>
   );
 }
 

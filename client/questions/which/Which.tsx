@@ -4,20 +4,20 @@ import { HEAD_UNITS } from '../../../server/units.ts';
 import { stepsText } from '../../answers.ts';
 import { drawCurves, drawHours } from '../../chart.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
-import { pumps } from '../../format.ts';
 import { Cautions } from '../../parts/Cautions.tsx';
 import { Figure } from '../../parts/Figure.tsx';
 import { Picture } from '../../parts/Picture.tsx';
 import { Table } from '../../parts/Table.tsx';
 import { Touch } from '../../parts/Touch.tsx';
-import { curvesOf, hoursByFlow, leastCounts } from '../../series.ts';
+import { runnersOf } from '../../runners.ts';
+import { crossingsOf, curvesOf, hoursByFlow, leastRunners } from '../../series.ts';
 import { dutyNames } from '../../station.ts';
 import { Card } from './Card.tsx';
 import { CountMap } from './CountMap.tsx';
 import { hoursSentence } from './hoursSentence.ts';
 import { SpotReadings } from './SpotReadings.tsx';
 
-/** Which pump, when: power over flow for each count, and under it the hours that the record spends at each flow. */
+/** Which pump, when: power over flow for each count or set of pumps, and under it the hours that the record spends at each flow. */
 export function Which({ open, record, saved, draft, touch, without, onWithout }: QuestionProps) {
   const { format, printing } = usePage();
   const { power, comparison } = open;
@@ -45,7 +45,7 @@ export function Which({ open, record, saved, draft, touch, without, onWithout }:
         numbers={() => <PowerNumbers power={power} />}
       />
       <Picture
-        title={hoursSentence(comparison, format)}
+        title={hoursSentence(comparison, format, power)}
         height="low"
         draw={useCallback((canvas, look) => drawHours(canvas, hours, curves, look), [hours, curves])}
         numbers={() => <HoursNumbers power={power} />}
@@ -53,8 +53,8 @@ export function Which({ open, record, saved, draft, touch, without, onWithout }:
       <p class="aside">{howDrawn(power, draft.surplus)}</p>
       {/* The card has a sheet of its own. */}
       {!printing && <Card open={open} record={record} />}
-      {!printing && <CountMap comparisonId={comparison.id} most={power.counts.length} />}
-      {!printing && <SpotReadings saved={saved} without={without} />}
+      {!printing && <CountMap comparisonId={comparison.id} most={power.counts.length} alike={power.alike} />}
+      {!printing && <SpotReadings saved={saved} without={without} alike={power.alike} />}
       <Cautions ids={['minimumFlow', 'minimumSpeed', 'surge', 'solids']} />
     </>
   );
@@ -90,26 +90,32 @@ function TakenOut({ names, without, onWithout }: TakenOutProps) {
 }
 
 /** How power is reckoned in the picture, in words. */
-function howDrawn({ onDrives }: PowerOverFlow, surplus: 'storage' | 'throttle'): string {
-  if (onDrives) return 'All running pumps turn at one speed, trimmed to the flow. Standby power is included.';
-  if (surplus === 'throttle') return 'Pumps at full speed; a valve takes up the rest. Standby power is included.';
-  return 'Pumps at full speed, sharing time with one pump fewer. Standby power is included.';
+function howDrawn({ onDrives, alike, sets }: PowerOverFlow, surplus: 'storage' | 'throttle'): string {
+  const standby = 'Standby power is included.';
+  if (sets.length > 0)
+    return `Sets that are the best somewhere, each at the speeds and the split of flow that draw least; pumps without a drive run at full speed. ${standby}`;
+  const order = alike ? '' : "Pumps come on in the station's own order. ";
+  if (onDrives) return `${order}All running pumps turn at one speed, trimmed to the flow. ${standby}`;
+  if (surplus === 'throttle') return `${order}Pumps at full speed; a valve takes up the rest. ${standby}`;
+  return `${order}Pumps at full speed, sharing time with one pump fewer. ${standby}`;
 }
 
 function PowerNumbers({ power }: { readonly power: PowerOverFlow }) {
   const { format } = usePage();
-  const least = useMemo(() => leastCounts(power), [power]);
+  const least = useMemo(() => leastRunners(power), [power]);
+  const runners = useMemo(() => runnersOf(power), [power]);
+  const nameOf = (id: number) => runners.find((each) => each.id === id)?.name ?? 'none';
   return (
     <>
       <Table
-        caption="Where counts cross"
-        rows={power.crossings}
+        caption="Where one gives way to another"
+        rows={crossingsOf(power)}
         keyOf={(row) => `${row.from}-${row.flowM3s}`}
-        name={{ head: 'Step', cell: (row) => `${pumps(row.from)} to ${row.to}` }}
+        name={{ head: 'Below', cell: (row) => nameOf(row.from) }}
         columns={[
           { head: 'Flow', unit: format.flow.unit, cell: (row) => format.bare(format.flow, row.flowM3s).full },
           { head: 'Mean power', unit: 'kW', cell: (row) => format.bare(format.power, row.powerKw).full },
-          { head: 'Cheaper above', cell: (row) => pumps(row.rising ? row.to : row.from) },
+          { head: 'Cheaper above', words: true, cell: (row) => nameOf(row.to) },
         ]}
       />
       <Table
@@ -123,13 +129,13 @@ function PowerNumbers({ power }: { readonly power: PowerOverFlow }) {
           cell: (row) => format.bare(format.flow, row.flow).full,
         }}
         columns={[
-          ...power.counts.map(({ count, powerKw }) => ({
-            head: pumps(count),
+          ...runners.map(({ name, powerKw }) => ({
+            head: name,
             unit: 'kW',
             cell: ({ i }: { i: number }) =>
               powerKw[i] == null ? 'cannot' : format.bare(format.power, powerKw[i]).full,
           })),
-          { head: 'Draws least', cell: ({ i }) => (least[i] === null ? 'none' : pumps(least[i]!)) },
+          { head: 'Draws least', words: true, cell: ({ i }) => (least[i] === null ? 'none' : nameOf(least[i]!)) },
         ]}
       />
     </>

@@ -1,8 +1,8 @@
 import type { ComparisonBody } from '../../../server/api.ts';
-import type { HandedCard, LateStagingCost } from '../../../server/operatorCard.ts';
+import type { HandedCard, HandedSet, LateStagingCost } from '../../../server/operatorCard.ts';
 import type { StationFile } from '../../../server/station/stationFile.ts';
 import { FLOW_UNITS, HEAD_UNITS, PSI, usualMainsHz } from '../../../server/units.ts';
-import { type Format, type Measure, ordinal } from '../../format.ts';
+import { type Format, list, type Measure, ordinal } from '../../format.ts';
 
 /** The card that goes with a comparison, as the server hands it. */
 export type ComparisonCard = HandedCard & { readonly lateStaging: LateStagingCost | null };
@@ -30,7 +30,7 @@ export function mainsOf(choice: MainsChoice, station: Pick<StationFile, 'units' 
 /** A speed in the three ways an operator may read it; rpm is left out where the rated speed is not known. */
 export function speedText(
   share: number,
-  { mains, ratedSpeedRpm }: { mains: number; ratedSpeedRpm: number | null },
+  { mains, ratedSpeedRpm }: { readonly mains: number; readonly ratedSpeedRpm: number | null },
   format: Format,
 ): string {
   const parts = [format.say(format.percent, 100 * share), format.say({ unit: 'Hz', factor: mains }, share)];
@@ -50,17 +50,19 @@ export function siOf({ units }: Pick<HandedCard, 'units'>): {
 export interface Ladder {
   /** In the unit of the card. */
   readonly top: number;
-  /** Where each count runs; neighbours overlap in the band in which either may run. */
-  readonly counts: readonly {
-    readonly count: number;
+  /** Where each count, or set of pumps that differ, runs; neighbours overlap in the band in which either may run. */
+  readonly zones: readonly {
+    /** The count; of sets, the place in their row, from 1. */
+    readonly id: number;
+    readonly name: string;
     readonly from: number;
     readonly to: number;
-    /** Middle of where no other count may run, for its number. */
+    /** Middle of where no other may run, for its name. */
     readonly middle: number;
   }[];
   readonly rungs: readonly {
-    readonly from: number;
-    readonly to: number;
+    /** The zone that it leads to. */
+    readonly id: number;
     readonly dropOff: number;
     readonly bringOn: number;
     /** Middle of the place beside the ladder where the rung is told. */
@@ -69,37 +71,81 @@ export interface Ladder {
 }
 
 /** Null where no pump can lift the static head. */
-export function ladderOf({ steps, capacities }: Pick<HandedCard, 'steps' | 'capacities'>): Ladder | null {
+export function ladderOf({
+  steps,
+  capacities,
+  sets,
+}: Pick<HandedCard, 'steps' | 'capacities' | 'sets'>): Ladder | null {
   const top = Math.max(0, ...capacities, ...steps.map((step) => step.bringOn));
   if (!(top > 0)) return null;
+  if (sets.length > 0) {
+    const names = sets.map((set) => (set.pumps.length > 0 ? set.pumps.join(' + ') : 'none can'));
+    const changes = sets.flatMap(({ change }) => (change ? [change] : []));
+    return laddered(top, names, 1, changes);
+  }
   const first = steps[0]?.from ?? Math.max(1, capacities.findIndex((capacity) => capacity > 0) + 1);
-  const counts = [first, ...steps.map((step) => step.to)].map((count, i) => {
+  return laddered(
+    top,
+    [first, ...steps.map((step) => step.to)].map((count) => String(count)),
+    first,
+    steps,
+  );
+}
+
+function laddered(
+  top: number,
+  names: readonly string[],
+  first: number,
+  steps: readonly { readonly bringOn: number; readonly dropOff: number }[],
+): Ladder {
+  const zones = names.map((name, i) => {
     const [below, above] = [steps[i - 1], steps[i]];
     return {
-      count,
+      id: first + i,
+      name,
       from: (below?.dropOff ?? 0) / top,
       to: (above?.bringOn ?? top) / top,
       middle: ((below?.bringOn ?? 0) + (above?.dropOff ?? top)) / 2 / top,
     };
   });
-  const rungs = steps.map(({ from, to, dropOff, bringOn }, i) => ({
-    from,
-    to,
+  const rungs = steps.map(({ dropOff, bringOn }, i) => ({
+    id: first + i + 1,
     dropOff: dropOff / top,
     bringOn: bringOn / top,
     told: (i + 0.5) / steps.length,
   }));
-  return { top, counts, rungs };
+  return { top, zones, rungs };
 }
 
 /** `Bring on the second pump at 53.6 L/s, drop it at 51.8 L/s` */
 export function ladderSentence(card: HandedCard, format: Format): string {
   const { flow } = siOf(card);
+  const say = (value: number) => format.say(format.flow, flow(value));
+  if (card.sets.length > 0) return setsSentence(card.sets, say);
   const [step, ...more] = card.steps;
   if (step === undefined) return card.capacities.some((each) => each > 0) ? 'One pump does it all' : 'No pump can run';
-  const say = (value: number) => format.say(format.flow, flow(value));
+  if (!card.alike) {
+    const joins = card.steps.map((each) => `${each.pump} at ${say(each.bringOn)}`);
+    return `${card.pumps[0]} runs first; bring on ${list(joins)}`;
+  }
   const rest = more.map((each) => `the ${ordinal(each.to)} at ${say(each.bringOn)}`);
   return `Bring on the ${ordinal(step.to)} pump at ${say(step.bringOn)}${rest.length > 0 ? `, ${rest.join(', ')}` : ''}`;
+}
+
+/** Changes of sets beyond these are counted. */
+const NAMED_CHANGES = 2;
+
+/** `Jockey runs first; add Beck, drop Jockey at 110 L/s, add Jockey at 253 L/s, and 5 more changes above` */
+function setsSentence(sets: readonly HandedSet[], say: (value: number) => string): string {
+  const [first, ...others] = sets;
+  const changes = others.map(({ text, change }) => `${text} at ${say(change!.bringOn)}`);
+  const named = changes.length <= NAMED_CHANGES + 1 ? changes : changes.slice(0, NAMED_CHANGES);
+  const more = changes.length - named.length;
+  const begin = first!.pumps.length > 0 ? `${list(first!.pumps)} first` : 'None can run at first';
+  return [
+    `${begin}${named.length > 0 ? ';' : ''} ${named.join('; ')}`.trim(),
+    ...(more > 0 ? [`${more} more changes above`] : []),
+  ].join('; ');
 }
 
 /** What waiting until the running pumps are flat out would cost over the record; null where it was not compared. */
