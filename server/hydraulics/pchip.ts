@@ -5,15 +5,29 @@
  * libraries call the two together PCHIP.
  */
 export class Pchip {
-  readonly x: readonly number[];
-  readonly y: readonly number[];
-  readonly slope: readonly number[];
+  readonly x: Float64Array;
+  readonly y: Float64Array;
+  readonly slope: Float64Array;
+  /** Of each segment y = y0 + t·(d0 + t·(c2 + t·c3)), t from its left end. */
+  private readonly c2: Float64Array;
+  private readonly c3: Float64Array;
 
   /** @param x  strictly rising, two values or more; @param y  of the same length */
   constructor(x: readonly number[], y: readonly number[]) {
-    this.x = x;
-    this.y = y;
-    this.slope = slopes(x, y);
+    this.x = Float64Array.from(x);
+    this.y = Float64Array.from(y);
+    this.slope = Float64Array.from(slopes(x, y));
+    const segments = x.length - 1;
+    this.c2 = new Float64Array(segments);
+    this.c3 = new Float64Array(segments);
+    for (let i = 0; i < segments; i++) {
+      const h = this.x[i + 1]! - this.x[i]!;
+      const d0 = this.slope[i]!;
+      const d1 = this.slope[i + 1]!;
+      const delta = (this.y[i + 1]! - this.y[i]!) / h;
+      this.c2[i] = (3 * delta - 2 * d0 - d1) / h;
+      this.c3[i] = (d0 + d1 - 2 * delta) / (h * h);
+    }
   }
 
   /** Index of the segment that holds v; the first and last segments also hold what lies outside. */
@@ -33,16 +47,8 @@ export class Pchip {
   }
 
   inSegment(i: number, v: number): number {
-    const x0 = this.x[i]!;
-    const h = this.x[i + 1]! - x0;
-    const y0 = this.y[i]!;
-    const d0 = this.slope[i]!;
-    const d1 = this.slope[i + 1]!;
-    const delta = (this.y[i + 1]! - y0) / h;
-    const t = v - x0;
-    const c2 = (3 * delta - 2 * d0 - d1) / h;
-    const c3 = (d0 + d1 - 2 * delta) / (h * h);
-    return y0 + t * (d0 + t * (c2 + t * c3));
+    const t = v - this.x[i]!;
+    return this.y[i]! + t * (this.slope[i]! + t * (this.c2[i]! + t * this.c3[i]!));
   }
 
   /** dy/dx at v. */
@@ -51,15 +57,8 @@ export class Pchip {
   }
 
   slopeInSegment(i: number, v: number): number {
-    const x0 = this.x[i]!;
-    const h = this.x[i + 1]! - x0;
-    const d0 = this.slope[i]!;
-    const d1 = this.slope[i + 1]!;
-    const delta = (this.y[i + 1]! - this.y[i]!) / h;
-    const t = v - x0;
-    const c2 = (3 * delta - 2 * d0 - d1) / h;
-    const c3 = (d0 + d1 - 2 * delta) / (h * h);
-    return d0 + t * (2 * c2 + t * 3 * c3);
+    const t = v - this.x[i]!;
+    return this.slope[i]! + t * (2 * this.c2[i]! + 3 * t * this.c3[i]!);
   }
 }
 

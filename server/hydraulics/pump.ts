@@ -176,21 +176,10 @@ export class Pump {
    * @param onDrive  whether its drives are in circuit; direct on line it runs at rated speed and has no drive loss
    */
   electric(q: number, speed: number, onDrive: boolean): number {
+    if (this.single) return electricOf(this.single, q, speed, onDrive);
     let sum = 0;
-    for (const m of this.machines) {
-      const driven = onDrive && m.drive !== null;
-      const s = driven ? speed : 1;
-      const shaft = this.shaftOf(m, q, s);
-      const rated = m.motor.ratedPower ?? shaft;
-      const input = shaft + lossAt(m.motor.efficiency, shaft, shaft, rated);
-      sum += m.inSeries * (driven ? input + lossAt(m.drive!.efficiency, input, shaft, rated) : input);
-    }
+    for (const m of this.machines) sum += m.inSeries * electricOf(m, q, speed, onDrive);
     return sum;
-  }
-
-  private shaftOf(m: Machine, q: number, s: number): number {
-    const shaft = s * s * s * m.curve.shaft(q / s);
-    return m.curve.speedCorrection ? shaft / speedCorrection(m.curve.bestEfficiency, s) : shaft;
   }
 
   /** The same power, told apart into what the water gets and what pump, motor and drive lose; adds to `into`. */
@@ -202,7 +191,7 @@ export class Pump {
       const x = q / s;
       const head = s * s * m.curve.head(x);
       const water = this.density * GRAVITY * q * head;
-      const shaft = this.shaftOf(m, q, s);
+      const shaft = shaftOf(m, q, s);
       const correction = m.curve.speedCorrection ? speedCorrection(m.curve.bestEfficiency, s) : 1;
       const eta = m.curve.efficiency(x) * correction;
       const rated = m.motor.ratedPower ?? shaft;
@@ -216,25 +205,24 @@ export class Pump {
 
   /** Largest shaft power as a share of rating × service factor; 0 where no rating is known. */
   overload(q: number, speed: number, onDrive: boolean): number {
+    if (this.single) return overloadOf(this.single, q, speed, onDrive);
     let worst = 0;
-    for (const m of this.machines) {
-      if (m.motor.ratedPower === null) continue;
-      const s = onDrive && m.drive ? speed : 1;
-      worst = Math.max(worst, this.shaftOf(m, q, s) / (m.motor.ratedPower * m.motor.serviceFactor));
-    }
+    for (const m of this.machines) worst = Math.max(worst, overloadOf(m, q, speed, onDrive));
     return worst;
   }
 
   /** Least and greatest q/(s·q_b) among its machines: how far from their best-efficiency flow they run. */
   leastShareOfBest(q: number, speed: number, onDrive: boolean): number {
+    if (this.single) return shareOfBest(this.single, q, speed, onDrive);
     let least = Infinity;
-    for (const m of this.machines) least = Math.min(least, q / ((onDrive && m.drive ? speed : 1) * m.curve.bestFlow));
+    for (const m of this.machines) least = Math.min(least, shareOfBest(m, q, speed, onDrive));
     return least;
   }
 
   greatestShareOfBest(q: number, speed: number, onDrive: boolean): number {
+    if (this.single) return shareOfBest(this.single, q, speed, onDrive);
     let most = 0;
-    for (const m of this.machines) most = Math.max(most, q / ((onDrive && m.drive ? speed : 1) * m.curve.bestFlow));
+    for (const m of this.machines) most = Math.max(most, shareOfBest(m, q, speed, onDrive));
     return most;
   }
 
@@ -252,4 +240,33 @@ export class Pump {
   atEnd(q: number, speed: number, onDrive: boolean): boolean {
     return q >= this.endFlow(onDrive ? speed : 1) * (1 - 1e-12);
   }
+}
+
+/** Electric power of one machine [W]. */
+function electricOf(m: Machine, q: number, speed: number, onDrive: boolean): number {
+  const driven = onDrive && m.drive !== null;
+  const shaft = shaftOf(m, q, driven ? speed : 1);
+  const motor = m.motor.efficiency;
+  const drive = driven ? m.drive!.efficiency : 1;
+  if (typeof motor === 'number' && typeof drive === 'number') return shaft / (motor * drive);
+  const rated = m.motor.ratedPower ?? shaft;
+  const input = shaft + lossAt(motor, shaft, shaft, rated);
+  return input + lossAt(drive, input, shaft, rated);
+}
+
+/** Shaft power of one machine [W]. */
+function shaftOf({ curve }: Machine, q: number, s: number): number {
+  const shaft = s * s * s * curve.shaft(q / s);
+  return curve.speedCorrection ? shaft / speedCorrection(curve.bestEfficiency, s) : shaft;
+}
+
+/** Shaft power as a share of rating × service factor; 0 where no rating is known. */
+function overloadOf(m: Machine, q: number, speed: number, onDrive: boolean): number {
+  const { ratedPower, serviceFactor } = m.motor;
+  return ratedPower === null ? 0 : shaftOf(m, q, onDrive && m.drive ? speed : 1) / (ratedPower * serviceFactor);
+}
+
+/** q/(s·q_b). */
+function shareOfBest(m: Machine, q: number, speed: number, onDrive: boolean): number {
+  return q / ((onDrive && m.drive ? speed : 1) * m.curve.bestFlow);
 }

@@ -177,15 +177,19 @@ export class TableCurve implements PumpCurve {
     }
     let low = xs[first]!;
     let high = Math.min(xs[first + 1]!, end);
-    let x = (low + high) / 2;
+    const above = ys[first]! - wanted * low * low;
+    const below = this.heads.inSegment(first, high) - wanted * high * high;
+    let x = below < 0 ? low + (high - low) * (above / (above - below)) : high;
     for (let i = 0; i < 60; i++) {
       const excess = this.heads.inSegment(first, x) - wanted * x * x;
       if (excess > 0) low = x;
       else high = x;
       let next = x - excess / (this.heads.slopeInSegment(first, x) - 2 * wanted * x);
-      if (!(next > low && next < high)) next = (low + high) / 2;
-      if (Math.abs(next - x) <= 1e-15 * x) break;
+      if (!(next >= low && next <= high)) next = (low + high) / 2;
+      const step = Math.abs(next - x);
       x = next;
+      // Newton squares its error: after a step this small nothing is left to gain.
+      if (step <= 1e-9 * x) break;
     }
     return q / x;
   }

@@ -22,7 +22,12 @@ export class EqualPumps implements StagedPumps {
   private lowStates: (State | undefined)[] = [];
   private insideStates: (State | null | undefined)[] = [];
   private fullStates: (State | undefined)[] = [];
+  private leastOfOne: (State | undefined)[] = [];
+  private ratedOfOne: (State | undefined)[] = [];
   private readonly trims: Trim[] = [];
+  /** The system's head at the flow last asked for, which is asked for once a count. */
+  private askedFlow = Number.NaN;
+  private askedHead = Number.NaN;
 
   constructor(station: Station, pumps: readonly Pump[]) {
     this.station = station;
@@ -47,6 +52,17 @@ export class EqualPumps implements StagedPumps {
     this.lowStates = [];
     this.insideStates = [];
     this.fullStates = [];
+    this.leastOfOne = [];
+    this.ratedOfOne = [];
+    this.askedFlow = Number.NaN;
+  }
+
+  private systemHeadAt(flow: number): number {
+    if (flow !== this.askedFlow) {
+      this.askedFlow = flow;
+      this.askedHead = systemHead(this.station.friction, this.staticHead, flow);
+    }
+    return this.askedHead;
   }
 
   private state(count: number, flow: number, speed: number, onDrive: boolean): State {
@@ -135,12 +151,10 @@ export class EqualPumps implements StagedPumps {
    */
   trim(count: number, flow: number): Trim {
     const trim = this.trims[count]!;
-    const { pump, station } = this;
+    const { pump } = this;
     const q = flow / count;
-    const required = systemHead(station.friction, this.staticHead, flow) + pump.branchLoss * q * q;
-    const needed = pump.speedFor(q, required);
+    const needed = pump.speedFor(q, this.systemHeadAt(flow) + pump.branchLoss * q * q);
     trim.rest = null;
-    trim.inside = true;
     if (needed > pump.maxSpeed * (1 + 1e-12)) {
       trim.feasible = false;
       return trim;
@@ -148,8 +162,8 @@ export class EqualPumps implements StagedPumps {
     trim.feasible = true;
     const speed = Math.min(Math.max(needed, pump.minSpeed), pump.maxSpeed);
     trim.speed = speed;
-    const { allowable } = station;
-    if (station.surplus === 'storage') {
+    const { allowable } = this.station;
+    if (this.station.surplus === 'storage') {
       let rest: State | null = null;
       if (allowable && pump.leastShareOfBest(q, speed, true) < allowable.from) {
         const inside = this.lowestInside(count);
@@ -160,20 +174,26 @@ export class EqualPumps implements StagedPumps {
         trim.rest = rest;
         trim.speed = rest.speed;
         trim.power = (flow / rest.flow) * rest.power;
-        trim.overloaded = rest.doubts.overloaded;
-        if (allowable) trim.inside = !rest.doubts.outsideAllowable;
         return trim;
       }
     }
     trim.power = count * pump.electric(q, speed, true);
-    trim.overloaded = pump.overload(q, speed, true) > 1 + SLACK;
-    if (allowable) {
-      trim.inside = isInside(
-        allowable,
-        pump.leastShareOfBest(q, speed, true),
-        pump.greatestShareOfBest(q, speed, true),
-      );
+    return trim;
+  }
+
+  judged(trim: Trim, flow: number): Trim {
+    const { pump } = this;
+    const { allowable } = this.station;
+    if (trim.rest) {
+      trim.overloaded = trim.rest.doubts.overloaded;
+      trim.inside = !trim.rest.doubts.outsideAllowable;
+      return trim;
     }
+    const q = flow / trim.count;
+    trim.overloaded = pump.overload(q, trim.speed, true) > 1 + SLACK;
+    trim.inside =
+      allowable === null ||
+      isInside(allowable, pump.leastShareOfBest(q, trim.speed, true), pump.greatestShareOfBest(q, trim.speed, true));
     return trim;
   }
 
@@ -190,17 +210,21 @@ export class EqualPumps implements StagedPumps {
 
   /** n pumps at equal speed that give exactly Q on the system curve; null where their speed limits do not allow it. */
   trimmedState(count: number, flow: number): State | null {
-    const { pump, station } = this;
+    const { pump } = this;
     const q = flow / count;
-    const head = systemHead(station.friction, this.staticHead, flow) + pump.branchLoss * q * q;
-    const needed = pump.speedFor(q, head);
+    const needed = pump.speedFor(q, this.systemHeadAt(flow) + pump.branchLoss * q * q);
     if (needed > pump.maxSpeed * (1 + 1e-9) || needed < pump.minSpeed * (1 - 1e-9)) return null;
     return this.state(count, q, Math.min(Math.max(needed, pump.minSpeed), pump.maxSpeed), true);
   }
 
   /** n − 1 pumps direct on line and one on its drive at a speed, at their operating point. */
   oneAt(count: number, at: 'least' | 'rated'): State {
-    const speed = at === 'least' ? this.pump.minSpeed : 1;
+    const known = at === 'least' ? this.leastOfOne : this.ratedOfOne;
+    known[count] ??= this.findOneAt(count, at === 'least' ? this.pump.minSpeed : 1);
+    return known[count]!;
+  }
+
+  private findOneAt(count: number, speed: number): State {
     if (count === 1) return this.atSpeed(1, speed);
     const { pump, station, staticHead } = this;
     const sent = (header: number) => (count - 1) * pump.flowInto(header, 1) + pump.flowInto(header, speed);
@@ -213,10 +237,10 @@ export class EqualPumps implements StagedPumps {
 
   /** n − 1 direct on line and one at its least speed that give exactly Q against a valve. */
   oneThrottled(count: number, flow: number): State {
-    const { pump, station } = this;
+    const { pump } = this;
     const low = pump.minSpeed;
     if (count === 1) return this.state(1, flow, low, true);
-    const least = systemHead(station.friction, this.staticHead, flow);
+    const least = this.systemHeadAt(flow);
     const header = root(
       (h) => (count - 1) * pump.flowInto(h, 1) + pump.flowInto(h, low) - flow,
       least,
@@ -229,8 +253,8 @@ export class EqualPumps implements StagedPumps {
 
   /** n − 1 direct on line and one trimmed to the rest of Q; its speed may be outside its limits: the rule looks. */
   oneTrimmed(count: number, flow: number): OneTrimmed {
-    const { pump, station } = this;
-    const header = systemHead(station.friction, this.staticHead, flow);
+    const { pump } = this;
+    const header = this.systemHeadAt(flow);
     const fixedFlow = count === 1 ? 0 : pump.flowInto(header, 1);
     const q = flow - (count - 1) * fixedFlow;
     const speed = pump.speedFor(q, header + pump.branchLoss * q * q);
@@ -249,7 +273,9 @@ export class EqualPumps implements StagedPumps {
   }
 }
 
+const FIRST = Array.from({ length: 33 }, (_, count) => 2 ** count - 1);
+
 /** The first n pumps, as bits. */
 export function setOf(count: number): number {
-  return 2 ** count - 1;
+  return FIRST[count]!;
 }

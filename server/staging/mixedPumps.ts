@@ -163,8 +163,13 @@ export class MixedPumps implements StagedPumps {
     trim.state = state;
     trim.power = trim.rest ? (flow / state.flow) * state.power : state.power;
     trim.speed = state.speed;
-    trim.overloaded = state.doubts.overloaded;
-    trim.inside = !state.doubts.outsideAllowable;
+    return trim;
+  }
+
+  judged(trim: Trim): Trim {
+    const { doubts } = this.trims[trim.count]!.state!;
+    trim.overloaded = doubts.overloaded;
+    trim.inside = !doubts.outsideAllowable;
     return trim;
   }
 

@@ -1,4 +1,4 @@
-import type { PowerSeries } from '../tariff/tariff.ts';
+import type { PowerSeries, SharedIntervals } from '../tariff/tariff.ts';
 import { energyKwh } from '../units.ts';
 import type { DemandRecord } from './demandRecord.ts';
 import type { LedgerKwh } from './result.ts';
@@ -52,17 +52,9 @@ export function runRule(rule: Rule, pumps: StagedPumps, record: DemandRecord, on
   const { station } = pumps;
   const standby = station.standbyPower;
   const n = record.flow.length;
-  const series = {
-    startMs: record.startMs,
-    seconds: record.seconds,
-    mean: new Float64Array(n),
-    low: new Float64Array(n),
-    high: new Float64Array(n),
-    lowFlow: new Float64Array(n),
-    highFlow: new Float64Array(n),
-    flow: new Float64Array(n),
-    activeVolume: station.storage.activeVolume,
-  };
+  const mean = new Float64Array(n);
+  const delivered = new Float64Array(n);
+  const shared = new SharedColumns();
   const lowCount = new Uint8Array(n);
   const highCount = new Uint8Array(n);
   const share = new Float32Array(n);
@@ -84,24 +76,73 @@ export function runRule(rule: Rule, pumps: StagedPumps, record: DemandRecord, on
     tally.add(action, flow, seconds, Math.abs(start - end) < 500);
     end = start + seconds * 1000;
     const rising = action.share;
-    series.low[i] = low.power + standby;
-    series.high[i] = high.power + standby;
-    series.mean[i] = low.power + rising * (high.power - low.power) + standby;
-    series.lowFlow[i] = low.flow;
-    series.highFlow[i] = high.flow;
-    series.flow[i] = action.low === action.high ? low.flow : flow;
+    mean[i] = low.power + rising * (high.power - low.power) + standby;
+    delivered[i] = low === high ? low.flow : flow;
     lowCount[i] = low.count;
     highCount[i] = high.count;
     share[i] = rising;
     speed[i] = high.speed;
+    if (low !== high) shared.push(i, low, high, standby);
     onAction?.(i, action);
   }
+  const series = {
+    startMs: record.startMs,
+    seconds: record.seconds,
+    mean,
+    flow: delivered,
+    shared: shared.columns(),
+    activeVolume: station.storage.activeVolume,
+  };
   return { rule, series, lowCount, highCount, share, speed, totals: tally.totals() };
 }
 
 function suctionLevelAt({ suctionLevel }: DemandRecord, i: number): number {
   if (suctionLevel === null) return Number.NaN;
   return typeof suctionLevel === 'number' ? suctionLevel : suctionLevel[i]!;
+}
+
+/** The two states of the intervals that are shared: of some rules nearly all, of others a few. */
+class SharedColumns {
+  private length = 0;
+  private interval = new Uint32Array(64);
+  private low = new Float64Array(64);
+  private high = new Float64Array(64);
+  private lowFlow = new Float64Array(64);
+  private highFlow = new Float64Array(64);
+
+  push(interval: number, low: State, high: State, standby: number): void {
+    if (this.length === this.interval.length) this.grow();
+    const k = this.length++;
+    this.interval[k] = interval;
+    this.low[k] = low.power + standby;
+    this.high[k] = high.power + standby;
+    this.lowFlow[k] = low.flow;
+    this.highFlow[k] = high.flow;
+  }
+
+  private grow(): void {
+    const longer = <Column extends Uint32Array | Float64Array>(to: Column, from: Column): Column => {
+      to.set(from);
+      return to;
+    };
+    const size = 2 * this.length;
+    this.interval = longer(new Uint32Array(size), this.interval);
+    this.low = longer(new Float64Array(size), this.low);
+    this.high = longer(new Float64Array(size), this.high);
+    this.lowFlow = longer(new Float64Array(size), this.lowFlow);
+    this.highFlow = longer(new Float64Array(size), this.highFlow);
+  }
+
+  columns(): SharedIntervals {
+    const { length } = this;
+    return {
+      interval: this.interval.slice(0, length),
+      low: this.low.slice(0, length),
+      high: this.high.slice(0, length),
+      lowFlow: this.lowFlow.slice(0, length),
+      highFlow: this.highFlow.slice(0, length),
+    };
+  }
 }
 
 /** Sums over a record; every sum is of its own quantity, none is found as a remainder. */
@@ -136,6 +177,9 @@ class Tally {
   private before = -1;
   private readonly byCount: number[];
   private readonly bySet = new Map<number, number>();
+  /** The set that ran last and its seconds, until another runs: sets change seldom, maps are slow. */
+  private lastSet = 0;
+  private lastSetSeconds = 0;
 
   constructor(pumps: StagedPumps, suctionKnown: boolean) {
     this.pumps = pumps;
@@ -164,7 +208,8 @@ class Tally {
   private addState(state: State, seconds: number): void {
     const { station } = this.pumps;
     this.byCount[state.count]! += seconds;
-    this.bySet.set(state.set, (this.bySet.get(state.set) ?? 0) + seconds);
+    if (state.set !== this.lastSet) this.closeSet(state.set);
+    this.lastSetSeconds += seconds;
     const power = state.power + this.standby;
     if (power > this.peakState) this.peakState = power;
     if (state.count === 0) return;
@@ -183,6 +228,13 @@ class Tally {
     if (station.allowable) {
       if (doubts.outsideAllowable) this.outsideAllowable += seconds;
     } else if (doubts.nearDeadHead) this.nearDeadHead += seconds;
+  }
+
+  private closeSet(next: number): void {
+    const seconds = this.lastSetSeconds;
+    if (seconds > 0) this.bySet.set(this.lastSet, (this.bySet.get(this.lastSet) ?? 0) + seconds);
+    this.lastSet = next;
+    this.lastSetSeconds = 0;
   }
 
   /**
@@ -206,6 +258,7 @@ class Tally {
   totals(): Totals {
     const kwh = (joules: number) => energyKwh(joules, 1);
     const { station } = this.pumps;
+    this.closeSet(0);
     return {
       energyKwh: kwh(this.energy),
       ledgerKwh: {

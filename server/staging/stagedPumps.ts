@@ -12,8 +12,9 @@ export interface Trim {
   /** Mean electric power of the interval [W]. */
   power: number;
   speed: number;
+  /** Whether a motor is overloaded: known once it was judged. */
   overloaded: boolean;
-  /** Whether the state, or the upper of the two shared, is inside the allowable range. */
+  /** Whether the state, or the upper of the two shared, is inside the allowable range: known once it was judged. */
   inside: boolean;
   /** The state shared with off where the pumps cannot be turned down to the flow; null where nothing is shared. */
   rest: State | null;
@@ -50,6 +51,8 @@ export interface StagedPumps {
   trim(count: number, flow: number): Trim;
   /** What the last call of `trim` found for a count. */
   known(count: number): Trim;
+  /** The same trim with what speaks against it. */
+  judged(trim: Trim, flow: number): Trim;
   /** The action that a feasible trim stands for. */
   action(trim: Trim, flow: number): Action;
   /** n pumps flat out on their drives, and at their least speed, at their operating point. */

@@ -105,22 +105,24 @@ function energyByMonthAndRate(plan: BillPlan, mean: Float64Array): Float64Array 
 
 /** Power by interval as a demand meter would find it at its highest [W]; the mean where it is not shared. */
 function demandPower(plan: BillPlan, series: PowerSeries, notes: Note[]): Float64Array {
-  const { mean, low, high, lowFlow, highFlow, flow, activeVolume } = series;
+  const { mean, flow, activeVolume } = series;
+  const { interval, low, high, lowFlow, highFlow } = series.shared;
   let shared = 0;
   let power = mean;
-  for (let i = 0; i < mean.length; i++) {
+  for (let k = 0; k < interval.length; k++) {
+    const i = interval[k]!;
     const q = flow[i]!;
-    if (!(q > lowFlow[i]! && q < highFlow[i]!) || low[i] === high[i]) continue;
+    if (!(q > lowFlow[k]! && q < highFlow[k]!) || low[k] === high[k]) continue;
     if (shared++ === 0 && activeVolume !== null) power = mean.slice();
     if (activeVolume === null) continue;
-    const share = peakShare({ flow: q, low: lowFlow[i]!, high: highFlow[i]! }, activeVolume, plan.tariff.demandWindow);
-    power[i] = low[i]! + (high[i]! - low[i]!) * share;
+    const share = peakShare({ flow: q, low: lowFlow[k]!, high: highFlow[k]! }, activeVolume, plan.tariff.demandWindow);
+    power[i] = low[k]! + (high[k]! - low[k]!) * share;
   }
   if (shared > 0 && activeVolume === null) {
     notes.push({
       code: 'demand-mean',
       text:
-        `In ${shared} intervals pumps switch between two states; the demand charge takes their mean power. ` +
+        `Pumps switch between two states in some intervals (${shared}); the demand charge takes their mean power. ` +
         'The peak is higher; the active volume of the storage would tell by how much.',
     });
   }

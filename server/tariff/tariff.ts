@@ -56,15 +56,22 @@ export interface PowerSeries {
   readonly seconds: Float64Array;
   /** Mean electric power [W], standby included. */
   readonly mean: Float64Array;
-  /** Power of the lower and of the higher of the two states that share the interval [W]; equal when not shared. */
-  readonly low: Float64Array;
-  readonly high: Float64Array;
-  /** Flow of those two states and of the interval [m³/s]; with them a cycle is V/(Q − Qa) + V/(Qb − Q). */
-  readonly lowFlow: Float64Array;
-  readonly highFlow: Float64Array;
+  /** Mean flow delivered [m³/s]. */
   readonly flow: Float64Array;
+  readonly shared: SharedIntervals;
   /** Volume between start and stop [m³], or null where unknown. */
   readonly activeVolume: number | null;
+}
+
+/** The intervals that two states share by time, rising, and the two: a cycle of them is V/(Q − Qa) + V/(Qb − Q). */
+export interface SharedIntervals {
+  readonly interval: Uint32Array;
+  /** Power of the lower and of the higher state [W], standby included. */
+  readonly low: Float64Array;
+  readonly high: Float64Array;
+  /** Their flows [m³/s]. */
+  readonly lowFlow: Float64Array;
+  readonly highFlow: Float64Array;
 }
 
 export interface MonthBill {

@@ -1,6 +1,6 @@
 import { billOf } from '../../server/tariff/bill.ts';
 import { planBill } from '../../server/tariff/plan.ts';
-import type { Bill, PowerSeries, Tariff } from '../../server/tariff/tariff.ts';
+import type { Bill, PowerSeries, SharedIntervals, Tariff } from '../../server/tariff/tariff.ts';
 import { readTariff, type TariffFile } from '../../server/tariff/tariffFile.ts';
 
 /** A tariff file with one rate, in a zone of the test's choice; any field may be replaced. */
@@ -27,20 +27,25 @@ export interface EvenRecord {
   readonly kw: readonly number[];
 }
 
+/** No interval shared between two states. */
+export const NOT_SHARED: SharedIntervals = {
+  interval: Uint32Array.of(),
+  low: Float64Array.of(),
+  high: Float64Array.of(),
+  lowFlow: Float64Array.of(),
+  highFlow: Float64Array.of(),
+};
+
 /** Power that is not shared between two states, so that its mean is all there is to know. */
 export function powerOf({ from, stepMinutes, kw }: EvenRecord): PowerSeries {
   const start = Date.parse(from);
   const mean = Float64Array.from(kw, (value) => value * 1000);
-  const nothing = new Float64Array(kw.length);
   return {
     startMs: Float64Array.from(kw, (_, i) => start + i * stepMinutes * 60_000),
     seconds: new Float64Array(kw.length).fill(stepMinutes * 60),
     mean,
-    low: mean,
-    high: mean,
-    lowFlow: nothing,
-    highFlow: nothing,
-    flow: nothing,
+    flow: new Float64Array(kw.length),
+    shared: NOT_SHARED,
     activeVolume: null,
   };
 }

@@ -251,11 +251,14 @@ describe('pumps that switch inside an interval', () => {
     startMs: Float64Array.of(Date.parse('2025-01-07T00:00:00Z')),
     seconds: Float64Array.of(3600),
     mean: Float64Array.of(9000),
-    low: Float64Array.of(1000),
-    high: Float64Array.of(21_000),
-    lowFlow: Float64Array.of(0),
-    highFlow: Float64Array.of(0.05),
     flow: Float64Array.of(0.02),
+    shared: {
+      interval: Uint32Array.of(0),
+      low: Float64Array.of(1000),
+      high: Float64Array.of(21_000),
+      lowFlow: Float64Array.of(0),
+      highFlow: Float64Array.of(0.05),
+    },
     activeVolume,
   });
   const measured = (demandWindowMinutes: 15 | 30 | 60, activeVolume: number | null) =>
@@ -296,11 +299,8 @@ describe('pumps that switch inside an interval', () => {
       startMs: twice(one.startMs, one.startMs[0]! + 1_800_000),
       seconds: Float64Array.of(1800, 1800),
       mean: twice(one.mean, 5000),
-      low: twice(one.low, 5000),
-      high: twice(one.high, 5000),
-      lowFlow: twice(one.lowFlow, 0.02),
-      highFlow: twice(one.highFlow, 0.02),
       flow: twice(one.flow, 0.02),
+      shared: one.shared,
       activeVolume: 18,
     };
     const tariff = aTariff({ demand: [{ name: 'all', rate: 1 }], demandWindowMinutes: 60 });

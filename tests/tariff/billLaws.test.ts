@@ -4,7 +4,7 @@ import { billOf, energyCosts } from '../../server/tariff/bill.ts';
 import { planBill } from '../../server/tariff/plan.ts';
 import type { PowerSeries, Tariff, Weekday } from '../../server/tariff/tariff.ts';
 import { readTariff, type TariffFile } from '../../server/tariff/tariffFile.ts';
-import { aTariffFile } from '../support/tariffs.ts';
+import { aTariffFile, NOT_SHARED } from '../support/tariffs.ts';
 
 /** Laws that hold for every tariff and record, and a slow bill that walks the clock minute by minute. */
 
@@ -76,16 +76,12 @@ const bills = fc
 
 function seriesOf(rows: readonly { startMs: number; kw: number }[], seconds: number): PowerSeries {
   const mean = Float64Array.from(rows, (row) => row.kw * 1000);
-  const nothing = new Float64Array(rows.length);
   return {
     startMs: Float64Array.from(rows, (row) => row.startMs),
     seconds: new Float64Array(rows.length).fill(seconds),
     mean,
-    low: mean,
-    high: mean,
-    lowFlow: nothing,
-    highFlow: nothing,
-    flow: nothing,
+    flow: new Float64Array(rows.length),
+    shared: NOT_SHARED,
     activeVolume: null,
   };
 }

@@ -66,7 +66,6 @@ class CountWays implements Ways {
       may[n] = 1;
       base[n] = trim.rest ? 0 : setOf(n);
       cost[n] = trim.power * seconds + cyclePenalty(pumps, trim.rest, flow, seconds);
-      return false;
     });
     if (any) return;
     const n = pumps.most;

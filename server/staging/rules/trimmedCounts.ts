@@ -5,11 +5,11 @@ import type { StagedPumps, Trim } from '../stagedPumps.ts';
 import { type Action, held } from '../state.ts';
 
 /**
- * Which counts a rule may choose from (model.md §4 and §5): those that meet the flow; of these, those that overload no
- * motor where there are any; of these, those inside the allowable range where there are any. Calls `consider` for each,
- * from few pumps to many, until it returns true.
+ * Counts a rule may choose from (model.md §4 and §5): those that meet the flow; of these, those that overload no motor
+ * where there are any; of these, those inside the allowable range where there are any. Calls `consider` for each, from
+ * few pumps to many.
  */
-export function eachCandidate(pumps: StagedPumps, flow: number, consider: (trim: Trim) => boolean): void {
+export function eachCandidate(pumps: StagedPumps, flow: number, consider: (trim: Trim) => void): void {
   const { most } = pumps;
   let sound = false;
   let soundInside = false;
@@ -17,6 +17,7 @@ export function eachCandidate(pumps: StagedPumps, flow: number, consider: (trim:
   for (let n = 1; n <= most; n++) {
     const trim = pumps.trim(n, flow);
     if (!trim.feasible) continue;
+    pumps.judged(trim, flow);
     if (!trim.overloaded) sound = true;
     if (trim.inside) inside = true;
     if (!trim.overloaded && trim.inside) soundInside = true;
@@ -25,8 +26,20 @@ export function eachCandidate(pumps: StagedPumps, flow: number, consider: (trim:
   for (let n = 1; n <= most; n++) {
     const trim = pumps.known(n);
     if (!trim.feasible || (sound && trim.overloaded) || (wantInside && !trim.inside)) continue;
-    if (consider(trim)) return;
+    consider(trim);
   }
+}
+
+/** The first in line of the candidates: where nothing speaks against the first of all counts, it is the one. */
+function chosen(pumps: StagedPumps, flow: number, first: Trim | null, beats: (a: Trim, b: Trim) => boolean): Action {
+  if (first === null) return flatOut(pumps, flow);
+  const { overloaded, inside } = pumps.judged(first, flow);
+  if (!overloaded && inside) return pumps.action(first, flow);
+  let best: Trim | null = null;
+  eachCandidate(pumps, flow, (trim) => {
+    if (best === null || beats(trim, best)) best = trim;
+  });
+  return pumps.action(best!, flow);
 }
 
 /** What happens where no count meets the flow: all pumps flat out, the rest being shortfall. */
@@ -42,15 +55,18 @@ export const lateStaging: Rule = {
   start(pumps): Decide {
     return (flow) => {
       if (flow === 0) return held(pumps.off);
-      let chosen: Trim | null = null;
-      eachCandidate(pumps, flow, (trim) => {
-        chosen = trim;
-        return true;
-      });
-      return chosen === null ? flatOut(pumps, flow) : pumps.action(chosen, flow);
+      let fewest: Trim | null = null;
+      for (let n = 1; n <= pumps.most && fewest === null; n++) {
+        const trim = pumps.trim(n, flow);
+        if (trim.feasible) fewest = trim;
+      }
+      return chosen(pumps, flow, fewest, () => false);
     };
   },
 };
+
+/** Whether a takes less than b; the margin keeps a rounding from deciding a tie. */
+const takesLess = (a: Trim, b: Trim): boolean => a.power < b.power * (1 - 1e-12);
 
 /**
  * Trimmed to the flow, the set of least mean power for this interval. Equal pumps run at equal speed and the set is a
@@ -66,17 +82,12 @@ export const bestCount: Rule = {
     }
     return (flow) => {
       if (flow === 0) return held(pumps.off);
-      let chosen: Trim | null = null;
-      let least = Infinity;
-      eachCandidate(pumps, flow, (trim) => {
-        // The margin keeps a rounding from deciding a tie.
-        if (trim.power < least * (1 - 1e-12)) {
-          least = trim.power;
-          chosen = trim;
-        }
-        return false;
-      });
-      return chosen === null ? flatOut(pumps, flow) : pumps.action(chosen, flow);
+      let least: Trim | null = null;
+      for (let n = 1; n <= pumps.most; n++) {
+        const trim = pumps.trim(n, flow);
+        if (trim.feasible && (least === null || takesLess(trim, least))) least = trim;
+      }
+      return chosen(pumps, flow, least, takesLess);
     };
   },
 };
