@@ -171,6 +171,18 @@ export const comparisonBody = z.strictObject({
   firmCapacityM3s: number,
   floor: z.strictObject({ energyKwh: number }).optional(),
   rules: z.array(ruleResult),
+  pumpTests: z
+    .array(
+      z.strictObject({
+        pumps: z.array(text).nullable(),
+        pumpsOn: whole,
+        runs: whole,
+        hours: number,
+        pumpedM3s: number,
+        curveM3s: orNull,
+      }),
+    )
+    .optional(),
   notes,
 });
 

@@ -13,7 +13,8 @@ import { firmCapacity } from './firmCapacity.ts';
 import { floorPower } from './floorOverRecord.ts';
 import { flowOfLog } from './flowOfLog.ts';
 import { hoursText } from './hoursText.ts';
-import { type ComparisonResult, RULE_IDS, type RuleId, type RuleResult } from './result.ts';
+import { pumpTestNotes, pumpTests } from './pumpTests.ts';
+import { type ComparisonResult, type PumpTestResult, RULE_IDS, type RuleId, type RuleResult } from './result.ts';
 import type { Rule } from './rule.ts';
 import { RULES } from './rules/all.ts';
 import { type OnAction, type Run, runRule } from './run.ts';
@@ -46,6 +47,8 @@ export interface Comparison {
   readonly bills: readonly (Bill | null)[];
   readonly firmCapacity: number;
   readonly floor: FloorFigures;
+  /** null where the record has a flow of its own. */
+  readonly pumpTests: readonly PumpTestResult[] | null;
   readonly notes: readonly Note[];
 }
 
@@ -84,6 +87,13 @@ export function compareRules(request: ComparisonRequest): Comparison {
   }
   const flowLog = flowOfLog(station, log);
   const record = demandRecord(station, flowLog.log);
+  const tests =
+    log.flow === null
+      ? pumpTests(station, record, {
+          drawdowns: flowLog.drawdowns,
+          atRatedSpeed: log.pumps.every(({ speed }) => speed === null),
+        })
+      : null;
   const plan = tariff ? planBill(tariff, record.startMs, record.seconds, 'tariff') : null;
   const { rules, notes } = rulesToRun(station, duty, request.rules);
   const pumps = stagedPumps(station, duty);
@@ -106,10 +116,12 @@ export function compareRules(request: ComparisonRequest): Comparison {
     bills,
     floor: floorFigures(station, duty, record, runs),
     firmCapacity: firmCapacity(station, duty),
+    pumpTests: tests,
     notes: [
       ...station.notes,
       ...flowLog.notes,
       ...record.notes,
+      ...pumpTestNotes(station, tests ?? []),
       ...notes,
       ...recordNotes(record),
       ...runNotes(runs, bills),
@@ -283,6 +295,7 @@ export function resultOf(comparison: Comparison, sha256: InputHashes): Compariso
     firmCapacityM3s: comparison.firmCapacity,
     floor: { energyKwh: comparison.floor.energyKwh },
     rules: runs.map((run, i) => ruleResult(run, bills[i] ?? null, duty, comparison.floor.atDeliveredKwh[i]!)),
+    ...(comparison.pumpTests && { pumpTests: comparison.pumpTests }),
     notes: comparison.notes,
   };
 }

@@ -70,6 +70,18 @@ export interface RuleResult {
   readonly periods?: readonly { readonly name: string; readonly energyKwh: number; readonly energyCost: number }[];
 }
 
+/** What one set of pumps delivered in the runs of a log of levels: a drawdown test of each run, together. */
+export interface PumpTestResult {
+  /** null where the log only counts pumps. */
+  readonly pumps: readonly string[] | null;
+  readonly pumpsOn: number;
+  readonly runs: number;
+  readonly hours: number;
+  readonly pumpedM3s: number;
+  /** Where their curves and the system meet at rated speed; null where the log has speeds. */
+  readonly curveM3s: number | null;
+}
+
 /** `nth-pump/result/1`: rules side by side on one record. */
 export interface ComparisonResult {
   readonly format: 'nth-pump/result/1';
@@ -90,5 +102,7 @@ export interface ComparisonResult {
   readonly firmCapacityM3s: number;
   readonly floor?: { readonly energyKwh: number };
   readonly rules: readonly RuleResult[];
+  /** Only for a record of levels without flow. */
+  readonly pumpTests?: readonly PumpTestResult[];
   readonly notes: readonly Note[];
 }

@@ -113,6 +113,37 @@ describe('records', () => {
     expect(made.body).toMatchObject({ name: 'record', report: { hours: 8760, stepSeconds: 3600 } });
   });
 
+  it('of levels and run states are reported with the inflow they come to, and compared', async () => {
+    // 40 m² fill at 10 L/s for ten minutes and are drawn down at 60 L/s for five, five times over and a minute more.
+    const rows: string[] = [];
+    for (let i = 0, level = 1; i < 77; i++) {
+      const on = i % 15 >= 10 ? 1 : 0;
+      rows.push(`${new Date(Date.UTC(2025, 0, 6, 0, i)).toISOString()},${level},${on},0`);
+      level += ((0.01 - 0.06 * on) * 60) / 40;
+    }
+    const csv = ['time,level,P-1_on,P-2_on', ...rows].join('\n');
+    const send = (path: string) => api.http.post(path).set('Content-Type', 'text/csv').send(csv).expect(201);
+    const unsaid = (await send(at)).body;
+    expect(unsaid.report).toMatchObject({ volumeM3: null, notes: [{ code: 'levels-without-volume' }] });
+    const ids = { stationId: Number(/\d+/.exec(at)![0]), recordId: unsaid.id };
+    const refused = await api.http.post('/api/comparisons').send(ids).expect(422);
+    expect(refused.body.faults).toEqual([expect.objectContaining({ code: 'missing_field', at: 'storage.area' })]);
+
+    const file = aStationFile({ storage: { activeVolume: 10, area: 40 } });
+    const stationId = (await api.http.post('/api/stations').send(file)).body.id;
+    const { id: recordId, report } = (await send(`/api/stations/${stationId}/records`)).body;
+    expect(report.volumeM3).toBeCloseTo(76 * 60 * 0.01, 9);
+    expect(report.minFlowM3s).toBeCloseTo(0.01, 9);
+    expect(report.maxFlowM3s).toBeCloseTo(0.01, 9);
+    expect(report.notes).toEqual([expect.objectContaining({ code: 'inflow-from-levels' })]);
+    const { body } = await api.http.post('/api/comparisons').send({ stationId, recordId }).expect(201);
+    expect(body.record.volumeM3).toBeCloseTo(76 * 60 * 0.01, 9);
+    expect(body.pumpTests).toEqual([expect.objectContaining({ pumps: ['P-1'], runs: 5 })]);
+    expect(body.pumpTests[0].pumpedM3s).toBeCloseTo(0.06, 9);
+    const codes = body.notes.map(({ code }: { code: string }) => code);
+    expect(codes).toEqual(expect.arrayContaining(['inflow-from-levels', 'pump-test']));
+  });
+
   it('obey what the person says of the file', async () => {
     const csv = 'when;Q1;Q2\n01.02.2025 00:00;1,5;9\n01.02.2025 01:00;2,5;9\n01.02.2025 02:00;3,5;9\n';
     const options = {
