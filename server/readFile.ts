@@ -80,7 +80,9 @@ function wantedBy(issue: z.core.$ZodIssue): string {
       return issue.values.length === 1 ? shown(issue.values[0]) : `one of ${issue.values.map(shown).join(', ')}`;
     case 'too_small':
       return issue.origin === 'array'
-        ? `${issue.minimum} entries or more`
+        ? issue.minimum === 1
+          ? 'an entry or more'
+          : `${issue.minimum} entries or more`
         : issue.origin === 'string'
           ? 'some text'
           : issue.inclusive

@@ -87,7 +87,7 @@ export function inflowFromLevels({ log, volume, side }: InflowInput): Inflow {
     });
   }
   if (falling > 0) {
-    const text = `${falling} times the store loses volume with all pumps at rest: no inflow is given there`;
+    const text = `the store loses volume with all pumps at rest, ${falling === 1 ? 'once' : `${falling} times`}: no inflow is given there`;
     notes.push({ code: 'loss-at-rest', text });
   }
   if (smoothed > 0) {

@@ -101,6 +101,7 @@ export function readRecord(input: RecordInput): ReadRecord {
     notes.push({ code: 'reversed', text: 'the file runs from the newest row to the oldest; it was turned round' });
   }
   const zone = options.timeZone ?? layout.headerZone ?? input.timeZone;
+  noteMixedTimes(written.local, zone, notes);
   const dated = toInstants({ zone, written, columns, faults, notes });
   faults.throwIfAny();
   const ordered = inOrder(dated, notes);
@@ -140,7 +141,7 @@ function dataRows(table: CsvTable, layout: Layout, faults: FaultList, notes: Not
     if (!isFooterRow(table, end - 1, timeColumn)) break;
     sums++;
   }
-  if (sums > 0) notes.push({ code: 'footer', text: `${sums} rows at the end sum up others and were left out` });
+  if (sums > 0) notes.push({ code: 'footer', text: `rows at the end that sum up others were left out: ${sums}` });
   const rows = new Int32Array(Math.max(0, end - firstRow));
   let count = 0;
   let comments = 0;
@@ -160,7 +161,7 @@ function dataRows(table: CsvTable, layout: Layout, faults: FaultList, notes: Not
     else if (table.text.charCodeAt(table.starts[first]!) === 35) comments++;
     else if (!isEmptyRow(table, row)) rows[count++] = row;
   }
-  if (comments > 0) notes.push({ code: 'comments', text: `${comments} lines that begin with # were left out` });
+  if (comments > 0) notes.push({ code: 'comments', text: `lines that begin with # were left out: ${comments}` });
   return rows.subarray(0, count);
 }
 
@@ -212,6 +213,16 @@ interface ToInstants {
   readonly notes: Note[];
 }
 
+/** Loggers get replaced: what says its offset and what does not may be clocks of two kinds. */
+function noteMixedTimes(local: Uint8Array, zone: string, notes: Note[]): void {
+  const without = local.reduce((sum, each) => sum + each, 0);
+  if (without === 0 || without === local.length) return;
+  notes.push({
+    code: 'mixed-times',
+    text: `some times have an offset (${local.length - without}) and some have none (${without}): those are taken as local time of ${zone}`,
+  });
+}
+
 /** Wall clocks to instants. An empty row in the hour that spring skips is a filler of the export; a value there is not. */
 function toInstants({ zone, written, faults, notes }: ToInstants): Rows {
   const { ms, local, lines, values } = written;
@@ -234,7 +245,7 @@ function toInstants({ zone, written, faults, notes }: ToInstants): Rows {
   if (dropped.size > 0) {
     notes.push({
       code: 'skipped-hour',
-      text: `${dropped.size} empty rows in the hour that spring skips were left out`,
+      text: `empty rows in the hour that spring skips were left out: ${dropped.size}`,
     });
   }
   return pick({ ms: instants, lines, values }, (row) => !dropped.has(row));
@@ -263,7 +274,10 @@ function inOrder(rows: Rows, notes: Note[]): Rows {
   let late = 0;
   for (let i = 1; i < rows.ms.length; i++) if (rows.ms[i]! < rows.ms[i - 1]!) late++;
   if (late === 0) return rows;
-  notes.push({ code: 'sorted', text: `rows are out of order in ${late} places; they were sorted by time` });
+  notes.push({
+    code: 'sorted',
+    text: `rows out of order were sorted by time; places where the time goes back: ${late}`,
+  });
   const order = Array.from(rows.ms.keys()).sort((a, b) => rows.ms[a]! - rows.ms[b]! || a - b);
   return permuted(rows, order);
 }
@@ -293,7 +307,7 @@ function withoutDuplicates(rows: Rows, columns: readonly ValueColumn[], faults: 
   if (repeated.size === 0) return rows;
   notes.push({
     code: 'duplicates',
-    text: `${repeated.size} rows repeat an instant without another value; each counts once`,
+    text: `rows that repeat an instant without another value were joined: ${repeated.size}`,
   });
   return pick(rows, (row) => !repeated.has(row));
 }
@@ -312,7 +326,7 @@ function checkSteps(steps: Float64Array, lines: Int32Array, faults: FaultList): 
     if (first < 0) first = row;
   }
   if (wrong === 0) return;
-  const more = wrong > 1 ? ` (and so on ${wrong - 1} more lines)` : '';
+  const more = wrong > 1 ? ` (one of ${wrong} such lines)` : '';
   const found = `a step of ${tidy(steps[first]! / SECOND_MS)} s${more}`;
   faults.atLine(lines[first]!, 'step_out_of_range', found, 'steps from 1 second to 1 day');
 }

@@ -79,7 +79,7 @@ export function readTimes(input: TimeInput): TimeColumn {
   if (midnights24 > 0) {
     notes.push({
       code: 'hour-24',
-      text: `${midnights24} times are written 24:00: if rows are labelled at the end of their interval, all are one step late`,
+      text: `times written 24:00: ${midnights24}; if rows are labelled at the end of their interval, all are one step late`,
     });
   }
   return { ms, local };

@@ -13,6 +13,9 @@ export interface ValueInput {
   readonly notes: Note[];
 }
 
+/** No level lies this far from its datum [file units]: −9999 and its like are what loggers write for none. */
+const NO_LEVEL = 9990;
+
 /** Negative flow smaller than this [file units] is the dust of arithmetic, not of a meter, and is read as 0. */
 const DUST = 1e-9;
 
@@ -103,7 +106,7 @@ function readOddCells(
     } else faults.atLine(table.lineOf[row]!, 'not_a_number', `${column.title} '${cell}'`, wanted);
   }
   if (words.size > 0) {
-    const list = [...words].map(([word, count]) => `'${word}' ${count} times`).join(', ');
+    const list = [...words].map(([word, count]) => `'${word}' (${count})`).join(', ');
     notes.push({
       code: 'missing-words',
       text: `words for a missing value are read as gaps: ${list}, first in line ${table.lineOf[wordRow]}`,
@@ -130,7 +133,7 @@ function checkAndScale(input: ValueInput, column: ValueColumn, values: Float64Ar
     }
   }
   if (dust > 0) {
-    notes.push({ code: 'negative-dust', text: `${dust} flows between -1e-9 and 0 of the file's unit are read as 0` });
+    notes.push({ code: 'negative-dust', text: `flows between -1e-9 and 0 of the file's unit are read as 0: ${dust}` });
   }
 }
 
@@ -149,7 +152,7 @@ function bounds(role: Role, factor: number): Bounds {
     case 'staticHead':
       return { least: 0, most, code: 'static_head_negative', wanted: 'a static head of 0 or more' };
     case 'level':
-      return { least: -most, most, code: 'out_of_range', wanted: 'a level' };
+      return { least: -NO_LEVEL, most: NO_LEVEL, code: 'out_of_range', wanted: 'a level, or an empty cell for a gap' };
     case 'on':
       return { least: 0, most: 1 / factor, code: 'out_of_range', wanted: 'a share of the interval from 0 to 1' };
     case 'speed':

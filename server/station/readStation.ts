@@ -335,6 +335,10 @@ function inOrder(file: StationFile, duty: readonly Pump[], reading: Reading): Pu
   return ordered;
 }
 
+function entries(list: readonly unknown[]): string {
+  return list.length === 1 ? '1 entry' : `${list.length} entries`;
+}
+
 function readSteps(file: StationFile, dutyCount: number, reading: Reading): Station['flowSteps'] {
   const steps = file.rules?.['flow-steps'];
   if (!steps) return null;
@@ -342,20 +346,10 @@ function readSteps(file: StationFile, dutyCount: number, reading: Reading): Stat
   const { bringOn, dropOff } = steps;
   const most = Math.max(dutyCount - 1, 0);
   if (bringOn.length !== dropOff.length) {
-    reading.fault(
-      'steps_fall',
-      `${at}.dropOff`,
-      `${dropOff.length} entries`,
-      `${bringOn.length}, one for each bringOn`,
-    );
+    reading.fault('steps_fall', `${at}.dropOff`, entries(dropOff), `${bringOn.length}, one for each bringOn`);
   }
   if (bringOn.length > most) {
-    reading.fault(
-      'steps_fall',
-      `${at}.bringOn`,
-      `${bringOn.length} entries`,
-      `at most ${most} for ${dutyCount} duty pumps`,
-    );
+    reading.fault('steps_fall', `${at}.bringOn`, entries(bringOn), `at most ${most} for ${dutyCount} duty pumps`);
   }
   for (const [name, list] of [
     ['bringOn', bringOn],

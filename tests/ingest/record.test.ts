@@ -53,8 +53,24 @@ describe('the canonical form', () => {
     expect(record.report).toMatchObject({ intervals: 5, hours: 2, gapHours: 3, volumeM3: expect.closeTo(144, 9) });
     expect(record.report.gaps).toEqual([{ from: hour(1), to: hour(4), hours: 3 }]);
     expect(record.report.notes).toEqual([
-      { code: 'missing-words', text: expect.stringContaining("'NaN' 1 times, 'Bad' 1 times, first in line 4") },
+      { code: 'missing-words', text: expect.stringContaining("'NaN' (1), 'Bad' (1), first in line 4") },
     ]);
+  });
+
+  it('takes no level for what loggers write where they have none', () => {
+    expect(faultsOf(() => aRecord(hourly(['1,2,0', '1,-9999,0'], 'time,flow,level,P1_on')))).toEqual([
+      "out_of_range flow.csv line 3: found level '-9999'; wanted a level, or an empty cell for a gap",
+    ]);
+    expect(aRecord(hourly(['1,-980,0', '1,-980,0'], 'time,flow,level,P1_on')).log.level![0]).toBe(-980);
+  });
+
+  it('says that some times have an offset and some have none', () => {
+    const mixed = aRecord('time,flow\n2025-07-01T10:00:00Z,1\n2025-07-01T11:00:00Z,2\n2025-07-01 13:00,3\n');
+    expect(starts(mixed)).toEqual(['2025-07-01T10:00', '2025-07-01T11:00', '2025-07-01T12:00']);
+    expect(mixed.report.notes).toEqual([
+      { code: 'mixed-times', text: expect.stringContaining('an offset (2) and some have none (1)') },
+    ]);
+    expect(aRecord('time,flow\n2025-07-01 13:00,1\n2025-07-01 14:00,2\n').report.notes).toEqual([]);
   });
 
   it('counts time without rows as a gap', () => {

@@ -86,7 +86,7 @@ describe('pipes are refused', () => {
   ])('%s', (_, pipe, line) => expect(faults([pipe])).toEqual([line]));
 
   it('where there is no pipe', () => {
-    expect(faults([])).toEqual(['out_of_range station.json system.friction.pipes: found []; wanted 1 entries or more']);
+    expect(faults([])).toEqual(['out_of_range station.json system.friction.pipes: found []; wanted an entry or more']);
   });
 
   it('where limits of velocity have no pipe to go by', () => {
