@@ -210,18 +210,24 @@ export class PlainPump {
     return lacks(least) >= 0 ? least : scanRoot(lacks, least, 4);
   }
 
-  /** P̃(q; H): least electric power direct on line, or on its drive at any speed that lifts enough; Infinity for none. */
-  leastPower(q: number, header: number): { line: number; drive: number } {
+  /** Electric power at q > 0 into a header, direct on line, a valve taking what head is left; Infinity where it cannot. */
+  linePower(q: number, header: number): number {
     const lift = header + this.branch * q * q;
-    const slack = 1e-11 * (1 + lift);
-    const line =
-      q <= this.end(1) * (1 + 1e-12) && this.head(q, 1) >= lift - slack ? this.electric(q, 1, false) : Infinity;
-    if (!this.driven) return { line, drive: Infinity };
-    const from = this.speed(q, lift);
-    if (from === null || from > this.maxSpeed * (1 + 1e-11)) return { line, drive: Infinity };
+    const can = q <= this.end(1) * (1 + 1e-12) && this.head(q, 1) >= lift - 1e-11 * (1 + lift);
+    return can ? this.electric(q, 1, false) : Infinity;
+  }
+
+  /**
+   * The same on its drive: at the one speed that lifts just enough, or with a valve at the best of those that lift
+   * enough.
+   */
+  drivePower(q: number, header: number, valve: boolean): number {
+    if (!this.driven) return Infinity;
+    const from = this.speed(q, header + this.branch * q * q);
+    if (from === null || from > this.maxSpeed * (1 + 1e-11)) return Infinity;
+    if (!valve) return from < this.minSpeed * (1 - 1e-9) ? Infinity : this.electric(q, from, true);
     const low = Math.min(Math.max(from, this.minSpeed), this.maxSpeed);
-    const drive = scanLeast((s) => this.electric(q, s, true), low, this.maxSpeed, 12).value;
-    return { line, drive };
+    return scanLeast((s) => this.electric(q, s, true), low, this.maxSpeed, 12).value;
   }
 }
 

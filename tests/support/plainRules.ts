@@ -28,6 +28,7 @@ export class PlainRules {
   private readonly pump: PlainPump;
   private readonly most: number;
   private readonly points = new Map<string, Way>();
+  private readonly candidatesAt = new Map<number, ReturnType<PlainRules['trims']>>();
 
   constructor(station: PlainStation) {
     this.station = station;
@@ -161,9 +162,12 @@ export class PlainRules {
   }
 
   private candidates(flow: number) {
-    let trims = this.trims(flow);
+    let trims = this.candidatesAt.get(flow);
+    if (trims) return trims;
+    trims = this.trims(flow);
     if (trims.some((t) => !t.overloaded)) trims = trims.filter((t) => !t.overloaded);
     if (trims.some((t) => t.inside)) trims = trims.filter((t) => t.inside);
+    this.candidatesAt.set(flow, trims);
     return trims;
   }
 
@@ -177,7 +181,7 @@ export class PlainRules {
   }
 
   bestCount(flow: number): PlainAnswer {
-    const sorted = this.candidates(flow).sort((a, b) => a.mean - b.mean);
+    const sorted = [...this.candidates(flow)].sort((a, b) => a.mean - b.mean);
     const [best, next] = sorted;
     if (!best) return this.hold(this.point(this.most, this.pump.maxSpeed, true));
     return this.answer(best.way, flow, next ? next.mean / best.mean - 1 : Infinity);

@@ -1,11 +1,13 @@
+import { bisect } from 'simple-statistics';
+
 /**
- * The slow and obvious solvers of the independent side: a dense scan finds where something happens, halving or narrowing
- * finds it exactly. They share no code with the program's own.
+ * The slow and obvious solvers of the independent side: a dense scan finds where something happens; a library's bisection
+ * or ever finer scans find it exactly. They share no code with the program's own.
  */
 
 const CELLS = 64;
 
-/** A place where f changes sign on [a, b]: the first cell of a scan whose ends differ, then halved; null for none. */
+/** A place where f changes sign on [a, b], to the last digit of the cell it is in; null for none. */
 export function scanRoot(f: (x: number) => number, a: number, b: number): number | null {
   let left = a;
   let signLeft = Math.sign(f(a));
@@ -14,22 +16,24 @@ export function scanRoot(f: (x: number) => number, a: number, b: number): number
     const right = a + ((b - a) * i) / CELLS;
     const signRight = Math.sign(f(right));
     if (signRight === 0) return right;
-    if (signRight !== signLeft) return halved(f, left, right, signLeft);
+    if (signRight !== signLeft) return bisect(remembered(f), left, right, 200, 2e-16 * Math.abs(right));
     left = right;
     signLeft = signRight;
   }
   return null;
 }
 
-function halved(f: (x: number) => number, a: number, b: number, signA: number): number {
-  let low = a;
-  let high = b;
-  for (;;) {
-    const middle = low + (high - low) / 2;
-    if (middle <= low || middle >= high) return middle;
-    if (Math.sign(f(middle)) === signA) low = middle;
-    else high = middle;
-  }
+/** The same function, each value worked out once: the library asks for it several times. */
+export function remembered(f: (x: number) => number): (x: number) => number {
+  const values = new Map<number, number>();
+  return (x) => {
+    let value = values.get(x);
+    if (value === undefined) {
+      value = f(x);
+      values.set(x, value);
+    }
+    return value;
+  };
 }
 
 /**
