@@ -171,6 +171,17 @@ export class PlainRules {
     return trims;
   }
 
+  /** What `steady` may choose from: the mean power of each count, and the flow of the state that rests, if one does. */
+  ways(flow: number): { count: number; power: number; resting: number | null }[] {
+    const ways = this.candidates(flow).map(({ way, mean }) => ({
+      count: way.count,
+      power: mean,
+      resting: way.flow > flow ? way.flow : null,
+    }));
+    if (ways.length > 0) return ways;
+    return [{ count: this.most, power: this.point(this.most, this.pump.maxSpeed, true).power, resting: null }];
+  }
+
   private answer(way: Way, flow: number, margin = Infinity): PlainAnswer {
     return way.flow > flow ? this.share(OFF, way, flow, margin) : this.hold(way, margin);
   }

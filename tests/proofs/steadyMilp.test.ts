@@ -1,0 +1,150 @@
+import { describe, expect, it } from 'vitest';
+import type { Log } from '../../server/ingest/log.ts';
+import { FixedSet } from '../../server/staging/bestSets.ts';
+import { demandRecord } from '../../server/staging/demandRecord.ts';
+import { MixedPumps } from '../../server/staging/mixedPumps.ts';
+import { ruleOf } from '../../server/staging/rules/all.ts';
+import { runRule } from '../../server/staging/run.ts';
+import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import type { State } from '../../server/staging/state.ts';
+import { readStation } from '../../server/station/readStation.ts';
+import type { Station } from '../../server/station/station.ts';
+import type { StationFile } from '../../server/station/stationFile.ts';
+import { dice, ENDURE, madeStation, seeds } from '../support/madeStations.ts';
+import { PlainStation } from '../support/plainModel.ts';
+import { PlainRules } from '../support/plainRules.ts';
+import { logOf } from '../support/running.ts';
+import { type Interval, leastSequence, type Way } from '../support/steadyProgram.ts';
+
+/**
+ * `steady` against a mixed-integer program that HiGHS solves to 1e-9: what it spends over a day on energy and starts is
+ * the least that any allowed sequence of sets spends. What a count of equal pumps costs comes from the second working of
+ * the station; what a set of different pumps costs from the program itself, where tests/proofs/floorMilp.test.ts has it
+ * proven.
+ */
+const CLOSE = 1e-7;
+
+interface Day {
+  readonly seed: number;
+  readonly file: StationFile;
+  readonly station: Station;
+  readonly log: Log;
+}
+
+/** A day that rises and falls as demand does, with a pause, and two hours lost from some. */
+function aDay(seed: number, mixed: boolean, steps: number): Day {
+  const made = madeStation(seed, { mixed, most: 3 });
+  const roll = dice(seed + 900);
+  const fresh = readStation(made, 'station.json');
+  const full = stagedPumps(fresh, fresh.duty).flatOut(fresh.duty.length);
+  const file: StationFile = {
+    ...made,
+    storage: { activeVolume: (1 + 3000 * roll()) * full.flow },
+    rules: { steady: { minRunMinutes: 60 + 120 * roll(), startPenaltyKwh: 0.3 * roll() * (full.power / 1000) } },
+  };
+  const pause = Math.floor(steps * roll());
+  const flows = Array.from({ length: steps }, (_, i) => {
+    const tide = 0.5 - 0.35 * Math.cos((2 * Math.PI * i) / steps);
+    return i === pause ? 0 : full.flow * Math.max(0, tide + 0.5 * (roll() - 0.5));
+  });
+  const log = logOf(flows, 86_400 / steps);
+  const lost = roll() < 0.5 ? Math.floor(steps * roll()) : steps;
+  const startMs = log.startMs.map((ms, i) => (i < lost ? ms : ms + 2 * 3_600_000));
+  return { seed, file, station: readStation(file, 'station.json'), log: { ...log, startMs } };
+}
+
+type Ways = (flow: number, seconds: number) => ReadonlyMap<number, Way>;
+
+/** Starts of pumps that share an interval with rest: one a pump and cycle. */
+function cycling(station: Station, count: number, resting: number, flow: number, seconds: number): number {
+  const volume = station.storage.activeVolume!;
+  return (count * seconds) / (volume / flow + volume / (resting - flow));
+}
+
+const OFF: ReadonlyMap<number, Way> = new Map([[0, { cost: 0, base: 0 }]]);
+
+/** Counts of equal pumps, as the second working has them; of n pumps the first n run. */
+function countWays({ file, station }: Day): Ways {
+  const plain = new PlainRules(new PlainStation(file));
+  return (flow, seconds) =>
+    new Map(
+      plain.ways(flow).map(({ count, power, resting }) => {
+        const set = 2 ** count - 1;
+        const starts = resting === null ? 0 : cycling(station, count, resting, flow, seconds);
+        const cost = power * seconds + station.steady.startPenalty * starts;
+        return [set, { cost, base: resting === null ? set : 0 }];
+      }),
+    );
+}
+
+/** Sets of different pumps; those that overload a motor or leave their range only where no other can meet the flow. */
+function setWays({ station }: Day): Ways {
+  const pumps = new MixedPumps(station, station.duty);
+  const sets = Array.from({ length: 2 ** pumps.most - 1 }, (_, i) => new FixedSet(pumps, i + 1));
+  return (flow, seconds) => {
+    let found = sets.flatMap((set) => {
+      const figures = set.figuresAt(flow);
+      return figures ? [{ set: set.set, ...figures }] : [];
+    });
+    if (found.some((each) => !each.overloaded)) found = found.filter((each) => !each.overloaded);
+    if (found.some((each) => each.inside)) found = found.filter((each) => each.inside);
+    if (found.length === 0) {
+      const { power, set } = pumps.flatOut(pumps.most);
+      return new Map([[2 ** pumps.most - 1, { cost: power * seconds, base: set }]]);
+    }
+    return new Map(
+      found.map(({ set, power, rest }) => {
+        const starts = rest ? cycling(station, rest.count, rest.flow, flow, seconds) : 0;
+        return [set, { cost: power * seconds + station.steady.startPenalty * starts, base: rest ? 0 : set }];
+      }),
+    );
+  };
+}
+
+function expectLeast(day: Day, ways: Ways): void {
+  const { seed, station, log } = day;
+  const where = `station ${seed}`;
+  const intervals: Interval[] = Array.from(log.flow!, (flow, i) => ({
+    start: log.startMs[i]! / 1000,
+    seconds: log.seconds[i]!,
+    ways: flow === 0 ? OFF : ways(flow, log.seconds[i]!),
+  }));
+  const states: State[] = [];
+  const { totals } = runRule(
+    ruleOf('steady')!,
+    stagedPumps(station, station.duty),
+    demandRecord(station, log),
+    (i, { high }) => {
+      states[i] = high;
+    },
+  );
+  // Where nothing else may run, what runs is told by the interval, not by the pumps that deliver.
+  const chosen = intervals.map(({ ways: all }, i) => (all.size === 1 ? [...all.keys()][0]! : states[i]!.set));
+  const least = leastSequence(intervals, station.steady);
+  const priced = leastSequence(intervals, station.steady, chosen);
+  expect(priced, `${where}: the sequence is allowed`).not.toBeNull();
+  expect(priced! / least!, `${where}: no sequence is cheaper`).toBeLessThan(1 + CLOSE);
+  const standby = station.standbyPower * log.seconds.reduce((sum, each) => sum + each, 0);
+  const spent = totals.energyKwh * 3.6e6 - standby + station.steady.startPenalty * totals.starts!;
+  expect(Math.abs(spent / priced! - 1), `${where}: ${spent} J for ${priced} J`).toBeLessThan(CLOSE);
+}
+
+const lengths = ENDURE ? [24, 96] : [24];
+
+describe.each(lengths)('over a day of %i intervals', (steps) => {
+  const numbers = seeds(8, 60);
+  it(`steady spends the least that HiGHS finds, on ${numbers.length} stations of equal pumps`, () => {
+    for (const seed of numbers) {
+      const day = aDay(seed, false, steps);
+      expectLeast(day, countWays(day));
+    }
+  });
+
+  const few = seeds(3, 30);
+  it(`steady spends the least that HiGHS finds, on ${few.length} stations of different pumps`, () => {
+    for (const seed of few) {
+      const day = aDay(seed, true, steps);
+      expectLeast(day, setWays(day));
+    }
+  });
+});
