@@ -142,7 +142,7 @@ function optionResult(comparison: Comparison, terms: Case, option: CaseOption, b
   const { notes, ...worth } = worthOf(investment, saving);
   const unchanged = option.rule === terms.baseline && option.capital === 0;
   const restaged = bestWithoutDrives(comparison, terms.baseline);
-  const beyondRestaging = restaged ? worthOf(investment, restaged.annual.totalCost - annual.totalCost) : null;
+  const beyondRestaging = restaged ? worthBeyond(investment, restaged.annual.totalCost - annual.totalCost) : null;
   const restageSaves = restaged !== null && baseline.totalCost - restaged.annual.totalCost > 0.005 * baseline.totalCost;
   const verdict = worth.npv > 0 ? 'pays' : 'does-not-pay';
   const advice = unchanged
@@ -179,10 +179,26 @@ function optionResult(comparison: Comparison, terms: Case, option: CaseOption, b
     advice,
     sentence: sentenceOf({ advice, unchanged, saving, worth, option, restaged, baseline, money }),
     reason: reasonOf(baseline, annual, unchanged),
-    wouldChange: unchanged ? [] : whatWouldChange(terms, option, saving, worth.npv, money),
+    wouldChange: unchanged
+      ? []
+      : advice === 'restage-first'
+        ? whatWouldChange(terms, option, beyondRestaging!, money, 'Beyond restaging, it')
+        : whatWouldChange(terms, option, { saving, npv: worth.npv }, money, 'It'),
     shortfallHours: run.totals.shortfallHours,
-    notes,
+    // What stays as it is asks for no return.
+    notes: unchanged ? [] : notes,
   };
+}
+
+/** A change on its own, or on top of the best that the same pumps can do without it. */
+interface Gain {
+  /** Of energy and demand, a year. */
+  readonly saving: number;
+  readonly npv: number;
+}
+
+function worthBeyond(investment: InvestmentTerms, saving: number): Gain {
+  return { saving, npv: worthOf(investment, saving).npv };
 }
 
 /** The cheapest other way to run the same pumps direct on line; null where there is none. */
@@ -220,20 +236,44 @@ function sentenceOf({
   money: (value: number) => string;
 }): string {
   const restageSaving = restaged ? baseline.totalCost - restaged.annual.totalCost : 0;
+  const outlay = money(option.capital - option.incentive);
+  // A name may be one thing or several, so that the station is what saves.
+  const runs = `with ${withinSentence(option.name)} the station`;
   if (advice === 'restage-first') {
     const first = `Restage first: the same pumps under ${restaged!.rule} save ${money(restageSaving)} a year for nothing.`;
     if (unchanged) return first;
-    return `${first} Beyond that, ${option.name} saves ${money(saving - restageSaving)} a year, which does not repay ${money(option.capital - option.incentive)}.`;
+    const beyond = saving - restageSaving;
+    const change =
+      beyond > 0
+        ? `saves ${money(beyond)} a year, which does not repay ${outlay}`
+        : `costs ${money(-beyond)} a year more to run`;
+    return `${first} Beyond that, ${runs} ${change}.`;
   }
   if (advice === 'leave')
     return 'Leaving it as it is costs nothing now; no better staging of the same pumps was found.';
   if (advice === 'pays') {
     const years = worth.simplePaybackYears;
-    const back = years === null || years <= 0 ? '' : ` and pays back in ${years.toPrecision(2)} years`;
-    return `It pays: ${option.name} saves ${money(saving)} a year${back}; net present value ${money(worth.npv)}.`;
+    const back = years === null || years <= 0 ? '' : ` and pays back in ${yearsText(years)}`;
+    return `It pays: ${runs} saves ${money(saving)} a year${back}; net present value ${money(worth.npv)}.`;
   }
-  if (saving < 0) return `It does not pay: ${option.name} costs ${money(-saving)} a year more to run.`;
-  return `It does not pay: ${option.name} saves ${money(saving)} a year, not enough for ${money(option.capital - option.incentive)}; net present value ${money(worth.npv)}.`;
+  if (saving < 0) return `It does not pay: ${runs} costs ${money(-saving)} a year more to run.`;
+  return `It does not pay: ${runs} saves ${money(saving)} a year, not enough for ${outlay}; net present value ${money(worth.npv)}.`;
+}
+
+/** A name as it stands within a sentence: `A drive on each pump` begins small there, a name proper does not. */
+function withinSentence(name: string): string {
+  return name.replace(/^(An?|The|All|Both|One|Two|Three|Four|Five|Six|Seven|Eight|Drives?)(?= )/, (word) =>
+    word.toLowerCase(),
+  );
+}
+
+/** `4.2 years`, `1 year`, `5 months` */
+function yearsText(years: number): string {
+  const months = Math.round(years * 12);
+  if (months < 1) return 'less than a month';
+  if (months < 12) return months === 1 ? '1 month' : `${months} months`;
+  const text = String(Number(years.toPrecision(2)));
+  return text === '1' ? '1 year' : `${text} years`;
 }
 
 /** Why, from the ledger: what no drive can save, what it can, and what changes. */
@@ -274,15 +314,15 @@ function signedKwh(value: number): string {
 function whatWouldChange(
   terms: Case,
   option: CaseOption,
-  saving: number,
-  npv: number,
+  { saving, npv }: Gain,
   money: (value: number) => string,
+  it: 'It' | 'Beyond restaging, it',
 ): string[] {
   const found: string[] = [];
   const outlay = option.capital - option.incentive;
   const { years, discountRate } = terms;
   if (outlay > 0 && outlay + npv > 0) {
-    found.push(`It breaks even where it costs ${money(outlay + npv)} after incentives (now ${money(outlay)}).`);
+    found.push(`${it} breaks even where it costs ${money(outlay + npv)} after incentives (now ${money(outlay)}).`);
   }
   const factor = escalatedPresentValue({ discountRate, escalation: terms.energyEscalation }, years);
   const others =
@@ -290,7 +330,8 @@ function whatWouldChange(
     option.residualValue / (1 + discountRate) ** years;
   const needed = (outlay - others) / factor;
   if (needed > 0) {
-    found.push(`It breaks even where it saves ${money(needed)} of energy and demand a year (now ${money(saving)}).`);
+    const now = saving < 0 ? `now it costs ${money(-saving)} more` : `now ${money(saving)}`;
+    found.push(`${it} breaks even where it saves ${money(needed)} of energy and demand a year (${now}).`);
     if (saving > 0) {
       const price = needed / saving;
       const change = Math.round(Math.abs(price - 1) * 100);

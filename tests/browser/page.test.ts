@@ -70,7 +70,7 @@ describe.skipIf(browserPath === null)('the page', () => {
     const [which, cost, change, basis] = await answers(page);
     expect(which).toMatch(/^Second pump from .* L\/s \(at 12 m static head\)$/);
     expect(cost).toMatch(/€.* a year at fixed speed \(scaled to a year\); /);
-    expect(change).toMatch(/^It (pays|does not pay): a drive on each of 2 pumps .*\. The price is a placeholder$/);
+    expect(change).toMatch(/^It (pays|does not pay): with a drive on each of 2 pumps .*\. The price is a placeholder$/);
     expect(basis).toBe('47 of 48 hours, 2 pumps, test tariff. 1 hour has no value, left out');
     expect(seen.errors).toEqual([]);
   });
@@ -271,7 +271,7 @@ describe.skipIf(browserPath === null)('the page', () => {
       /^bad\.json years: found 0; wanted 1 or more/,
     );
     await drop(page, [file('case.json', terms)]);
-    await page.getByText('two cheap drives saves').first().waitFor();
+    await page.getByText('with two cheap drives the station saves').first().waitFor();
     expect(await page.locator('.in-hand').count()).toBe(0);
     const saving = page.waitForEvent('download');
     await page.getByRole('button', { name: 'Save the case file' }).click();

@@ -102,7 +102,7 @@ describe('the case to begin with', () => {
     const start = startOf(rules)!;
     expect(isPlaceholder(start.draft, start)).toBe(true);
     expect(isPlaceholder({ ...start.draft, capital: 33_000 }, start)).toBe(false);
-    const sentence = 'It pays: a drive saves 1 200 EUR a year; net present value 9 000 EUR.';
+    const sentence = 'It pays: with a drive the station saves 1 200 EUR a year; net present value 9 000 EUR.';
     const format = aFormat();
     expect(caseAnswer({ sentence }, format, { placeholder: true })).toMatch(/€9,000\. The price is a placeholder$/);
     expect(caseAnswer({ sentence }, format, { placeholder: false })).toMatch(/€9,000$/);
