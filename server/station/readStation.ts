@@ -6,6 +6,7 @@ import { waterDensity } from '../hydraulics/water.ts';
 import { readAs, shown } from '../readFile.ts';
 import { isTimeZone } from '../time.ts';
 import { FLOW_UNITS, HEAD_UNITS, isUsFlow, POWER_UNITS, US_GALLON } from '../units.ts';
+import { leastPowerOrder } from './leastPowerOrder.ts';
 import type { Reading } from './reading.ts';
 import { readDriveEfficiency, readMotorEfficiency } from './readPartLoad.ts';
 import { readPipes } from './readPipes.ts';
@@ -45,7 +46,10 @@ export function readStation(value: unknown, fileName: string): Station {
   }
   const { friction, main } = readFriction(file, reading);
   const pumps = readPumps(file.pumps, reading);
-  const duty = inOrder(file, pumps.duty, reading);
+  const ranked = file.order === 'least-power' && faults.length === 0;
+  const duty = ranked
+    ? leastPowerOrder(pumps.duty, friction, file.system.staticHead * reading.head)
+    : inOrder(file.order, pumps.duty, reading);
   const flowSteps = readSteps(file, duty.length, reading);
   const storage = readStorage(file, reading);
   const suction = readSuction(file, storage, reading);
@@ -318,11 +322,11 @@ function readTable(
   return table;
 }
 
-function inOrder(file: StationFile, duty: readonly Pump[], reading: Reading): Pump[] {
-  if (!file.order) return [...duty];
+function inOrder(order: StationFile['order'], duty: readonly Pump[], reading: Reading): Pump[] {
+  if (order === undefined || order === 'least-power') return [...duty];
   const byName = new Map(duty.map((pump) => [pump.name, pump]));
   const ordered: Pump[] = [];
-  file.order.forEach((name, i) => {
+  order.forEach((name, i) => {
     const pump = byName.get(name);
     if (!pump)
       reading.fault('unknown_name', `order[${i}]`, shown(name), `a duty pump: ${[...byName.keys()].join(', ')}`);

@@ -180,7 +180,8 @@ export const stationFile = z.strictObject({
     })
     .optional(),
   pumps: z.array(z.union([singlePump, trainOfPumps])).min(1),
-  order: z.array(z.string()).optional(),
+  /** Names of duty pumps in the order in which they are brought on, or by what that order is found. */
+  order: z.union([z.array(z.string()), z.literal('least-power')]).optional(),
   rules: z
     .strictObject({
       'flow-steps': z
