@@ -44,7 +44,9 @@ function suite(zone, options) {
   const status = run('vitest/vitest.mjs', ['run', ...reporters, ...options], { TZ: zone });
   const failedBefore = totals.failed;
   try {
-    addUp(JSON.parse(readFileSync(report, 'utf8')));
+    const results = JSON.parse(readFileSync(report, 'utf8'));
+    addUp(results);
+    tellProven(results);
   } catch (error) {
     process.stdout.write(`The suite left no report: ${error.message}\n`);
   }
@@ -59,6 +61,16 @@ function addUp(report) {
   totals.failed += report.testResults.filter(
     (file) => file.status === 'failed' && file.assertionResults.length === 0,
   ).length;
+}
+
+/** Proofs and laws are told by what they hold: their titles say of how many stations, and how closely. */
+function tellProven({ testResults }) {
+  for (const { name, assertionResults } of testResults) {
+    if (!/[\\/]tests[\\/](proofs|laws)[\\/]/.test(name)) continue;
+    for (const { status, fullName, duration } of assertionResults) {
+      if (status === 'passed') process.stdout.write(`Proven: ${fullName} (${(duration / 1000).toFixed(1)} s)\n`);
+    }
+  }
 }
 
 function run(bin, options, env) {

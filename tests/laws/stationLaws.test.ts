@@ -17,7 +17,7 @@ import { logOf } from '../support/running.ts';
 
 /** What holds of every station, whatever its pumps: laws that need no expected figure. */
 
-const RUNS = ENDURE ? 150 : 12;
+const RUNS = ENDURE ? 100 : 12;
 const bounded = { seed: 11, numRuns: RUNS };
 
 interface Case {

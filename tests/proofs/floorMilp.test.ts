@@ -41,14 +41,15 @@ function cases(numbers: readonly number[], mixed: boolean, flows: number): Case[
 
 const percent = (share: number) => `${100 * share} %`;
 
+/** Every station that fails is told, not the first alone. */
 function expectWithin(power: number, { least, most }: Bounds, where: string, tolerance = ROUNDING): void {
-  expect(most / least - 1, `gap of the program, ${where}`).toBeLessThanOrEqual(GAP);
-  expect(power / least, `not below what is possible, ${where}`).toBeGreaterThan(1 - ROUNDING);
-  expect(power / most, `not above what the program found, ${where}`).toBeLessThan(1 + tolerance);
+  expect.soft(most / least - 1, `gap of the program, ${where}`).toBeLessThanOrEqual(GAP);
+  expect.soft(power / least, `not below what is possible, ${where}`).toBeGreaterThan(1 - ROUNDING);
+  expect.soft(power / most, `not above what the program found, ${where}`).toBeLessThan(1 + tolerance);
 }
 
 const equal = cases(seeds(10, 500), false, 1);
-const mixed = cases(seeds(5, 100), true, ENDURE ? 2 : 1);
+const mixed = cases(seeds(5, 80), true, ENDURE ? 2 : 1);
 
 describe.each([
   ['equal', equal],
@@ -75,8 +76,8 @@ describe.each([
           carried += n * q;
           drawn += n * (mode === 'line' ? pump.linePower(q, header) : pump.drivePower(q, header, true));
         }
-        expect(carried / flow, where).toBeCloseTo(1, 9);
-        expect(drawn / power, where).toBeCloseTo(1, 8);
+        expect.soft(carried / flow, where).toBeCloseTo(1, 9);
+        expect.soft(drawn / power, where).toBeCloseTo(1, 8);
       }
     }
   });
@@ -101,7 +102,7 @@ describe('best-count of different pumps', () => {
           least: Math.min(found?.least ?? Infinity, resting),
           most: Math.min(found?.most ?? Infinity, resting),
         };
-        expect(series.flow[i]! / flow, where).toBeCloseTo(1, 9);
+        expect.soft(series.flow[i]! / flow, where).toBeCloseTo(1, 9);
         expectWithin(series.mean[i]! - station.standbyPower, bounds, where, BETWEEN_NODES);
       });
     }
