@@ -2,12 +2,12 @@ import type { ComparisonBody, RecordEntry, StationEntry, TariffEntry } from '../
 import type { CaseFile } from '../server/economics/caseFile.ts';
 import { type Fault, faultLine } from '../server/errors.ts';
 import type { CaseResult } from '../server/makeCase.ts';
-import type { HandedCard, LateStagingCost } from '../server/operatorCard.ts';
 import type { BestCountMap } from '../server/staging/bestCountMap.ts';
 import type { PowerOverFlow, RuleSeries } from '../server/staging/pictures.ts';
 import type { RuleId } from '../server/staging/result.ts';
 import type { StationFile } from '../server/station/stationFile.ts';
 import type { TariffFile } from '../server/tariff/tariffFile.ts';
+import type { ComparisonCard } from './questions/which/cardText.ts';
 
 /** A stored station: the file its owner wrote, with its id. */
 export type StationBody = StationFile & { readonly id: number; readonly demo: boolean };
@@ -151,7 +151,7 @@ export const api = {
   powerOverFlow: (comparisonId: number, signal?: AbortSignal) =>
     call<PowerOverFlow>(`/comparisons/${comparisonId}/power-over-flow`, { signal }),
   card: (comparisonId: number, { bandPercent }: { bandPercent: number }, signal?: AbortSignal) =>
-    call<HandedCard & { readonly lateStaging: LateStagingCost | null }>(
+    call<ComparisonCard>(
       `/comparisons/${comparisonId}/card?${new URLSearchParams({ bandPercent: String(bandPercent) })}`,
       { signal },
     ),

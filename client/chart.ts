@@ -15,7 +15,7 @@ import {
   Tooltip,
   type TooltipItem,
 } from 'chart.js';
-import { type Box, placeNames, raiseClear } from './labels.ts';
+import { type Box, overlap, placeNames, raiseClear } from './labels.ts';
 import type { Axis, Bars, Curves, HoursByFlow, Point, RecordSteps, Ticks } from './series.ts';
 
 /** The one file that knows the chart library: a picture's data in, a drawn canvas out. */
@@ -91,6 +91,7 @@ const BAR_TEXT = 84;
 /** Power over flow: each who may run a line, heavy where it draws least, named where it ends; crossings stand on the axis. */
 export function drawCurves(canvas: HTMLCanvasElement, curves: Curves, look: Look): Drawn {
   const most = curves.lines.at(-1)?.id ?? 1;
+  const labels: Box[] = [];
   return draw(canvas, look, {
     type: 'line',
     data: {
@@ -119,7 +120,7 @@ export function drawCurves(canvas: HTMLCanvasElement, curves: Curves, look: Look
         }),
       },
     },
-    plugins: [crossingMarks(curves, most, look, true), lineNames(curves, look)],
+    plugins: [crossingMarks(curves, most, look, labels), lineNames(curves, look, labels)],
   });
 }
 
@@ -154,7 +155,7 @@ export function drawHours(canvas: HTMLCanvasElement, hours: HoursByFlow, curves:
         }),
       },
     },
-    plugins: [crossingMarks(curves, most, look, false)],
+    plugins: [crossingMarks(curves, most, look, null)],
   });
 }
 
@@ -196,7 +197,7 @@ export function drawBars(canvas: HTMLCanvasElement, bars: Bars, look: Look): Dra
           stacked: true,
           grid: { display: false },
           border: { color: look.ink },
-          ticks: { color: look.ink, font: { family: look.font, size: 13 } },
+          ticks: { color: look.ink, autoSkip: false, font: { family: look.font, size: look.size ? 11 : 13 } },
         },
       },
       plugins: { tooltip: { enabled: false } },
@@ -419,8 +420,9 @@ function tip(look: Look, { title, label }: Tip) {
   };
 }
 
-/** Vertical lines where counts cross; where `named`, the flow is written at the foot. */
-function crossingMarks(curves: Curves, most: number, look: Look, named: boolean): Plugin<'line' | 'bar'> {
+/** Vertical lines where one gives way to another; with `labels`, the flow is written at the foot and its box noted. */
+function crossingMarks(curves: Curves, most: number, look: Look, labels: Box[] | null): Plugin<'line' | 'bar'> {
+  const named = labels !== null;
   return {
     id: 'crossings',
     afterDatasetsDraw({ ctx, scales, chartArea }) {
@@ -451,12 +453,13 @@ function crossingMarks(curves: Curves, most: number, look: Look, named: boolean)
         ctx.fill();
         ctx.stroke();
       }
-      const taken: Box[] = [];
+      const taken = labels ?? [];
+      taken.length = 0;
       ctx.font = `600 12px ${look.font}`;
       ctx.textBaseline = 'top';
       for (const { at, label } of named ? marks : []) {
         const { width } = ctx.measureText(label);
-        const left = at + 6 + width > chartArea.right ? at - 6 - width : at + 6;
+        const left = Math.min(at + 6, chartArea.right + RIGHT - width);
         const foot = { left, right: left + width, top: chartArea.bottom - 18, bottom: chartArea.bottom - 3 };
         const box = raiseClear(foot, taken);
         taken.push(box);
@@ -472,7 +475,7 @@ function crossingMarks(curves: Curves, most: number, look: Look, named: boolean)
 }
 
 /** The name of each line beside it, where it covers no other. */
-function lineNames(curves: Curves, look: Look): Plugin<'line'> {
+function lineNames(curves: Curves, look: Look, labels: readonly Box[]): Plugin<'line'> {
   return {
     id: 'names',
     afterDatasetsDraw({ ctx, scales, chartArea }) {
@@ -491,21 +494,24 @@ function lineNames(curves: Curves, look: Look): Plugin<'line'> {
         marks: curves.crossings.map((crossing) => [spot(crossing), spot({ x: crossing.x, y: curves.y.min })]),
         area: { ...chartArea, top: 0, right: chartArea.right + RIGHT },
       });
+      const taken = [...labels, ...boxes.filter((box) => box !== null)];
       boxes.forEach((box, i) => {
         if (box) ctx.fillText(names[i]!, box.left, box.top);
-        else numberOnLine(ctx, curves.lines[i]!, spot, look);
+        else shortOnLine(ctx, curves.lines[i]!, { spot, look, taken });
       });
       ctx.restore();
     },
   };
 }
 
-/** Where a name has no room beside its line, its short form stands on the line where that is heavy. */
-function numberOnLine(
+/**
+ * Where a name has no room beside its line, its short form stands on the line where that is heavy; none stands where it
+ * would cover another.
+ */
+function shortOnLine(
   ctx: CanvasRenderingContext2D,
   { short, points, least }: Curves['lines'][number],
-  spot: (at: { x: number; y: number }) => { x: number; y: number },
-  look: Look,
+  { spot, look, taken }: { spot: (at: { x: number; y: number }) => { x: number; y: number }; look: Look; taken: Box[] },
 ): void {
   const drawn = points.filter((point, i) => point.y !== null && least[i]);
   const middle = drawn[Math.floor(drawn.length / 2)] ?? points.findLast((point) => point.y !== null);
@@ -513,8 +519,11 @@ function numberOnLine(
   const { x, y } = spot({ x: middle.x, y: middle.y });
   const text = short;
   const { width } = ctx.measureText(text);
+  const box = { left: x - width / 2 - 2, right: x + width / 2 + 2, top: y - 7, bottom: y + 7 };
+  if (taken.some((other) => overlap(box, other))) return;
+  taken.push(box);
   ctx.fillStyle = look.paper;
-  ctx.fillRect(x - width / 2 - 2, y - 7, width + 4, 14);
+  ctx.fillRect(box.left, box.top, width + 4, 14);
   ctx.fillStyle = look.ink;
   ctx.fillText(text, x - width / 2, y - 5);
 }

@@ -79,6 +79,7 @@ function within({ x, y }: Spot, { left, top, right, bottom }: Box): boolean {
   return x > left - CLEAR && x < right + CLEAR && y > top - CLEAR && y < bottom + CLEAR;
 }
 
-function overlap(a: Box, b: Box): boolean {
+/** Whether two names touch. */
+export function overlap(a: Box, b: Box): boolean {
   return a.left < b.right + CLEAR && b.left < a.right + CLEAR && a.top < b.bottom && b.top < a.bottom;
 }

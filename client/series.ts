@@ -41,6 +41,9 @@ export interface Curves {
 export function curvesOf(power: PowerOverFlow, format: Format): Curves {
   const flow = power.flowM3s.map((value) => value * format.flow.factor);
   const least = leastRunners(power);
+  const crossings = crossingsOf(power);
+  // With many of them the axis alone names the unit.
+  const crowded = crossings.length > 4;
   let top = 0;
   const lines = runnersOf(power).map(({ id, name, short, powerKw }) => {
     const points = powerKw.map((y, i) => ({ x: flow[i]!, y }));
@@ -51,10 +54,10 @@ export function curvesOf(power: PowerOverFlow, format: Format): Curves {
     x: flowAxis(power, format),
     y: { title: `Mean power, ${format.power.unit}`, min: 0, max: niceTop(top) },
     lines,
-    crossings: crossingsOf(power).map(({ flowM3s, powerKw, to }) => ({
+    crossings: crossings.map(({ flowM3s, powerKw, to }) => ({
       x: flowM3s * format.flow.factor,
       y: powerKw,
-      label: format.say(format.flow, flowM3s),
+      label: crowded ? format.bare(format.flow, flowM3s).text : format.say(format.flow, flowM3s),
       to,
     })),
   };

@@ -273,7 +273,12 @@ function AddPump({ file }: { readonly file: StationFile }) {
 function StepFields({ file }: { readonly file: StationFile }) {
   const { set, faults } = useEditing();
   const flow = shownFlowUnit(file.units.flow);
+  // An order that is found from the curves names no pump before it is worked out: its steps are then counted.
+  const names = file.order === 'least-power' ? [] : (file.order ?? dutyNames(file));
   const steps = Math.max(0, dutyNames(file).length - 1);
+  // Entries of a file are for pumps that differ: a step is then called by the pump that it brings on.
+  const alike = file.pumps.filter(({ role }) => role !== 'standby').length < 2;
+  const pumpOf = (i: number) => (alike ? i + 2 : (names[i + 1] ?? i + 2));
   const path: Path = ['rules', 'flow-steps'];
   const has = valueAt(file, path) !== undefined;
   const said = [...faults].filter(([at]) => at.startsWith('rules.flow-steps'));
@@ -303,13 +308,13 @@ function StepFields({ file }: { readonly file: StationFile }) {
             <tbody>
               {Array.from({ length: steps }, (_, i) => (
                 <tr key={i}>
-                  <th scope="row">{i + 2}</th>
+                  <th scope="row">{pumpOf(i)}</th>
                   {(['bringOn', 'dropOff'] as const).map((side) => (
                     <td key={side} class="slot">
                       <Cell
                         path={[...path, side, i]}
                         column={{ head: side, kind: 'number' }}
-                        label={`Pump ${i + 2} ${side === 'bringOn' ? 'on' : 'off'} at`}
+                        label={`${alike ? 'Pump ' : ''}${pumpOf(i)} ${side === 'bringOn' ? 'on' : 'off'} at`}
                       />
                     </td>
                   ))}

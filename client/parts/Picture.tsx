@@ -16,7 +16,7 @@ interface PictureProps {
 
 /** Width of a printed picture, and what a height comes to on paper [CSS px]. */
 const PAPER_WIDTH = 660;
-const PAPER_HEIGHT = { tall: 150, low: 80 };
+const PAPER_HEIGHT = { tall: 160, low: 92 };
 const ROW_HEIGHT = { screen: 34, paper: 16 };
 const FRAME_HEIGHT = 52;
 

@@ -39,7 +39,7 @@ export function bestCountMap(comparison: Comparison): BestCountMap {
       return shortfall > 0 ? 0 : state.set;
     });
   });
-  const met = dutyPumpsAreEqual(duty) ? [] : [...new Set(bits.flat())].filter((set) => set > 0);
+  const met = dutyPumpsAreEqual(duty) ? [] : setsByFlow(bits);
   const names = (set: number) => placesOf(set).map((place) => duty[place]!.name);
   const hours = staticHeadM.map(() => new Array<number>(COLUMNS).fill(0));
   for (let i = 0; i < record.flow.length; i++) {
@@ -56,6 +56,19 @@ export function bestCountMap(comparison: Comparison): BestCountMap {
     set: met.length === 0 ? [] : bits.map((row) => row.map((set) => (set === 0 ? null : met.indexOf(set)))),
     hours,
   };
+}
+
+/** The sets of a map, those for small flows first. */
+function setsByFlow(bits: readonly (readonly number[])[]): number[] {
+  const met = new Map<number, { columns: number; cells: number }>();
+  for (const row of bits) {
+    for (const [column, set] of row.entries()) {
+      const { columns, cells } = met.get(set) ?? { columns: 0, cells: 0 };
+      if (set > 0) met.set(set, { columns: columns + column, cells: cells + 1 });
+    }
+  }
+  const middle = (set: number) => met.get(set)!.columns / met.get(set)!.cells;
+  return [...met.keys()].sort((a, b) => middle(a) - middle(b));
 }
 
 /** Lowest and highest static head of a record [m]; the station's number, a quarter either way, where it is one. */

@@ -166,7 +166,10 @@ export function readable(text: string, format: Format): string {
   const priced = named.replace(amounts, (_, amount: string) =>
     format.say(format.money, Number(amount.replaceAll(' ', ''))),
   );
-  return priced.replace(/(\d) (?=\d{3}\b|%|kWh)/g, '$1\u00a0');
+  const metered = priced.replace(/(\d[\d ]*) kWh/g, (_, amount: string) =>
+    format.say(format.energy, Number(amount.replaceAll(' ', ''))),
+  );
+  return metered.replace(/(\d) (?=\d{3}\b|%|kWh)/g, '$1\u00a0');
 }
 
 /** The one line of the answer: the sentence of the case, with a word where its price is not yet one. */

@@ -14,6 +14,7 @@ import {
   type MainsChoice,
   madeFrom,
   mainsOf,
+  ownOrderText,
   PRESSURES,
   type Pressure,
   siOf,
@@ -36,7 +37,9 @@ export function Card({ open, record }: Pick<QuestionProps, 'open' | 'record'>) {
   const { card, faults } = useCard(comparison.id, band);
   const mains = mainsOf(mainsChoice, station);
   const late = card && lateText(card.lateStaging, format);
-  const parts = card && <CardParts card={card} mains={mains} pressure={pressure} />;
+  const own = card && ownOrderText(card, format);
+  const parts = (onPaper: boolean) =>
+    card && <CardParts card={card} mains={mains} pressure={pressure} onPaper={onPaper} />;
   const sheet = card && (
     <>
       <p class="sheet-kind">Operator's card</p>
@@ -45,7 +48,8 @@ export function Card({ open, record }: Pick<QuestionProps, 'open' | 'record'>) {
         {ladderSentence(card, format)} · {format.say(format.head, siOf(card).head(card.staticHead))} static head,{' '}
         {BASIS_TEXT[card.basis]}
       </p>
-      {parts}
+      {parts(true)}
+      {own && <p class="late">{own}</p>}
       {late && <p class="late">{late}</p>}
       <ul class="sheet-cautions">
         {card.cautions.map((text) => (
@@ -60,7 +64,7 @@ export function Card({ open, record }: Pick<QuestionProps, 'open' | 'record'>) {
   return (
     <section class="card" aria-labelledby="card-title">
       <h3 id="card-title">
-        {card ? `The operator's card: ${lower(ladderSentence(card, format))}` : "The operator's card"}
+        {card ? `The operator's card: ${leading(ladderSentence(card, format), card)}` : "The operator's card"}
       </h3>
       <p class="tools">
         <label>
@@ -106,7 +110,8 @@ export function Card({ open, record }: Pick<QuestionProps, 'open' | 'record'>) {
             {sentence(BASIS_TEXT[card.basis])}. A pump comes on where going on without it costs {band} % more, and goes
             off where going on with it does; between the two, shaded, leave things as they are.
           </p>
-          {parts}
+          {parts(false)}
+          {own && <p class="late">{own}</p>}
           {late && <p class="late">{late}</p>}
         </>
       )}
@@ -114,17 +119,20 @@ export function Card({ open, record }: Pick<QuestionProps, 'open' | 'record'>) {
   );
 }
 
-function lower(text: string): string {
-  return text.charAt(0).toLowerCase() + text.slice(1);
+/** A sentence that goes on behind a colon; one that begins with the name of a pump keeps its capital. */
+function leading(text: string, { alike }: Pick<ComparisonCard, 'alike'>): string {
+  return alike ? text.charAt(0).toLowerCase() + text.slice(1) : text;
 }
 
 interface CardPartsProps {
   readonly card: ComparisonCard;
   readonly mains: number;
   readonly pressure: Pressure;
+  /** The one side of paper has no room to say things twice. */
+  readonly onPaper: boolean;
 }
 
-function CardParts({ card, mains, pressure }: CardPartsProps) {
+function CardParts({ card, mains, pressure, onPaper }: CardPartsProps) {
   const { format } = usePage();
   const { flow, head } = siOf(card);
   const { moves, levels, sets } = card;
@@ -132,10 +140,10 @@ function CardParts({ card, mains, pressure }: CardPartsProps) {
     value == null ? 'none' : format.bare(format.flow, flow(value)).text;
   return (
     <>
-      {sets.length > 0 && (
+      {sets.length > 0 && !onPaper && (
         <p class="aside">
-          The best set of all at each flow; beside it in the table what it saves against the best that the station's own
-          order, {list(card.pumps)}, can do.
+          At each flow the best set of all. The table says what it saves against the best that can be had in the
+          station's own order, {list(card.pumps)}.
         </p>
       )}
       <Ladder card={card} mains={mains} pressure={pressure} />
@@ -194,7 +202,7 @@ function CardParts({ card, mains, pressure }: CardPartsProps) {
             ]}
           />
         )}
-        {sets.length > 0 && <SetTable sets={sets} card={card} />}
+        {sets.length > 0 && !onPaper && <SetTable sets={sets} card={card} />}
       </div>
       {card.notes.length > 0 && (
         <ul class="notes card-notes">
@@ -222,7 +230,7 @@ function SetTable({ sets, card }: { readonly sets: readonly HandedSet[]; readonl
         { head: 'Run', words: true, cell: (set) => `${list(set.pumps) || 'none'}${set.rests ? ', with rests' : ''}` },
         { head: 'Change', words: true, cell: (set) => set.text || 'none' },
         {
-          head: 'Saves against the own order',
+          head: 'Saves against own order',
           unit: 'kW',
           cell: (set) =>
             set.savedKw === null ? 'cannot' : format.bare(format.power, withoutDust(set.savedKw, 1)).text,

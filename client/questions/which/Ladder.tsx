@@ -21,6 +21,9 @@ interface LadderProps {
 /** A set with less of the ladder's height than this has no room for its name. */
 const LEAST_NAMED = 0.045;
 
+/** Less than this is not worth a line. */
+const LEAST_SAVED_KW = 0.05;
+
 const percent = (share: number) => `${100 * share}%`;
 
 /** One hue, and more pumps are darker; the style sheet mixes it, so that it follows light, dark and paper. */
@@ -38,7 +41,7 @@ export function Ladder({ card, mains, pressure }: LadderProps) {
   const sayFlow = (value: number) => format.say(format.flow, flow(value));
   const { rungs, zones } = ladder;
   const most = card.sets.length > 0 ? zones.length : card.capacities.length;
-  const many = rungs.length > 5 ? 'many' : '';
+  const many = rungs.length > (card.sets.length > 0 ? 9 : 5) ? 'many' : '';
   return (
     <div
       class={`ladder ${many} ${card.sets.length > 0 ? 'of-sets' : ''}`}
@@ -155,7 +158,7 @@ function SetRungs({ card, mains, pressure }: LadderProps) {
       {card.sets
         .map((set, i) => ({ ...set, below: card.sets[i - 1] }))
         .reverse()
-        .map(({ from, pumps, text, rests, change, below }) => (
+        .map(({ from, pumps, text, rests, savedKw, change, below }) => (
           <li key={from}>
             {change && below ? (
               <>
@@ -170,6 +173,9 @@ function SetRungs({ card, mains, pressure }: LadderProps) {
                   <span aria-hidden="true">▼</span> back to {setText(below.pumps.join('+'))} at{' '}
                   <b>{sayFlow(change.dropOff)}</b>
                 </p>
+                {savedKw !== null && savedKw >= LEAST_SAVED_KW && (
+                  <p class="why">saves {format.say(format.power, savedKw)} against the station's own order</p>
+                )}
               </>
             ) : (
               <p class="on">

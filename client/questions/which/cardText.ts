@@ -1,11 +1,15 @@
 import type { ComparisonBody } from '../../../server/api.ts';
 import type { HandedCard, HandedSet, LateStagingCost } from '../../../server/operatorCard.ts';
+import type { OwnOrderCost } from '../../../server/staging/ownOrder.ts';
 import type { StationFile } from '../../../server/station/stationFile.ts';
 import { FLOW_UNITS, HEAD_UNITS, PSI, usualMainsHz } from '../../../server/units.ts';
 import { type Format, list, type Measure, ordinal } from '../../format.ts';
 
 /** The card that goes with a comparison, as the server hands it. */
-export type ComparisonCard = HandedCard & { readonly lateStaging: LateStagingCost | null };
+export type ComparisonCard = HandedCard & {
+  readonly lateStaging: LateStagingCost | null;
+  readonly ownOrder: OwnOrderCost | null;
+};
 
 /** How the header's head is told: as a head, or as the pressure that a gauge shows. */
 export const PRESSURES = ['head', 'kPa', 'bar', 'psi'] as const;
@@ -157,6 +161,15 @@ export function lateText(late: LateStagingCost | null, format: Format): string |
   if (late.energyKwh < 0) return `Waiting until the running pumps are flat out saves ${energy} ${over}.`;
   const money = late.cost === null ? energy : `${format.say(format.money, late.cost)} and ${energy}`;
   return `Waiting until the running pumps are flat out costs ${money} more ${over}.`;
+}
+
+/** What bringing pumps on in the station's own order costs over the record; null where a count says who runs. */
+export function ownOrderText({ ownOrder, pumps }: ComparisonCard, format: Format): string | null {
+  if (ownOrder === null || ownOrder.energyKwh < 0.5) return null;
+  const energy = format.say(format.energy, ownOrder.energyKwh);
+  const money = ownOrder.cost === null ? energy : `${format.say(format.money, ownOrder.cost)} and ${energy}`;
+  const over = `over the ${format.whole(ownOrder.hours)} hours of the record`;
+  return `Keeping to the order ${list(pumps)} costs ${money} more ${over}, even with the best count at each flow.`;
 }
 
 /** What a card was computed from, so that two people can tell whether they hold the same. */
