@@ -1,25 +1,3 @@
-import { GRAVITY } from '../units.ts';
-
-/**
- * Net positive suction head available at a pump [m]: the head of the air less that of the vapour, plus the height of the
- * water above the pump, less what the suction pipe loses.
- *
- * @param p.pressure        absolute, on the water at the suction [Pa]
- * @param p.vapourPressure  of the liquid [Pa]
- * @param p.density         [kg/m³]
- * @param p.height          of the water above the pump's impeller [m]; negative where it must be lifted
- * @param p.loss            in the suction pipe at the pump's flow [m]
- */
-export function npshAvailable(p: {
-  pressure: number;
-  vapourPressure: number;
-  density: number;
-  height: number;
-  loss: number;
-}): number {
-  return (p.pressure - p.vapourPressure) / (p.density * GRAVITY) + p.height - p.loss;
-}
-
 /**
  * NPSH required over flow at rated speed, read from a maker's curve: straight lines between the points, held left of the
  * first (it falls no further), and going on along the last line beyond the last, never below it. At speed ratio s it is

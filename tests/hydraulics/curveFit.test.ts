@@ -3,19 +3,6 @@ import { describe, expect, it } from 'vitest';
 import { fitParabola } from '../../server/hydraulics/curveFit.ts';
 
 describe('the parabola nearest to a curve', () => {
-  it('agrees with the fit of a book', () => {
-    // E. Maurer, Hydraulics and Water Resources: Examples Using R, ch. 7: (0, 81), (5000 gpm, 60), (7850, 20), in cfs;
-    // worked out independently from its figures: 82.467 − 0.20094·Q²
-    const cfs = 0.00222800926;
-    const fit = fitParabola([
-      { flow: 0, head: 81 },
-      { flow: 5000 * cfs, head: 60 },
-      { flow: 7850 * cfs, head: 20 },
-    ]);
-    expect(Math.abs(fit.shutoffHead - 82.467)).toBeLessThan(1e-3);
-    expect(Math.abs(fit.shape - 0.20094)).toBeLessThan(1e-5);
-  });
-
   it('agrees with a statistics library on R² and names the point furthest off', () => {
     // pumpworld.com, parallel pumping of identical pumps: gpm, ft
     const points = [
