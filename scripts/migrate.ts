@@ -2,10 +2,19 @@
 import { MigrationError, migrate } from '../db/migrate.ts';
 import { openDatabase } from '../db/open.ts';
 import { databasePath } from '../server/settings.ts';
+import { runCommand } from './support/command.ts';
 
-if (process.argv.includes('--help')) {
-  process.stdout.write('npm run migrate\n\nApplies what is new of migrations/ to the database (NTH_PUMP_DB).\n');
-} else {
+const HELP = `npm run --silent migrate
+
+Applies what is new of migrations/ to the database, each file with its record in one transaction.
+
+  --help    this text
+
+The database is NTH_PUMP_DB, or .data/nth-pump.sqlite inside the checkout.
+Exit code 0 when it is up to date, 2 for a bad option, 1 where it cannot be brought up to date.
+`;
+
+runCommand(HELP, { values: [] }, () => {
   const path = databasePath(process.env);
   const db = openDatabase(path);
   try {
@@ -18,4 +27,4 @@ if (process.argv.includes('--help')) {
   } finally {
     db.close();
   }
-}
+});

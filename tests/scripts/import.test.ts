@@ -159,6 +159,15 @@ describe('npm run migrate', () => {
     expect(command('migrate', [], { NTH_PUMP_DB: path }).stdout).toContain('nothing to apply');
   });
 
+  it('takes no other option, and touches no database then', () => {
+    const path = file('never.sqlite');
+    const ended = command('migrate', ['--to', '3'], { NTH_PUMP_DB: path });
+    expect(ended).toMatchObject({ code: 2, stdout: '' });
+    expect(ended.stderr).toContain('--to');
+    expect(command('migrate', ['--help'], { NTH_PUMP_DB: path })).toMatchObject({ code: 0 });
+    expect(existsSync(path)).toBe(false);
+  });
+
   it('a script that is none ends with 2', () => {
     expect(command('no-such-script', [])).toMatchObject({ code: 2, stdout: '' });
   });
