@@ -190,6 +190,26 @@ function motors(): OutsideCheck[] {
       { ...taken, what: 'Full-load efficiency of NEMA premium motors, 1 to 200 hp', kind: 'published', source: cfr },
       NEMA_PREMIUM.map(([hp, printed]) => [printed, () => motor('NEMA premium', hp * HORSEPOWER)] as const),
     ),
+    wholeTable(
+      {
+        ...taken,
+        what: 'Full-load efficiency of motors IE1 to IE4 of 355 and 375 kW, as 200 kW',
+        kind: 'from memory',
+        source: 'IEC 60034-30-1:2014, 4 poles, 50 Hz',
+      },
+      [355, 375].flatMap((kw) =>
+        [94.0, 95.1, 96.0, 96.7].map((printed, i) => [printed, () => motor(names[i]!, kw * 1000)] as const),
+      ),
+    ),
+    wholeTable(
+      {
+        ...taken,
+        what: 'Full-load efficiency of NEMA premium motors, 250 to 500 hp',
+        kind: 'from memory',
+        source: cfr,
+      },
+      [250, 300, 350, 400, 450, 500].map((hp) => [96.2, () => motor('NEMA premium', hp * HORSEPOWER)] as const),
+    ),
     ...(
       [
         [62, 'as 60 hp', 95.0],

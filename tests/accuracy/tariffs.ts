@@ -82,6 +82,33 @@ function flatDay(): OutsideCheck[] {
   ];
 }
 
+/** Intervals of a flat day that cost as much as the first. */
+function equalPrices(stepMinutes: number): number {
+  const series = powerOf(steady('2024-07-10T00:00:00-07:00', 24, 1, stepMinutes));
+  const plan = planBill(aTariff({ timeZone: 'America/Los_Angeles' }), series.startMs, series.seconds);
+  const costs = energyCosts(plan, series.mean);
+  return costs.filter((cost) => cost > 0 && Math.abs(cost / costs[0]! - 1) < 1e-12).length;
+}
+
+function steps(): OutsideCheck[] {
+  return (
+    [
+      [15, 96],
+      [5, 288],
+      [60, 24],
+    ] as const
+  ).map(([minutes, printed]) => ({
+    what: `Equal prices of a day at one rate, in steps of ${minutes} min`,
+    kind: 'published',
+    source: 'electric-emission-cost (MIT, commit 28ddcc0): expected values of eeco/tests/test_costs.py',
+    printed,
+    unit: '–',
+    ours: () => equalPrices(minutes),
+    allowed: 1e-9,
+    why: 'a count',
+  }));
+}
+
 /** A month of 720 h with so many kWh and one hour at the peak. */
 function month(kwh: number, peakKw: number): PowerSeries {
   const kw = new Array<number>(720).fill((kwh - peakKw) / 719);
@@ -347,6 +374,7 @@ function carbon(): OutsideCheck[] {
 export const TARIFFS: readonly OutsideCheck[] = [
   ...daysOfRisingPower(),
   ...flatDay(),
+  ...steps(),
   ...monthlyBills(),
   ...ratchets(),
   ...localTime(),
