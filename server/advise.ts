@@ -1,4 +1,5 @@
 import { type Note, refuse } from './errors.ts';
+import type { Pump } from './hydraulics/pump.ts';
 import { CARD_CAUTIONS } from './operatorCard.ts';
 import { adviceNow, type Way } from './staging/advice.ts';
 import { dutyWithout } from './staging/compare.ts';
@@ -74,7 +75,7 @@ export function advise(station: Station, moment: Moment): HandedAdvice {
     best: advice.best && way(advice.best),
     nextBest: advice.nextBest && { ...way(advice.nextBest), extraKw: advice.nextBest.extraPower / 1000 },
     shortfall: advice.shortfall / flowUnit,
-    notes: advice.notes,
+    notes: [...proposedNotes(duty), ...advice.notes],
     cautions: CARD_CAUTIONS,
   };
 
@@ -89,6 +90,18 @@ export function advise(station: Station, moment: Moment): HandedAdvice {
     );
     return names.map((name, i) => ({ name, ...each[i]! }));
   }
+}
+
+/** A proposed drive is not there yet, and a person at the switchboard should know that speeds are not to be had. */
+function proposedNotes(duty: readonly Pump[]): Note[] {
+  const names = duty.filter((pump) => pump.hasDrive && !pump.driveFitted).map((pump) => pump.name);
+  if (names.length === 0) return [];
+  return [
+    {
+      code: 'proposed-drives',
+      text: `Drives are proposed and not fitted on ${names.join(', ')}: this is what to run once they are.`,
+    },
+  ];
 }
 
 function headOf(station: Station, { staticHead, level }: Moment, unit: number): number {

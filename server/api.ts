@@ -7,6 +7,9 @@ import { FLOW_UNITS, type FlowUnit } from './units.ts';
 
 const id = z.union([z.int(), z.string()]);
 
+/** A number in a query; one that is left empty is a slip, and not 0. */
+const inQuery = z.string().trim().min(1).pipe(z.coerce.number());
+
 /** Body of `POST /api/comparisons`. Whether rules and pumps are known, the comparison itself says. */
 export const comparisonRequest = z.strictObject({
   stationId: id,
@@ -46,16 +49,16 @@ export const seriesQuery = z.strictObject({
 
 /** Query of the operator's card: static head in the station's unit of head, band in percent, pumps out as `P2,P3`. */
 export const cardQuery = z.strictObject({
-  staticHead: z.coerce.number().optional(),
-  bandPercent: z.coerce.number().optional(),
+  staticHead: inQuery.optional(),
+  bandPercent: inQuery.optional(),
   without: z.string().optional(),
 });
 
 /** Query of `GET /api/stations/:id/advice`, in the station's units. */
 export const adviceQuery = z.strictObject({
-  flow: z.coerce.number(),
-  level: z.coerce.number().optional(),
-  staticHead: z.coerce.number().optional(),
+  flow: inQuery,
+  level: inQuery.optional(),
+  staticHead: inQuery.optional(),
   without: z.string().optional(),
 });
 

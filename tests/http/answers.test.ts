@@ -102,6 +102,25 @@ describe('advice for a moment', () => {
     expect(body.best.pumps).toHaveLength(1);
   });
 
+  it('says that a drive is only proposed, and nothing where it is fitted', async () => {
+    const codes = async (id: number) =>
+      (await api.http.get(`/api/stations/${id}/advice?flow=30`).expect(200)).body.notes.map(
+        ({ code }: { code: string }) => code,
+      );
+    expect(await codes(ids.stationId)).toEqual(['proposed-drives']);
+    const [pump] = aStationFile().pumps as [{ drive: object }];
+    const fitted = aStationFile({ pumps: [{ ...pump, drive: { ...pump.drive, fitted: true } }] });
+    expect(await codes((await api.http.post('/api/stations').send(fitted)).body.id)).toEqual([]);
+  });
+
+  it.each(['flow=', 'flow=%20', 'flow=30&staticHead=', 'flow=30&level='])(
+    'takes no empty number for 0: %s',
+    async (query) => {
+      const { body } = await api.http.get(`/api/stations/${ids.stationId}/advice?${query}`).expect(422);
+      expect(body.errors).toEqual([/(\w+)=(%20)?$/.exec(query)![1]]);
+    },
+  );
+
   it('tells a flow above capacity, and refuses a negative one', async () => {
     const beyond = (await api.http.get(`/api/stations/${ids.stationId}/advice`).query({ flow: 500 })).body;
     // Two pumps flat out: 30 − 0.003·(Q/2)² = 12 + 0.001·Q², Q = √(18/0.00175).
