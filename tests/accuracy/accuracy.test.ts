@@ -65,6 +65,13 @@ describe('the table', () => {
     expect(other!.map((row) => row.length)).toEqual([6, 6]);
   });
 
+  it('keeps what Markdown would take for a mark', () => {
+    const text = section([{ heading: 'One', checks: [{ ...check, what: 'Q* of a|b', source: 'k < H*' }] }]);
+    expect(text).toContain('\n*closed form*: k \\< H\\*. Allowed: two digits.\n');
+    expect(text).toContain('\n| Q\\* of a\\|b | – | 0.33 | 0.3333 | 0.0033 | 0.005 |\n');
+    expect(text).toContain('\n| One | 0 | 0 | 0 | 1 | 0 | 1 |\n');
+  });
+
   it('goes to the end of a document, in the place of an older one', () => {
     expect(withSection('# A\n\n## B\n\nb\n', '## Accuracy\n\nnew')).toBe('# A\n\n## B\n\nb\n\n## Accuracy\n\nnew\n');
     expect(withSection('# A\n\n## Accuracy\n\n### x\n\nold\n\n## B\n\nb\n', '## Accuracy\n\nnew')).toBe(

@@ -326,6 +326,16 @@ const plain = (count: number, inSeries: number, staticHead = 12) =>
     },
   ]);
 
+/** A train of two makes. */
+const train = () => {
+  const machine = (shutoffHead: number, shape: number) => ({
+    curve: { shutoffHead, shape, bestFlow: 60, bestEfficiency: 0.8 },
+    motor: LOSSLESS,
+  });
+  const system = { staticHead: 25, friction: { coefficient: 0.001 } };
+  return stationOf(SI, system, [{ name: 'T', train: [machine(30, 0.003), machine(20, 0.002)] }]);
+};
+
 const closedForms: readonly OutsideCheck[] = [
   ...[1, 2, 3, 5].map(
     (n): OutsideCheck => ({
@@ -351,6 +361,17 @@ const closedForms: readonly OutsideCheck[] = [
       why: 'exact but for rounding',
     }),
   ),
+  {
+    what: 'Flow of two different pumps in series',
+    kind: 'closed form',
+    source:
+      'Q = √((H1 + H2 − H_st)/(k + a1 + a2)) with H1 = 30, a1 = 0.003, H2 = 20, a2 = 0.002, H_st = 25, k = 0.001 (L/s, m)',
+    printed: Math.sqrt((30 + 20 - 25) / (0.001 + 0.003 + 0.002)),
+    unit: 'L/s',
+    ours: () => together(train()).flow / LITRE,
+    allowed: 1e-9,
+    why: 'exact but for rounding',
+  },
   {
     what: 'Firm capacity of three equal pumps',
     kind: 'closed form',

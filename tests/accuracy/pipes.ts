@@ -2,7 +2,7 @@ import { colebrookWhite, frictionFactor, PipeFriction } from '../../server/hydra
 import { waterDensity, waterViscosity } from '../../server/hydraulics/water.ts';
 import { type FileUnits, FOOT, GRAVITY, INCH } from '../../server/units.ts';
 import { halfDigit, type OutsideCheck } from './check.ts';
-import { CFS, GPM, LOSSLESS, stationOf, together, US } from './stations.ts';
+import { CFS, GPM, LOSSLESS, mainVelocity, stationOf, together, US } from './stations.ts';
 
 const PRINTED = 'half of the last digit printed';
 const SI: FileUnits = { flow: 'm3/s', head: 'm', power: 'kW' };
@@ -11,9 +11,10 @@ const anyPump = (units: FileUnits) => ({
   curve: { shutoffHead: 100, shape: 0, bestFlow: units.flow === 'gpm' ? 500 : 0.1, bestEfficiency: 0.8 },
   motor: LOSSLESS,
 });
-/** Friction of pipes as a station file has them. */
-const frictionOf = (units: FileUnits, pipe: object) =>
-  stationOf(units, { staticHead: 10, friction: { pipes: [pipe] } }, [anyPump(units)]).friction;
+/** A station on a pipe as a file has it, and the friction of that. */
+const onPipe = (units: FileUnits, pipe: object) =>
+  stationOf(units, { staticHead: 10, friction: { pipes: [pipe] } }, [anyPump(units)]);
+const frictionOf = (units: FileUnits, pipe: object) => onPipe(units, pipe).friction;
 
 const FLUIDS = 'C. Bell, fluids, friction.py, docstrings (Reynolds number 1e5, relative roughness 1e-4)';
 
@@ -107,6 +108,16 @@ const flowOfLoss = () =>
   ).flow;
 
 const darcy: readonly OutsideCheck[] = [
+  {
+    what: 'Velocity',
+    kind: 'published',
+    source: MAURER,
+    printed: 2.12,
+    unit: 'm/s',
+    ours: () => mainVelocity(onPipe(SI, { length: 100, diameter: 500, roughness: 0.046 }), 0.416),
+    allowed: halfDigit(2),
+    why: PRINTED,
+  },
   {
     what: 'Friction factor, from the loss',
     kind: 'published',
@@ -226,6 +237,16 @@ const hazenWilliams: readonly OutsideCheck[] = [
     why: '0.2 %: another of the published forms',
   },
   {
+    what: 'Velocity of 700 gpm in 8 in',
+    kind: 'closed form',
+    source: 'hydrauliclearning.com, p. 24376 (its answer was not seen; worked by hand)',
+    printed: 4.468,
+    unit: 'ft/s',
+    ours: () => mainVelocity(onPipe(US, { length: 8500, diameter: 8, hazenWilliamsC: 150 }), 700 * GPM) / FOOT,
+    allowed: halfDigit(3),
+    why: 'half of the last digit worked out',
+  },
+  {
     what: 'Flow that loses 10 m in 1000 m of 0.3 m, C 130',
     kind: 'closed form',
     source: 'exercise of mathix.co, worked by hand with D^4.87',
@@ -273,10 +294,7 @@ const fittings = (
 );
 
 const ARMY = 'US Army, EI 11C201, 1 March 1997, section 7-1';
-const main = () =>
-  stationOf(SI, { staticHead: 10, friction: { pipes: [{ length: 100, diameter: 100, roughness: 0.05 }] } }, [
-    anyPump(SI),
-  ]).main!;
+const main = () => onPipe(SI, { length: 100, diameter: 100, roughness: 0.05 }).main!;
 
 const velocities: readonly OutsideCheck[] = [
   {

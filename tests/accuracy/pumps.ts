@@ -73,6 +73,23 @@ const ranges: readonly OutsideCheck[] = [
     allowed: 1e-9,
     why: 'a point of the table, exact but for rounding',
   },
+  ...(
+    [
+      ['Least', 630, () => tablePump.preferred.from],
+      ['Greatest', 1080, () => tablePump.preferred.to],
+    ] as const
+  ).map(
+    ([word, printed, limit]): OutsideCheck => ({
+      what: `${word} preferred flow of that pump, 70 to 120 % of its best`,
+      kind: 'closed form',
+      source: `0.7 and 1.2 of 900 gpm, the best of ${POWER_TABLE}`,
+      printed,
+      unit: 'gpm',
+      ours: () => (limit() * 900) / share(900),
+      allowed: 1e-9,
+      why: 'exact but for rounding',
+    }),
+  ),
   {
     what: 'Least preferred share of best-efficiency flow where a file sets none',
     kind: 'published',
@@ -348,6 +365,24 @@ const constants: readonly OutsideCheck[] = [
   },
 ];
 
+const onePoint: OutsideCheck = {
+  what: 'Head at half of it, of a pump of 32 m at no flow and 24 m at 40 L/s',
+  kind: 'closed form',
+  source: 'h = H0 − a·q² with a = (H0 − H*)/q*²: 32 − 8/4',
+  printed: 30,
+  unit: 'm',
+  ours: () =>
+    stationOf({ flow: 'L/s', head: 'm', power: 'kW' }, against(10), [
+      {
+        name: 'P',
+        curve: { shutoffHead: 32, operatingPoint: { flow: 40, head: 24 }, bestFlow: 40, bestEfficiency: 0.8 },
+        motor: LOSSLESS,
+      },
+    ]).duty[0]!.head(0.02, 1),
+  allowed: 1e-12,
+  why: 'exact but for rounding',
+};
+
 const MAURER =
   'E. Maurer, Hydraulics and Water Resources: Examples Using R, ch. 7: code printed, its result worked out';
 const maurer = () =>
@@ -479,6 +514,7 @@ export const PUMPS: readonly OutsideCheck[] = [
   ...quizChecks,
   ...constants,
   ...ranges,
+  onePoint,
   ...fits,
   ...lecture,
 ];

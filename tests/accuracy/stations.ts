@@ -1,6 +1,7 @@
 import { firmCapacity } from '../../server/staging/firmCapacity.ts';
 import { type StagedPumps, stagedPumps } from '../../server/staging/stagedPumps.ts';
 import type { State } from '../../server/staging/state.ts';
+import { Watch } from '../../server/staging/watch.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import type { Station } from '../../server/station/station.ts';
 import { type FileUnits, FLOW_UNITS, FOOT, GRAVITY } from '../../server/units.ts';
@@ -74,4 +75,11 @@ export function trimmed(station: Station, count: number, flow: number): State {
 /** Firm capacity of all duty pumps [m³/s]. */
 export function firm(station: Station): number {
   return firmCapacity(station, station.duty);
+}
+
+/** Greatest velocity in the pipes of a station at a flow [m/s], as the result of a comparison has it. */
+export function mainVelocity(station: Station, flow: number): number {
+  const watch = new Watch(station, station.duty, false);
+  watch.add(pumpsOf(station).throttled(1, flow), 1, Number.NaN);
+  return watch.watched().main!.maxVelocityMs!;
 }

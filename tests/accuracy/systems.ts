@@ -1,8 +1,7 @@
 import { systemHead } from '../../server/hydraulics/systemCurve.ts';
-import { Watch } from '../../server/staging/watch.ts';
 import { FLOW_UNITS, FOOT } from '../../server/units.ts';
 import { halfDigit, type OutsideCheck } from './check.ts';
-import { CUBIC_METRES, GPM, headPoints, LOSSLESS, pumpsOf, stationOf, together, US } from './stations.ts';
+import { CUBIC_METRES, GPM, headPoints, LOSSLESS, mainVelocity, stationOf, together, US } from './stations.ts';
 
 const SOURCE_A = 'Hydraulic Institute, Engineering Data Library, I.A System Curves, worked example (US units)';
 const SOURCE_C = 'Hydraulic Institute, Engineering Data Library, I.C Pump and System Curves, worked example';
@@ -28,12 +27,7 @@ const asCoefficient = stationOf(US, { staticHead: 265, friction: { coefficient: 
 
 const head = (station: typeof asPipes, gpm: number) =>
   systemHead(station.friction, station.staticHead, gpm * GPM) / FOOT;
-/** Velocity in the main [m/s], as the result of a comparison has it. */
-function velocity(flow: number): number {
-  const watch = new Watch(asPipes, asPipes.duty, false);
-  watch.add(pumpsOf(asPipes).throttled(1, flow), 1, Number.NaN);
-  return watch.watched().main!.maxVelocityMs!;
-}
+const velocity = (flow: number) => mainVelocity(asPipes, flow);
 /** Friction per v² in m/(m/s)². */
 const perVelocitySquared = asPipes.friction.at(GPM) / velocity(GPM) ** 2;
 

@@ -106,16 +106,19 @@ function topicText(topic: Topic): string {
   const groups = groupsOf(topic).map((group) => {
     const { source, kind, why } = group;
     const [head, ...rows] = tableOf(group);
-    return `*${kind}*: ${source}.${why === null ? '' : ` Allowed: ${why}.`}\n\n${markdown(head!, rows)}`;
+    return `*${kind}*: ${plain(source)}.${why === null ? '' : ` Allowed: ${plain(why)}.`}\n\n${markdown(head!, rows)}`;
   });
   const count = topic.checks.length === 1 ? '1 check' : `${topic.checks.length} checks`;
   return [`### ${topic.heading}`, `<details><summary>${count}</summary>`, ...groups, '</details>'].join('\n\n');
 }
 
+/** Text that Markdown shows as it stands. */
+const plain = (text: string) => text.replace(/[|*<]/g, '\\$&');
+
 const WORDS = ['what', 'unit', 'why', 'checks'];
 
 function markdown(head: readonly string[], rows: readonly (readonly string[])[]): string {
-  const line = (row: readonly string[]) => `| ${row.map((cell) => cell.replaceAll('|', '\\|')).join(' | ')} |`;
+  const line = (row: readonly string[]) => `| ${row.map(plain).join(' | ')} |`;
   const rule = head.map((name) => (WORDS.includes(name) ? '---' : '---:'));
   return [line(head), `|${rule.join('|')}|`, ...rows.map(line)].join('\n');
 }

@@ -3,7 +3,7 @@ import { energyKwh, type FileUnits, HORSEPOWER, US_GALLON } from '../../server/u
 import { halfDigit, type OutsideCheck } from './check.ts';
 import { PUMPWORLD } from './parallel.ts';
 import { TABLE_CURVE } from './pumps.ts';
-import { GPM, LOSSLESS, stationOf, together, trimmed, US } from './stations.ts';
+import { GPM, LOSSLESS, pumpsOf, stationOf, together, trimmed, US } from './stations.ts';
 
 /**
  * Static head, speed and power together. No published example was found that has all three, so closed forms and a solver
@@ -63,6 +63,53 @@ const closedForms = (
     { ...common, what: `Energy per volume ${where}`, printed: kwh, unit: 'kWh/m³', ours: () => perVolume(at()) },
   ];
 });
+
+const oneSlowed = (
+  [
+    [6, 100, 0.80969087, 24.93814776],
+    [12, 85, 0.84760555, 24.63446358],
+    [18, 70, 0.90512583, 24.84978783],
+  ] as const
+).flatMap(([staticHead, flow, speed, kw]): OutsideCheck[] => {
+  const one = () => pumpsOf(parabolas(staticHead)).oneTrimmed(2, flow * 1e-3)!;
+  const where = `of two pumps at ${flow} L/s against ${staticHead} m of static head, one at full speed`;
+  const common = {
+    kind: 'closed form',
+    source:
+      'the same pumps: the one at full speed gives q1 = √((H0 − H)/(a + k_b)) into the header at H = H_st + k·Q², the other q2 = Q − q1 at s = √((H + (a + k_b)·q2²)/H0); worked outside this project',
+    allowed: halfDigit(8),
+    why: 'half of the last digit worked out',
+  } as const;
+  return [
+    { ...common, what: `Speed ratio of the other ${where}`, printed: speed, unit: '–', ours: () => one().speed },
+    { ...common, what: `Electric power ${where}`, printed: kw, unit: 'kW', ours: () => one().state().power / 1000 },
+  ];
+});
+
+/** Two pumps at full speed that a valve holds to 80 L/s against 12 m. */
+const throttled = () => pumpsOf(parabolas(12)).throttled(2, 0.08);
+
+const ledger = (
+  [
+    ['Electric power', 28.64673337, () => throttled().power],
+    ['Power that lifts the water', 9.39743811, () => throttled().parts.lift],
+    ['Power lost in the common pipe', 5.01196699, () => throttled().parts.pipeFriction],
+    ['Power lost in the branches', 0.25059835, () => throttled().parts.branch],
+    ['Power burnt in the valve', 5.07461658, () => throttled().parts.valve],
+  ] as const
+).map(
+  ([what, printed, watts]): OutsideCheck => ({
+    kind: 'closed form',
+    source:
+      'the same pumps throttled at full speed: P = ρ·g·Q·h(q)/(η(q)·η_motor), ρ·g·Q·H_st, ρ·g·k·Q³, 2·ρ·g·k_b·q³, ρ·g·Q·(h(q) − k_b·q² − H_st − k·Q²); worked outside this project',
+    what: `${what} of two pumps throttled to 80 L/s against 12 m`,
+    printed,
+    unit: 'kW',
+    ours: () => watts() / 1000,
+    allowed: halfDigit(8),
+    why: 'half of the last digit worked out',
+  }),
+);
 
 const SOLVER =
   'twelve points of the Hydraulic Institute, I.B, on 100 ft + 12 ft·(Q/1000 gpm)^1.852, motor 0.94, drive 0.965, 998.2 kg/m³; scipy 1.17, PchipInterpolator and brentq';
@@ -179,4 +226,11 @@ const different = (
 );
 
 /** Speed and power where static head counts. */
-export const TRIMMING: readonly OutsideCheck[] = [...closedForms, ...fullSpeed, ...trims, ...different];
+export const TRIMMING: readonly OutsideCheck[] = [
+  ...closedForms,
+  ...oneSlowed,
+  ...ledger,
+  ...fullSpeed,
+  ...trims,
+  ...different,
+];
