@@ -10,7 +10,7 @@ const HELP = `npm run --silent accuracy -- [--write]
 Prints every check against an outside figure: what it is, where it is from, the figure printed there, ours, the
 difference, what is allowed and why.
 
-  --write   also renews the last section of README.md
+  --write   also renews the last section of README.md, where no check fails
   --help    this text
 
 Exit code 0 where all differences are within what is allowed, 1 otherwise.
@@ -30,11 +30,11 @@ runCommand(HELP, { values: [], switches: ['write'] }, (given) => {
   const rows = topics.flatMap(({ groups }) => groups).flatMap((group) => group.rows);
   const failed = rows.filter(({ passes }) => !passes);
   process.stdout.write(`\n${rows.length} checks, ${failed.length} failed\n`);
-  for (const { check, ours } of failed) {
-    process.stderr.write(`${check.what} (${check.source}): printed ${check.printed}, ours ${ours}\n`);
+  for (const { check, ours, error } of failed) {
+    process.stderr.write(`${check.what} (${check.source}): printed ${check.printed}, ours ${error ?? ours}\n`);
   }
   if (failed.length > 0) process.exitCode = 1;
-  if (given.write === true) {
+  else if (given.write === true) {
     const readme = new URL('../README.md', import.meta.url);
     writeFileSync(readme, withSection(readFileSync(readme, 'utf8'), section(TOPICS)));
   }

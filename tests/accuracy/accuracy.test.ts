@@ -8,8 +8,10 @@ describe.each(TOPICS)('$heading', ({ checks }) => {
   const named = checks.map((check) => [`${check.what} (${check.source})`, check] as const);
 
   it.each(named)('%s', (_, check) => {
-    const { ours, passes } = found(check);
-    expect(passes, `ours ${ours} ${check.unit}, printed ${check.printed}, allowed ±${check.allowed}`).toBe(true);
+    const { ours, error, passes } = found(check);
+    expect(passes, `ours ${error ?? ours} ${check.unit}, printed ${check.printed}, allowed ±${check.allowed}`).toBe(
+      true,
+    );
   });
 
   it('says of each figure what it is, whose, and why it may differ', () => {
@@ -57,6 +59,10 @@ describe('the table', () => {
     expect(found(check).passes).toBe(true);
     expect(found({ ...check, allowed: 0.003 }).passes).toBe(false);
     expect(found({ ...check, ours: () => Number.NaN }).passes).toBe(false);
+    const broken = () => {
+      throw new Error('no such pump');
+    };
+    expect(found({ ...check, ours: broken })).toMatchObject({ passes: false, error: 'Error: no such pump' });
   });
 
   it('says once what neighbours share, and each reason where they differ', () => {

@@ -195,17 +195,9 @@ const divisors: readonly OutsideCheck[] = [
 ];
 
 /** Crane's pump: 700 gpm, 428 ft, 62.364 lb/ft³, pump 70.7 %, motor 95 %, drive 96 %. */
-const crane = duty({
-  units: US,
-  flow: 700,
-  head: 428,
-  efficiency: 70.7 / 100,
-  density: (62.364 * POUND) / FOOT ** 3,
-  motor: 0.95,
-  drive: 0.96,
-});
-const cranePump = crane.duty[0]!;
-const craneElectric = () => cranePump.electric(700 * GPM, 1, true);
+const CRANE_WATER = { units: US, flow: 700, head: 428, efficiency: 70.7 / 100, density: (62.364 * POUND) / FOOT ** 3 };
+const craneShaft = duty(CRANE_WATER);
+const crane = duty({ ...CRANE_WATER, motor: 0.95, drive: 0.96 });
 const NOTEBOOK = 'Crane TP-410, problem 7.34, as C. Bell, fluids, works it (notebook 7.34, commit 091070e)';
 
 /** 8000 h of it, on its drive, at 0.12 per kWh. */
@@ -228,11 +220,7 @@ const craneChecks: readonly OutsideCheck[] = [
     source: NOTEBOOK,
     printed: 107.05591309,
     unit: 'hp',
-    ours: () => {
-      const parts = { water: 0, pumpLoss: 0, motorLoss: 0, driveLoss: 0 };
-      cranePump.addPowers(parts, 1, 700 * GPM, 1, true);
-      return (parts.water + parts.pumpLoss) / HORSEPOWER;
-    },
+    ours: () => craneShaft.duty[0]!.electric(700 * GPM, 1, false) / HORSEPOWER,
     allowed: halfDigit(8),
     why: PRINTED,
   },
@@ -242,7 +230,7 @@ const craneChecks: readonly OutsideCheck[] = [
     source: NOTEBOOK,
     printed: 117.38586962,
     unit: 'hp',
-    ours: () => craneElectric() / HORSEPOWER,
+    ours: () => crane.duty[0]!.electric(700 * GPM, 1, true) / HORSEPOWER,
     allowed: halfDigit(8),
     why: PRINTED,
   },

@@ -4,17 +4,28 @@ import type { Kind, OutsideCheck } from './check.ts';
 /** A check and what came of it. */
 export interface Found {
   readonly check: OutsideCheck;
+  /** NaN where it could not be worked out; then the reason is in `error`. */
   readonly ours: number;
+  readonly error: string | null;
   /** Ours less printed. */
   readonly difference: number;
   readonly passes: boolean;
 }
 
-/** Whether ours is near enough; what is not a number never is. */
+/** Whether ours is near enough; what is no number, or cannot be worked out, never is. */
 export function found(check: OutsideCheck): Found {
-  const ours = check.ours();
+  const { ours, error } = workedOut(check);
   const difference = ours - check.printed;
-  return { check, ours, difference, passes: Math.abs(difference) <= check.allowed };
+  return { check, ours, error, difference, passes: Math.abs(difference) <= check.allowed };
+}
+
+/** One figure that cannot be worked out must not keep the others from being shown. */
+function workedOut(check: OutsideCheck): { ours: number; error: string | null } {
+  try {
+    return { ours: check.ours(), error: null };
+  } catch (error) {
+    return { ours: Number.NaN, error: String(error) };
+  }
 }
 
 /** Neighbours that share their source and kind, so that these are said once above them. */
