@@ -47,13 +47,22 @@ export interface Moment {
 /**
  * Advice for one moment: the set, its speeds and power, the next best, and the warnings.
  *
- * @throws InputError for a flow or static head below 0, or a level where the station does not know the other side
+ * @throws InputError for a flow or static head below 0, a level where the station does not know the other side, or both
  */
 export function advise(station: Station, moment: Moment): HandedAdvice {
   const flowUnit = FLOW_UNITS[station.units.flow];
   const headUnit = HEAD_UNITS[station.units.head];
   if (!(moment.flow >= 0)) {
     refuse({ code: 'negative_flow', file: 'request', at: 'flow', found: `${moment.flow}`, wanted: '0 or more' });
+  }
+  if (moment.level !== undefined && moment.staticHead !== undefined) {
+    refuse({
+      code: 'unknown_field',
+      file: 'request',
+      at: 'level',
+      found: 'a level beside staticHead',
+      wanted: 'one of the two',
+    });
   }
   const staticHead = headOf(station, moment, headUnit);
   const duty = dutyWithout(station, moment.without ?? []);

@@ -114,18 +114,42 @@ export function readAs<T>(schema: z.ZodType<T>, value: unknown, file: string): T
 export function parseJson(text: string, file: string): unknown {
   try {
     return JSON.parse(text.replace(/^\uFEFF/, ''));
-  } catch (error) {
-    const message = error instanceof Error ? error.message : String(error);
-    const position = /position (\d+)/.exec(message);
-    const line = position ? text.slice(0, Number(position[1])).split('\n').length : null;
+  } catch {
     throw new InputError([
       {
         code: 'not_json',
         file,
-        at: line === null ? '' : `line ${line}`,
+        at: text.trim() === '' ? '' : `line ${text.slice(0, endOfJson(text)).split('\n').length}`,
         found: text.trim() === '' ? 'an empty file' : 'text that is not JSON',
         wanted: 'JSON',
       },
     ]);
   }
+}
+
+/**
+ * How much of a text that is no JSON could still have become JSON: up to the character at which it cannot. Engines name
+ * the place in some of their messages and not in others, so it is found by halving.
+ */
+function endOfJson(text: string): number {
+  const hopeless = (length: number): boolean => {
+    const head = text.slice(0, length).replace(/^\uFEFF/, '');
+    try {
+      JSON.parse(head);
+      return false;
+    } catch (error) {
+      const message = error instanceof Error ? error.message : '';
+      const position = Number(/position (\d+)/.exec(message)?.[1] ?? Number.NaN);
+      return !/end of JSON|Unterminated/.test(message) && position !== head.length;
+    }
+  };
+  if (!hopeless(text.length)) return text.trimEnd().length;
+  let good = 0;
+  let bad = text.length;
+  while (bad - good > 1) {
+    const middle = Math.floor((good + bad) / 2);
+    if (hopeless(middle)) bad = middle;
+    else good = middle;
+  }
+  return good;
 }

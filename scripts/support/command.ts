@@ -57,13 +57,24 @@ function readArguments(values: readonly string[], switches: readonly string[], o
   const refused = (found: string): never =>
     refuse({ code: 'bad_option', file: 'arguments', at: '', found, wanted: 'the options of --help' });
   try {
-    const { values: given, positionals } = parseArgs({ options, allowPositionals: operand });
+    const { values: given, positionals } = parseArgs({ args: withNegatives(), options, allowPositionals: operand });
     if (positionals.length > 1) refused(`'${positionals[1]}'`);
     return positionals[0] === undefined ? given : { ...given, operand: positionals[0] };
   } catch (error) {
     if (!(error instanceof TypeError)) throw error;
     return refused(error.message.split('\n')[0]!);
   }
+}
+
+/** What was typed, with `--level -2` as `--level=-2`: a number below 0 is a value and no option. */
+function withNegatives(): string[] {
+  const words: string[] = [];
+  for (const word of process.argv.slice(2)) {
+    const option = words.at(-1);
+    if (/^-[\d.]/.test(word) && option?.startsWith('--') && !option.includes('=')) words.push(`${words.pop()}=${word}`);
+    else words.push(word);
+  }
+  return words;
 }
 
 /** The value of an option that must be there. */

@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { type Fault, InputError, type Note } from '../errors.ts';
+import { parseJson } from '../readFile.ts';
 import { DAY_MS, HOUR_MS, instantsOfWallClock, isTimeZone, offsetSpans, SECOND_MS } from '../time.ts';
 import { FLOW_UNITS, type FlowUnit } from '../units.ts';
 import type { Log } from './log.ts';
@@ -167,13 +168,7 @@ function checked({ fileName, text, timeZone }: ProfileInput): Profile {
   const add = (code: Fault['code'], at: string, found: string, wanted: string): void => {
     faults.push({ code, file: fileName, at, found, wanted });
   };
-  let json: unknown;
-  try {
-    json = JSON.parse(text);
-  } catch (error) {
-    add('not_json', '', error instanceof Error ? error.message : 'a broken text', 'JSON');
-    throw new InputError(faults);
-  }
+  const json = parseJson(text, fileName);
   const format = (json as { format?: unknown }).format;
   if (format !== 'nth-pump/profile/1') {
     add('unknown_format', 'format', shown(format), "'nth-pump/profile/1', or a CSV file");

@@ -12,7 +12,14 @@ import { readDriveEfficiency, readMotorEfficiency } from './readPartLoad.ts';
 import { readPipes } from './readPipes.ts';
 import { readNpshCurve, readSuction } from './readSuction.ts';
 import type { Main, Station } from './station.ts';
-import { type CurveEntry, type PartLoadEntry, type PumpEntry, type StationFile, stationFile } from './stationFile.ts';
+import {
+  type CurveEntry,
+  type PartLoadEntry,
+  type PumpEntry,
+  STATION_FORMAT,
+  type StationFile,
+  stationFile,
+} from './stationFile.ts';
 import { type Storage, volumeAt } from './storage.ts';
 
 /**
@@ -29,6 +36,7 @@ const USUAL_PREFERRED = { from: 0.7, to: 1.2 };
  * @throws          InputError with every fault found, each with its field path
  */
 export function readStation(value: unknown, fileName: string): Station {
+  refuseOtherFormat(value, fileName);
   const file = readAs(stationFile, value, fileName);
   const faults: Fault[] = [];
   const temperature = file.liquid?.temperature ?? (file.liquid?.density === undefined ? 15 : null);
@@ -82,6 +90,15 @@ export function readStation(value: unknown, fileName: string): Station {
     },
     notes: reading.notes,
   };
+}
+
+/** A file of another kind has one fault, not one for each of its fields. */
+function refuseOtherFormat(value: unknown, file: string): void {
+  const format = typeof value === 'object' && value !== null && 'format' in value ? value.format : undefined;
+  if (format === undefined || format === STATION_FORMAT) return;
+  throw new InputError([
+    { code: 'unknown_format', file, at: 'format', found: shown(format), wanted: shown(STATION_FORMAT) },
+  ]);
 }
 
 /** The static head of the file stands; where its two levels give another, that is said. */

@@ -5,6 +5,8 @@ import { z } from 'zod';
  * `readStation` checks what the numbers mean.
  */
 
+export const STATION_FORMAT = 'nth-pump/station/1';
+
 /** No quantity of a station is larger in any of the units; beyond it the arithmetic would overflow. */
 const LARGEST = 1e12;
 
@@ -132,7 +134,7 @@ const range = z
 const levelRange = z.strictObject({ start: level, stop: level });
 
 export const stationFile = z.strictObject({
-  format: z.literal('nth-pump/station/1'),
+  format: z.literal(STATION_FORMAT),
   name: z.string().min(1),
   timeZone: z.string(),
   currency: z.string().regex(/^[A-Z]{3}$/, 'a currency code of three capitals, such as EUR'),

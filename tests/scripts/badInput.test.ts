@@ -146,6 +146,16 @@ const SPOILT: readonly (readonly [string, (files: Files) => void, ...string[]])[
     'station.json timeZone: found',
     'station.json pumps[0].curve.bestFlow: found',
   ],
+  [
+    'a file of another kind',
+    station({ format: 'nth-pump/tariff/1' }),
+    'station.json format: found "nth-pump/tariff/1"; wanted "nth-pump/station/1"',
+  ],
+  [
+    'a profile that is cut off',
+    record(() => '{\n"format": "nth-pump/profile/1",'),
+    'record.csv line 2: found text that is not JSON; wanted JSON',
+  ],
   // B
   [
     'a start below a stop',
@@ -476,6 +486,38 @@ it.each(CASES)('$what: a line each in the terminal, with exit code 2', async ({ 
 it.each(CASES)('$what: the same lines over HTTP, with nothing stored', async ({ what, change, lines }) => {
   const { status, type, lines: found, before } = await overHttp(spoilt(change));
   expect(found).toEqual(startsWith(APART.has(what) ? lines.map((line) => line.replace(/\.\w+/, '')) : lines));
-  expect([status, type]).toEqual([422, 'application/problem+json']);
+  // Text that is no JSON cannot be read at all, which is a fault of the request.
+  expect([status, type]).toEqual([lines[0]!.includes('not JSON') ? 400 : 422, 'application/problem+json']);
   expect(rowCounts(api.db)).toEqual(before);
+});
+
+it.each([
+  ['a comma too many', '{\n  "name": "x",\n}', 'line 3'],
+  ['a word that is none', '{\n  "name": "x",\n  "count": NaN\n}', 'line 3'],
+  ['an end too early', '{\n  "name": "x",\n  "pumps": [\n', 'line 3'],
+  ['a quote left open', '{\n  "name": "x\n}', 'line 2'],
+  ['something after the end', '{}\n\n{}', 'line 3'],
+])('JSON with %s is refused with its line', async (_, text, line) => {
+  writeFileSync(join(folder, 'broken.json'), text);
+  const ended = await commandHere('staging', ['--station', join(folder, 'broken.json')]);
+  expect(ended).toMatchObject({ code: 2, stderr: `broken.json ${line}: found text that is not JSON; wanted JSON\n` });
+  const { status, body } = await api.http.post('/api/stations').set('Content-Type', 'application/json').send(text);
+  expect([status, body.errors]).toEqual([400, [line]]);
+});
+
+it.each([
+  [['--flow', '-5'], 'request flow: found -5; wanted 0 or more'],
+  [['--flow', '50', '--static-head', '-2'], 'request staticHead: found a static head of -2.000; wanted 0 or more'],
+  [['--flow', '50', '--level', '-2'], 'request level: found a level; wanted system.dischargeLevel in the station'],
+  [
+    ['--flow', '50', '--level', '2', '--static-head', '12'],
+    'request level: found a level beside staticHead; wanted one of the two',
+  ],
+  [['--flow', 'much'], "arguments --flow: found 'much'; wanted a number"],
+  [['--flow', '50', '--without', 'P-3'], "without: found 'P-3'; wanted one of P-1, P-2"],
+])('advice %j is refused in one line', async (args, line) => {
+  writeFileSync(join(folder, 'station.json'), JSON.stringify(aStationFile()));
+  const ended = await commandHere('advice', ['--station', join(folder, 'station.json'), ...args]);
+  expect(ended.stderr.trimEnd().split('\n')).toEqual(startsWith([line]));
+  expect([ended.code, ended.stdout]).toEqual([2, '']);
 });
