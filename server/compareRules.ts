@@ -32,7 +32,7 @@ export interface StoredComparisonRequest {
 }
 
 /** Raised whenever the arithmetic changes, so that a stored result is not taken for one of today's. */
-const EDITION = 1;
+const EDITION = 2;
 
 /** Comparisons stored for one station: as many as an afternoon of what-ifs. */
 const KEPT_PER_STATION = 300;

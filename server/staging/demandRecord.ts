@@ -61,7 +61,7 @@ export function demandRecord(station: Station, log: Log): DemandRecord {
   }
   const fromMs = log.startMs[0]!;
   const toMs = log.startMs[all - 1]! + log.seconds[all - 1]! * 1000;
-  const { heads, note } = staticHeads(station, log, pick);
+  const { heads, notes } = staticHeads(station, log, pick);
   if (typeof heads !== 'number') refuseNegative(heads, startMs);
   return {
     startMs,
@@ -74,7 +74,7 @@ export function demandRecord(station: Station, log: Log): DemandRecord {
     coveredSeconds: covered,
     gapSeconds: Math.max(0, (toMs - fromMs) / 1000 - covered),
     volume,
-    notes: note ? [note] : [],
+    notes,
   };
 }
 
@@ -82,25 +82,42 @@ function staticHeads(
   station: Station,
   log: Log,
   pick: (channel: Float64Array) => Float64Array,
-): { heads: Float64Array | number; note: Note | null } {
+): { heads: Float64Array | number; notes: Note[] } {
   const fallback = station.staticHead;
-  const orStation = (value: number) => (Number.isNaN(value) ? fallback : value);
-  if (log.staticHead) {
-    return {
-      heads: pick(log.staticHead).map(orStation),
-      note: { code: 'static-head-from-record', text: 'The static head of each interval is that of the record.' },
-    };
-  }
   const suction = station.storage.side === 'suction';
   const other = suction ? station.dischargeLevel : station.suctionLevel;
-  if (!log.level || other === null) return { heads: fallback, note: null };
-  return {
-    heads: pick(log.level).map((level) => orStation(suction ? other - level : level - other)),
-    note: {
-      code: 'static-head-from-level',
-      text: `The static head of each interval follows the record's level on the ${station.storage.side} side.`,
-    },
-  };
+  const given = log.staticHead && pick(log.staticHead);
+  const levels = log.level && other !== null ? pick(log.level) : null;
+  if (!given && !levels) return { heads: fallback, notes: [] };
+  const used = { record: 0, level: 0, station: 0 };
+  const heads = (given ?? levels!).map((_, i) => {
+    const head = given?.[i] ?? Number.NaN;
+    const level = levels?.[i] ?? Number.NaN;
+    if (!Number.isNaN(head)) used.record++;
+    else if (!Number.isNaN(level)) used.level++;
+    else used.station++;
+    if (!Number.isNaN(head)) return head;
+    if (Number.isNaN(level)) return fallback;
+    return suction ? other! - level : level - other!;
+  });
+  return { heads, notes: headNotes(used, station.storage.side) };
+}
+
+/** Where the static heads come from; of several sources, each with its share of the intervals. */
+function headNotes(used: { record: number; level: number; station: number }, side: string): Note[] {
+  const all = used.record + used.level + used.station;
+  const which = (part: number) => (part === all ? 'each interval' : `${part} of ${all} intervals`);
+  const rest = used.station > 0 ? ` In ${used.station} it is that of the station file, since the record has none.` : '';
+  const notes: Note[] = [];
+  if (used.record > 0) {
+    const text = `The static head of ${which(used.record)} is that of the record.${rest}`;
+    notes.push({ code: 'static-head-from-record', text });
+  }
+  if (used.level > 0) {
+    const text = `The static head of ${which(used.level)} follows the record's level on the ${side} side.`;
+    notes.push({ code: 'static-head-from-level', text: used.record > 0 ? text : `${text}${rest}` });
+  }
+  return notes;
 }
 
 function suctionLevels(
