@@ -6,9 +6,9 @@ import { MixedPumps } from '../../server/staging/mixedPumps.ts';
 import { ruleOf } from '../../server/staging/rules/all.ts';
 import { runRule } from '../../server/staging/run.ts';
 import { stagedPumps } from '../../server/staging/stagedPumps.ts';
-import type { State } from '../../server/staging/state.ts';
+import type { Action } from '../../server/staging/state.ts';
 import { readStation } from '../../server/station/readStation.ts';
-import type { Station } from '../../server/station/station.ts';
+import { dutyPumpsAreEqual, type Station } from '../../server/station/station.ts';
 import type { StationFile } from '../../server/station/stationFile.ts';
 import { dice, ENDURE, madeStation, seeds } from '../support/madeStations.ts';
 import { PlainStation } from '../support/plainModel.ts';
@@ -109,24 +109,42 @@ function expectLeast(day: Day, ways: Ways): void {
     seconds: log.seconds[i]!,
     ways: flow === 0 ? OFF : ways(flow, log.seconds[i]!),
   }));
-  const states: State[] = [];
+  const actions: Action[] = [];
   const { totals } = runRule(
     ruleOf('steady')!,
     stagedPumps(station, station.duty),
     demandRecord(station, log),
-    (i, { high }) => {
-      states[i] = high;
+    (i, action) => {
+      actions[i] = action;
     },
   );
   // Where nothing else may run, what runs is told by the interval, not by the pumps that deliver.
-  const chosen = intervals.map(({ ways: all }, i) => (all.size === 1 ? [...all.keys()][0]! : states[i]!.set));
+  const chosen = intervals.map(({ ways: all }, i) => (all.size === 1 ? [...all.keys()][0]! : actions[i]!.high.set));
   const least = leastSequence(intervals, station.steady);
   const priced = leastSequence(intervals, station.steady, chosen);
   expect(priced, `${where}: the sequence is allowed`).not.toBeNull();
   expect(priced! / least!, `${where}: no sequence is cheaper`).toBeLessThan(1 + CLOSE);
   const standby = station.standbyPower * log.seconds.reduce((sum, each) => sum + each, 0);
-  const spent = totals.energyKwh * 3.6e6 - standby + station.steady.startPenalty * totals.starts!;
+  const starts = startsOf(day, intervals, actions);
+  const spent = totals.energyKwh * 3.6e6 - standby + station.steady.startPenalty * starts;
   expect(Math.abs(spent / priced! - 1), `${where}: ${spent} J for ${priced} J`).toBeLessThan(CLOSE);
+  if (dutyPumpsAreEqual(station.duty)) expect(totals.starts! - starts, where).toBeCloseTo(0, 6);
+}
+
+/** Starts pump by pump: those that did not run to the end of the interval before, and those that cycle within one. */
+function startsOf({ station, log }: Day, intervals: readonly Interval[], actions: readonly Action[]): number {
+  let starts = 0;
+  actions.forEach(({ low, high, share }, i) => {
+    const before = intervals[i - 1];
+    const adjacent = before && before.start + before.seconds > intervals[i]!.start - 0.5;
+    if (adjacent) starts += risen(actions[i - 1]!.low.set, low.set);
+    if (share > 0) starts += cycling(station, risen(low.set, high.set), high.flow, log.flow![i]!, log.seconds[i]!);
+  });
+  return starts;
+}
+
+function risen(from: number, to: number): number {
+  return Array.from({ length: 8 }, (_, pump) => 2 ** pump).filter((bit) => (to & bit) > (from & bit)).length;
 }
 
 /** A day of hours, and in the long run one of quarters of an hour as well. */
