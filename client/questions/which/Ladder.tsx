@@ -45,7 +45,7 @@ export function Ladder({ card, mains, pressure }: LadderProps) {
   return (
     <div
       class={`ladder ${many} ${card.sets.length > 0 ? 'of-sets' : ''}`}
-      style={{ '--steps': String(Math.max(1, rungs.length)) }}
+      style={{ '--steps': String(Math.max(1, card.sets.length > 0 ? zones.length : rungs.length)) }}
     >
       <div class="rail-of-flow" aria-hidden="true">
         <span class="end top">{sayFlow(ladder.top)}</span>
