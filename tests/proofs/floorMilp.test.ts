@@ -48,7 +48,7 @@ function expectWithin(power: number, { least, most }: Bounds, where: string, tol
   expect.soft(power / most, `not above what the program found, ${where}`).toBeLessThan(1 + tolerance);
 }
 
-const equal = cases(seeds(10, 500), false, 1);
+const equal = cases(seeds(6, 500), false, 1);
 const mixed = cases(seeds(5, 80), true, ENDURE ? 2 : 1);
 
 describe.each([
