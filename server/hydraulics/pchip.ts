@@ -1,3 +1,5 @@
+import { Ascending } from './ascending.ts';
+
 /**
  * Monotone piecewise cubic Hermite interpolation: where the data rise, fall or stand still, so does the curve.
  * Slopes: F. N. Fritsch and J. Butland, "A method for constructing local monotone piecewise cubic interpolants",
@@ -11,12 +13,14 @@ export class Pchip {
   /** Of each segment y = y0 + t·(d0 + t·(c2 + t·c3)), t from its left end. */
   private readonly c2: Float64Array;
   private readonly c3: Float64Array;
+  private readonly knots: Ascending;
 
   /** @param x  strictly rising, two values or more; @param y  of the same length */
   constructor(x: readonly number[], y: readonly number[]) {
     this.x = Float64Array.from(x);
     this.y = Float64Array.from(y);
     this.slope = Float64Array.from(slopes(x, y));
+    this.knots = new Ascending(this.x);
     const segments = x.length - 1;
     this.c2 = new Float64Array(segments);
     this.c3 = new Float64Array(segments);
@@ -32,14 +36,7 @@ export class Pchip {
 
   /** Index of the segment that holds v; the first and last segments also hold what lies outside. */
   segment(v: number): number {
-    let low = 0;
-    let high = this.x.length - 1;
-    while (high - low > 1) {
-      const middle = (low + high) >> 1;
-      if (this.x[middle]! <= v) low = middle;
-      else high = middle;
-    }
-    return low;
+    return this.knots.segment(v);
   }
 
   at(v: number): number {

@@ -30,12 +30,11 @@ export interface Machine {
   readonly npshr?: NpshCurve | null;
 }
 
-/** Where the electric power of a pump goes [W]; the water's share is ρ·g·q·H. */
-export interface PumpPower {
-  water: number;
-  pumpLoss: number;
-  motorLoss: number;
-  driveLoss: number;
+/** What pump, motor and drive lose [W]; the water gets ρ·g·q·H. */
+export interface Losses {
+  pump: number;
+  motor: number;
+  drive: number;
 }
 
 /**
@@ -182,12 +181,12 @@ export class Pump {
     return sum;
   }
 
-  /** The same power, told apart into what the water gets and what pump, motor and drive lose; adds to `into`. */
-  addPowers(into: PumpPower, count: number, q: number, speed: number, onDrive: boolean): void {
+  /** What is lost of that power, each by its own formula; adds it `weight` times. */
+  addLosses(into: Losses, weight: number, q: number, speed: number, onDrive: boolean): void {
     for (const m of this.machines) {
       const driven = onDrive && m.drive !== null;
       const s = driven ? speed : 1;
-      const n = count * m.inSeries;
+      const n = weight * m.inSeries;
       const x = q / s;
       const head = s * s * m.curve.head(x);
       const water = this.density * GRAVITY * q * head;
@@ -196,10 +195,9 @@ export class Pump {
       const eta = m.curve.efficiency(x) * correction;
       const rated = m.motor.ratedPower ?? shaft;
       const motorLoss = lossAt(m.motor.efficiency, shaft, shaft, rated);
-      into.water += n * water;
-      into.pumpLoss += n * (q > 0 && head > 0 ? water * (1 / eta - 1) : shaft);
-      into.motorLoss += n * motorLoss;
-      if (driven) into.driveLoss += n * lossAt(m.drive!.efficiency, shaft + motorLoss, shaft, rated);
+      into.pump += n * (q > 0 && head > 0 ? water * (1 / eta - 1) : shaft);
+      into.motor += n * motorLoss;
+      if (driven) into.drive += n * lossAt(m.drive!.efficiency, shaft + motorLoss, shaft, rated);
     }
   }
 

@@ -1,4 +1,5 @@
 import { GRAVITY } from '../units.ts';
+import { Ascending } from './ascending.ts';
 import type { CurvePoint } from './curveFit.ts';
 import { Pchip } from './pchip.ts';
 
@@ -110,6 +111,13 @@ export class TableCurve implements PumpCurve {
   /** Head right of its highest point. */
   private readonly heads: Pchip;
   private readonly topFlow: number;
+  /** x/√h(x) at each knot of the head, and at the end of the curve: a pump at any speed lifts q by H where it is q/√H. */
+  private readonly reaches: Float64Array;
+  private readonly byReach: Ascending;
+  private readonly endReach: number;
+  /** The flow last asked for and its shaft power: power, overload and losses of a state ask for the same. */
+  private lastFlow = Number.NaN;
+  private lastShaft = Number.NaN;
   private readonly efficiencies: Pchip | null;
   private readonly powers: Pchip | null;
 
@@ -122,6 +130,10 @@ export class TableCurve implements PumpCurve {
     this.density = t.density;
     this.speedCorrection = t.speedCorrection;
     this.endFlow = Math.min(t.flows[t.flows.length - 1]!, t.maxFlow ?? Infinity);
+    this.reaches = reachesOf(this.heads);
+    this.byReach = new Ascending(this.reaches);
+    const endHead = this.heads.at(this.endFlow);
+    this.endReach = endHead > 0 ? this.endFlow / Math.sqrt(endHead) : Infinity;
     if (t.efficiencies) {
       const withOrigin = t.flows[0]! > 0;
       const x = withOrigin ? [0, ...t.flows] : t.flows;
@@ -151,40 +163,40 @@ export class TableCurve implements PumpCurve {
   }
 
   shaft(q: number): number {
+    if (q !== this.lastFlow) {
+      this.lastFlow = q;
+      this.lastShaft = this.shaftAt(q);
+    }
+    return this.lastShaft;
+  }
+
+  private shaftAt(q: number): number {
     if (this.powers) return this.powers.at(Math.max(q, this.powers.x[0]!));
     const flowOverEta = q > 0 ? q / this.efficiencies!.at(q) : 1 / this.efficiencies!.slope[0]!;
     return this.density * GRAVITY * this.head(q) * flowOverEta;
   }
 
   /**
-   * With x = q/s the condition reads h(x)/x² = head/q². Its left side falls strictly, so the segment is found first and
-   * Newton's method, kept inside the bracket, does the rest.
+   * With x = q/s the condition reads x/√h(x) = q/√head. Its left side rises strictly, so the segment is found first, a
+   * straight line through its ends gives a start, and Newton's method, kept inside the bracket, does the rest.
    */
   speedFor(q: number, head: number): number {
     if (q <= 0) return Math.sqrt(Math.max(0, head) / this.shutoffHead);
+    const reach = q / Math.sqrt(head);
+    if (reach <= this.reaches[0]!) return Math.sqrt(head / this.shutoffHead);
+    if (!(reach < this.endReach)) return q / this.endFlow;
+    const i = this.byReach.segment(reach);
     const wanted = head / (q * q);
-    if (wanted * this.topFlow * this.topFlow >= this.shutoffHead) return Math.sqrt(head / this.shutoffHead);
-    const end = this.endFlow;
-    if (this.head(end) >= wanted * end * end) return q / end;
-    const { x: xs, y: ys } = this.heads;
-    let first = 0;
-    let last = xs.length - 1;
-    while (last - first > 1) {
-      const middle = (first + last) >> 1;
-      const xm = xs[middle]!;
-      if (ys[middle]! >= wanted * xm * xm) first = middle;
-      else last = middle;
-    }
-    let low = xs[first]!;
-    let high = Math.min(xs[first + 1]!, end);
-    const above = ys[first]! - wanted * low * low;
-    const below = this.heads.inSegment(first, high) - wanted * high * high;
-    let x = below < 0 ? low + (high - low) * (above / (above - below)) : high;
-    for (let i = 0; i < 60; i++) {
-      const excess = this.heads.inSegment(first, x) - wanted * x * x;
+    let low = this.heads.x[i]!;
+    let high = Math.min(this.heads.x[i + 1]!, this.endFlow);
+    const reach0 = this.reaches[i]!;
+    const share = (reach - reach0) / (this.reaches[i + 1]! - reach0);
+    let x = Math.min(low + (this.heads.x[i + 1]! - low) * share, high);
+    for (let round = 0; round < 60; round++) {
+      const excess = this.heads.inSegment(i, x) - wanted * x * x;
       if (excess > 0) low = x;
       else high = x;
-      let next = x - excess / (this.heads.slopeInSegment(first, x) - 2 * wanted * x);
+      let next = x - excess / (this.heads.slopeInSegment(i, x) - 2 * wanted * x);
       if (!(next >= low && next <= high)) next = (low + high) / 2;
       const step = Math.abs(next - x);
       x = next;
@@ -193,6 +205,14 @@ export class TableCurve implements PumpCurve {
     }
     return q / x;
   }
+}
+
+/** x/√h(x) at each knot; where the last head is 0 something larger than the one before, for it only starts a search. */
+function reachesOf({ x, y }: Pchip): Float64Array {
+  const last = x.length - 1;
+  const reaches = x.map((q, i) => q / Math.sqrt(y[i]!));
+  if (!(y[last]! > 0)) reaches[last] = Math.max(4 * reaches[last - 1]!, x[last]!);
+  return reaches;
 }
 
 /** Index of the highest value; of equals the last, so that a flat top counts as one height. */

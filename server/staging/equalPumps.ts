@@ -65,8 +65,9 @@ export class EqualPumps implements StagedPumps {
     return this.askedHead;
   }
 
-  private state(count: number, flow: number, speed: number, onDrive: boolean): State {
-    return new State(this.station, this.staticHead, setOf(count), [{ pump: this.pump, count, flow, speed, onDrive }]);
+  private state(count: number, flow: number, speed: number, onDrive: boolean, power?: number): State {
+    const running = [{ pump: this.pump, count, flow, speed, onDrive }];
+    return new State(this.station, this.staticHead, setOf(count), running, power);
   }
 
   /** Flow of each of n pumps at one speed where pumps and system meet; 0 where they cannot lift the static head. */
@@ -152,14 +153,13 @@ export class EqualPumps implements StagedPumps {
   trim(count: number, flow: number): Trim {
     const trim = this.trims[count]!;
     const { pump } = this;
+    trim.rest = null;
+    trim.feasible = flow <= this.flatOut(count).flow * (1 + 1e-9);
+    if (!trim.feasible) return trim;
     const q = flow / count;
     const needed = pump.speedFor(q, this.systemHeadAt(flow) + pump.branchLoss * q * q);
-    trim.rest = null;
-    if (needed > pump.maxSpeed * (1 + 1e-12)) {
-      trim.feasible = false;
-      return trim;
-    }
-    trim.feasible = true;
+    trim.feasible = needed <= pump.maxSpeed * (1 + 1e-12);
+    if (!trim.feasible) return trim;
     const speed = Math.min(Math.max(needed, pump.minSpeed), pump.maxSpeed);
     trim.speed = speed;
     const { allowable } = this.station;
@@ -205,7 +205,7 @@ export class EqualPumps implements StagedPumps {
   /** The action that a feasible trim stands for. */
   action(trim: Trim, flow: number): Action {
     if (trim.rest) return shared(this.off, trim.rest, flow);
-    return held(this.state(trim.count, flow / trim.count, trim.speed, true));
+    return held(this.state(trim.count, flow / trim.count, trim.speed, true, trim.power));
   }
 
   /** n pumps at equal speed that give exactly Q on the system curve; null where their speed limits do not allow it. */

@@ -4,7 +4,7 @@ import type { DemandRecord } from './demandRecord.ts';
 import type { LedgerKwh } from './result.ts';
 import type { Rule } from './rule.ts';
 import type { StagedPumps } from './stagedPumps.ts';
-import type { Action, State } from './state.ts';
+import type { Action, Parts, State } from './state.ts';
 import { Watch, type Watched } from './watch.ts';
 
 /** What a rule did in each interval, by columns, and what that adds up to. */
@@ -154,13 +154,7 @@ class Tally {
   private readonly standby: number;
   private readonly volume: number | null;
   private energy = 0;
-  private lift = 0;
-  private pipeFriction = 0;
-  private branch = 0;
-  private valve = 0;
-  private pump = 0;
-  private motor = 0;
-  private drive = 0;
+  private readonly parts: Parts = { lift: 0, pipeFriction: 0, branch: 0, valve: 0, pump: 0, motor: 0, drive: 0 };
   private seconds = 0;
   private delivered = 0;
   private shortfall = 0;
@@ -214,14 +208,8 @@ class Tally {
     if (power > this.peakState) this.peakState = power;
     if (state.count === 0) return;
     this.watch.add(state, seconds, this.suctionLevel);
-    const { parts, doubts } = state;
-    this.lift += parts.lift * seconds;
-    this.pipeFriction += parts.pipeFriction * seconds;
-    this.branch += parts.branch * seconds;
-    this.valve += parts.valve * seconds;
-    this.pump += parts.pump * seconds;
-    this.motor += parts.motor * seconds;
-    this.drive += parts.drive * seconds;
+    state.addParts(this.parts, seconds);
+    const { doubts } = state;
     if (doubts.overloaded) this.overload += seconds;
     if (doubts.atEndOfCurve) this.endOfCurve += seconds;
     if (doubts.outsidePreferred) this.outsidePreferred += seconds;
@@ -262,13 +250,13 @@ class Tally {
     return {
       energyKwh: kwh(this.energy),
       ledgerKwh: {
-        lift: kwh(this.lift),
-        pipeFriction: kwh(this.pipeFriction),
-        branch: kwh(this.branch),
-        valve: kwh(this.valve),
-        pump: kwh(this.pump),
-        motor: kwh(this.motor),
-        drive: kwh(this.drive),
+        lift: kwh(this.parts.lift),
+        pipeFriction: kwh(this.parts.pipeFriction),
+        branch: kwh(this.parts.branch),
+        valve: kwh(this.parts.valve),
+        pump: kwh(this.parts.pump),
+        motor: kwh(this.parts.motor),
+        drive: kwh(this.parts.drive),
         standby: kwh(this.standby * this.seconds),
       },
       deliveredM3: this.delivered,

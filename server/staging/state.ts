@@ -1,4 +1,4 @@
-import type { Pump, PumpPower } from '../hydraulics/pump.ts';
+import type { Losses, Pump } from '../hydraulics/pump.ts';
 import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { FlowRange, Station } from '../station/station.ts';
 import { GRAVITY } from '../units.ts';
@@ -14,14 +14,11 @@ export interface Running {
 }
 
 /** Where the power goes [W], each part by its own formula (model.md §6). */
-export interface Parts {
-  readonly lift: number;
-  readonly pipeFriction: number;
-  readonly branch: number;
-  readonly valve: number;
-  readonly pump: number;
-  readonly motor: number;
-  readonly drive: number;
+export interface Parts extends Losses {
+  lift: number;
+  pipeFriction: number;
+  branch: number;
+  valve: number;
 }
 
 /** Below this share of best-efficiency flow a pump counts as near dead-head (common practice: 25 to 30 %). */
@@ -56,21 +53,27 @@ export class State {
   readonly count: number;
   readonly set: number;
   private readonly station: Station;
-  private split: Parts | null = null;
+  private parts: Parts | null = null;
+  private asked = false;
   private doubted: Doubts | null = null;
 
-  constructor(station: Station, staticHead: number, set: number, running: readonly Running[]) {
+  /** @param power  electric power of all that runs [W], where it is known already */
+  constructor(
+    station: Station,
+    staticHead: number,
+    set: number,
+    running: readonly Running[],
+    power: number = powerOf(running),
+  ) {
     this.station = station;
     this.staticHead = staticHead;
     this.set = set;
     this.running = running;
     let count = 0;
     let flow = 0;
-    let power = 0;
     for (const r of running) {
       count += r.count;
       flow += r.count * r.flow;
-      power += r.count * r.pump.electric(r.flow, r.speed, r.onDrive);
     }
     this.count = count;
     this.flow = flow;
@@ -83,31 +86,39 @@ export class State {
     return 1;
   }
 
-  get parts(): Parts {
-    if (this.split) return this.split;
+  /** Adds where the power goes, times some seconds: [J]. A state asked again keeps its parts. */
+  addParts(into: Parts, seconds: number): void {
+    if (this.parts === null && this.asked) {
+      this.parts = { lift: 0, pipeFriction: 0, branch: 0, valve: 0, pump: 0, motor: 0, drive: 0 };
+      this.addFound(this.parts, 1);
+    }
+    this.asked = true;
+    const { parts } = this;
+    if (parts === null) this.addFound(into, seconds);
+    else {
+      into.lift += parts.lift * seconds;
+      into.pipeFriction += parts.pipeFriction * seconds;
+      into.branch += parts.branch * seconds;
+      into.valve += parts.valve * seconds;
+      into.pump += parts.pump * seconds;
+      into.motor += parts.motor * seconds;
+      into.drive += parts.drive * seconds;
+    }
+  }
+
+  private addFound(into: Parts, seconds: number): void {
     const { friction, density } = this.station;
     const system = systemHead(friction, this.staticHead, this.flow);
-    const weight = density * GRAVITY;
-    let branch = 0;
-    let valve = 0;
-    const powers: PumpPower = { water: 0, pumpLoss: 0, motorLoss: 0, driveLoss: 0 };
+    const weight = seconds * density * GRAVITY;
     for (const r of this.running) {
       const branchHead = r.pump.branchLoss * r.flow * r.flow;
       const head = r.pump.head(r.flow, r.onDrive ? r.speed : 1);
-      branch += r.count * weight * r.flow * branchHead;
-      valve += r.count * weight * r.flow * (head - branchHead - system);
-      r.pump.addPowers(powers, r.count, r.flow, r.speed, r.onDrive);
+      into.branch += r.count * weight * r.flow * branchHead;
+      into.valve += r.count * weight * r.flow * (head - branchHead - system);
+      r.pump.addLosses(into, seconds * r.count, r.flow, r.speed, r.onDrive);
     }
-    this.split = {
-      lift: weight * this.flow * this.staticHead,
-      pipeFriction: weight * this.flow * friction.at(this.flow),
-      branch,
-      valve,
-      pump: powers.pumpLoss,
-      motor: powers.motorLoss,
-      drive: powers.driveLoss,
-    };
-    return this.split;
+    into.lift += weight * this.flow * this.staticHead;
+    into.pipeFriction += weight * this.flow * friction.at(this.flow);
   }
 
   /** Least and greatest share of best-efficiency flow at their speeds among the pumps that run. */
@@ -137,12 +148,14 @@ export class State {
     const { preferred, allowable } = this.station;
     let overloaded = false;
     let atEndOfCurve = false;
+    let least = Infinity;
+    let most = 0;
     for (const { pump, flow, speed, onDrive } of this.running) {
       if (pump.overload(flow, speed, onDrive) > 1 + SLACK) overloaded = true;
       if (pump.atEnd(flow, speed, onDrive)) atEndOfCurve = true;
+      least = Math.min(least, pump.leastShareOfBest(flow, speed, onDrive));
+      most = Math.max(most, pump.greatestShareOfBest(flow, speed, onDrive));
     }
-    const least = this.leastShareOfBest;
-    const most = this.greatestShareOfBest;
     return {
       overloaded,
       atEndOfCurve,
@@ -151,6 +164,12 @@ export class State {
       outsideAllowable: allowable !== null && !isInside(allowable, least, most),
     };
   }
+}
+
+function powerOf(running: readonly Running[]): number {
+  let power = 0;
+  for (const r of running) power += r.count * r.pump.electric(r.flow, r.speed, r.onDrive);
+  return power;
 }
 
 /** What a rule does in one interval: two states that share it by time (the same twice where nothing is shared). */

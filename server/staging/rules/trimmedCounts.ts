@@ -1,4 +1,6 @@
 import { BestSets } from '../bestSets.ts';
+import { Contenders } from '../contenders.ts';
+import type { DemandRecord } from '../demandRecord.ts';
 import { MixedPumps } from '../mixedPumps.ts';
 import type { Decide, Rule } from '../rule.ts';
 import type { StagedPumps, Trim } from '../stagedPumps.ts';
@@ -65,6 +67,19 @@ export const lateStaging: Rule = {
   },
 };
 
+/** Counts to work out at a flow: all of them, unless a long record of one static head makes a table worth its while. */
+function contendersOver(pumps: StagedPumps, { flow, staticHead }: DemandRecord): (flow: number) => readonly number[] {
+  if (typeof staticHead !== 'number' || flow.length < WORTH_A_TABLE) {
+    const all = Array.from({ length: pumps.most }, (_, i) => i + 1);
+    return () => all;
+  }
+  pumps.at(staticHead);
+  const contenders = new Contenders(pumps);
+  return (asked) => contenders.at(asked);
+}
+
+const WORTH_A_TABLE = 5000;
+
 /** Whether a takes less than b; the margin keeps a rounding from deciding a tie. */
 const takesLess = (a: Trim, b: Trim): boolean => a.power < b.power * (1 - 1e-12);
 
@@ -75,16 +90,17 @@ const takesLess = (a: Trim, b: Trim): boolean => a.power < b.power * (1 - 1e-12)
 export const bestCount: Rule = {
   id: 'best-count',
   drives: 'all',
-  start(pumps): Decide {
+  start(pumps, record): Decide {
     if (pumps instanceof MixedPumps) {
       const sets = new BestSets(pumps);
       return (flow) => (flow === 0 ? held(pumps.off) : (sets.best(flow) ?? flatOut(pumps, flow)));
     }
+    const contenders = contendersOver(pumps, record);
     return (flow) => {
       if (flow === 0) return held(pumps.off);
       let least: Trim | null = null;
-      for (let n = 1; n <= pumps.most; n++) {
-        const trim = pumps.trim(n, flow);
+      for (const count of contenders(flow)) {
+        const trim = pumps.trim(count, flow);
         if (trim.feasible && (least === null || takesLess(trim, least))) least = trim;
       }
       return chosen(pumps, flow, least, takesLess);
