@@ -85,8 +85,9 @@ function channels(hex: string): [number, number, number] {
 const AXIS_WIDTH = 70;
 const RIGHT = 18;
 
-/** Room behind the longest bar for what it comes to. */
-const BAR_TEXT = 84;
+/** Room behind the longest bar for what it comes to: so much a letter, and before the first. */
+const BAR_LETTER = 7.5;
+const BAR_GAP = 12;
 
 /** Power over flow: each who may run a line, heavy where it draws least, named where it ends; crossings stand on the axis. */
 export function drawCurves(canvas: HTMLCanvasElement, curves: Curves, look: Look): Drawn {
@@ -187,7 +188,7 @@ export function drawBars(canvas: HTMLCanvasElement, bars: Bars, look: Look): Dra
     },
     options: {
       indexAxis: 'y',
-      layout: { padding: { right: BAR_TEXT } },
+      layout: { padding: { right: BAR_GAP + BAR_LETTER * Math.max(...bars.bars.map(({ text }) => text.length)) } },
       scales: {
         x: {
           ...linear({ title: bars.title, min: 0, max: longest || 1 }, look),

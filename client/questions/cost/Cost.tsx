@@ -62,14 +62,19 @@ export function Cost({ open }: QuestionProps) {
   );
 }
 
+/** A smaller share than this is no difference. */
+const UNTOLD = 5e-4;
+
 function barsSentence({ weighing, least, today, rules }: Weighed, format: Format): string {
   const measure = weighing === 'money' ? format.money : format.energy;
   const verb = weighing === 'money' ? 'costs' : 'takes';
   if (rules.length === 1) {
     return `${sentence(ruleName(least.rule.rule))} ${verb} ${format.say(measure, least.perYear)} a year`;
   }
+  if (today.perYear - least.perYear < UNTOLD * least.perYear) {
+    return `${sentence(asRun(today.rule.rule))} it ${verb} as little as under any other rule`;
+  }
   const above = format.say(measure, today.perYear - least.perYear);
-  if (least === today) return `${sentence(ruleName(least.rule.rule))} ${verb} least of ${rules.length} rules`;
   return `${sentence(ruleName(least.rule.rule))} ${verb} least; ${asRun(today.rule.rule)} it is ${above} a year more`;
 }
 

@@ -58,9 +58,7 @@ export function LedgerBars({ rules, today, floorKwh }: LedgerBarsProps) {
                   <span style={{ width: percent(above.from) }} />
                   <i class="part above" style={{ width: percent(above.share) }} />
                   <b>
-                    {aboveFloor(rule) === 0
-                      ? 'the least possible'
-                      : `${format.say(format.percent, aboveFloor(rule))} above`}
+                    {aboveFloor(rule) === 0 ? 'the least' : `${format.say(format.percent, aboveFloor(rule))} above`}
                   </b>
                 </div>
               )}

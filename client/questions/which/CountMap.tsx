@@ -2,6 +2,7 @@ import { useEffect, useMemo, useState } from 'preact/hooks';
 import type { BestCountMap } from '../../../server/staging/bestCountMap.ts';
 import { api, linesOf } from '../../api.ts';
 import { usePage } from '../../context.ts';
+import { useMedia } from '../../hooks.ts';
 import { Exhibit } from '../../parts/Exhibit.tsx';
 import { Table } from '../../parts/Table.tsx';
 import { niceTicks } from '../../series.ts';
@@ -44,7 +45,7 @@ function Loaded({ comparisonId, most }: { readonly comparisonId: number; readonl
   return map ? <MapPicture map={map} most={most} /> : <p role="status">Drawing the map…</p>;
 }
 
-const WIDTH = 760;
+const WIDTH = { wide: 760, narrow: 420 };
 const HEIGHT = 380;
 const LEFT = 64;
 const BOTTOM = 48;
@@ -59,6 +60,8 @@ const LARGEST_DOT = 8;
 function MapPicture({ map, most: pumpsThere }: { readonly map: BestCountMap; readonly most: number }) {
   const most = map.sets.length > 0 ? map.sets.length : pumpsThere;
   const { format } = usePage();
+  const narrow = useMedia('(max-width: 48rem)');
+  const width = WIDTH[narrow ? 'narrow' : 'wide'];
   const title = mapSentence(map, format);
   const drawn = useMemo(() => {
     const cell = cellOf(map);
@@ -66,7 +69,7 @@ function MapPicture({ map, most: pumpsThere }: { readonly map: BestCountMap; rea
     const top = map.flowM3s.at(-1)! + cell.flow / 2;
     const lowest = map.staticHeadM[0]! - cell.head / 2;
     const highest = map.staticHeadM.at(-1)! + cell.head / 2;
-    const x = (flow: number) => LEFT + ((WIDTH - LEFT - RIGHT) * flow) / top;
+    const x = (flow: number) => LEFT + ((width - LEFT - RIGHT) * flow) / top;
     const y = (head: number) => HEIGHT - BOTTOM - ((HEIGHT - BOTTOM - TOP) * (head - lowest)) / (highest - lowest);
     const runs = runsOf(map);
     const mostHours = Math.max(0, ...map.hours.flat());
@@ -75,8 +78,19 @@ function MapPicture({ map, most: pumpsThere }: { readonly map: BestCountMap; rea
         each > 0 ? [{ row, column, hours: each, r: Math.max(0.7, LARGEST_DOT * Math.sqrt(each / mostHours)) }] : [],
       ),
     );
-    return { cell, rows, top, lowest, highest, x, y, runs, chips: chipsOf(map, namesOf(runs), { x, y }), dots };
-  }, [map]);
+    return {
+      cell,
+      rows,
+      top,
+      lowest,
+      highest,
+      x,
+      y,
+      runs,
+      chips: chipsOf(map, namesOf(runs), { x, y, right: width - RIGHT }),
+      dots,
+    };
+  }, [map, width]);
   const { cell, x, y } = drawn;
   const ticks = {
     x: niceTicks(0, drawn.top * format.flow.factor, 7),
@@ -111,7 +125,7 @@ function MapPicture({ map, most: pumpsThere }: { readonly map: BestCountMap; rea
         />
       )}
     >
-      <svg class="map" viewBox={`0 0 ${WIDTH} ${HEIGHT}`} role="img" aria-label={title}>
+      <svg class="map" viewBox={`0 0 ${width} ${HEIGHT}`} role="img" aria-label={title}>
         {drawn.runs.map(({ row, who, fromM3s, toM3s }) => (
           <rect
             key={`${row} ${fromM3s}`}
@@ -142,7 +156,7 @@ function MapPicture({ map, most: pumpsThere }: { readonly map: BestCountMap; rea
           </g>
         ))}
         <g class="axis">
-          <path d={`M${LEFT} ${TOP}V${HEIGHT - BOTTOM}H${WIDTH - RIGHT}`} />
+          <path d={`M${LEFT} ${TOP}V${HEIGHT - BOTTOM}H${width - RIGHT}`} />
           {ticks.x.map((tick) => (
             <text key={tick} x={x(tick / format.flow.factor)} y={HEIGHT - BOTTOM + 18} text-anchor="middle">
               {tick}
@@ -153,7 +167,7 @@ function MapPicture({ map, most: pumpsThere }: { readonly map: BestCountMap; rea
               {tick}
             </text>
           ))}
-          <text x={(LEFT + WIDTH) / 2} y={HEIGHT - 8} text-anchor="middle">
+          <text x={(LEFT + width) / 2} y={HEIGHT - 8} text-anchor="middle">
             {`Flow, ${format.flow.unit}`}
           </text>
           <text transform={`translate(14 ${(HEIGHT - BOTTOM) / 2}) rotate(-90)`} text-anchor="middle">
@@ -182,13 +196,13 @@ interface Chip {
 function chipsOf(
   map: BestCountMap,
   names: ReturnType<typeof namesOf>,
-  { x, y }: { x: (flow: number) => number; y: (head: number) => number },
+  { x, y, right }: { x: (flow: number) => number; y: (head: number) => number; right: number },
 ): Chip[] {
   const taken: Chip[] = [];
   for (const { who, row, flowM3s } of names) {
     const text = who === 0 ? 'none can' : map.sets.length > 0 ? map.sets[who - 1]!.join(' + ') : String(who);
     const width = Math.max(CHIP, text.length * LETTER + 12);
-    const left = Math.min(Math.max(x(flowM3s) - width / 2, LEFT + 2), WIDTH - RIGHT - width);
+    const left = Math.min(Math.max(x(flowM3s) - width / 2, LEFT + 2), right - width);
     const at = y(map.staticHeadM[row]!) - CHIP / 2;
     const clear = (top: number) =>
       top >= TOP &&
