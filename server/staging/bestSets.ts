@@ -47,7 +47,8 @@ export class BestSets {
       const found = this.table(choice).at(flow);
       if (found) return found;
     }
-    return null;
+    // The table may lose a state between two of its flows; below the capacity there is one to be found.
+    return flow < this.pumps.flatOut(this.pumps.most).flow ? this.bestNow(flow) : null;
   }
 
   /** The same for a single flow, without a table: for advice about this moment. */
@@ -400,12 +401,16 @@ class SetTable {
     if (free === 0) {
       if (Math.abs(left) > 1e-9 * flow) return null;
     } else if (!(left > 0)) return null;
-    // What the free pumps carry is stretched to the flow; a pump at its most passes on what it cannot carry.
+    // What the free pumps carry is stretched to the flow; a pump at its most passes on what it cannot carry, and one at
+    // its least speed, which gives a little more or less than between the nodes, what it cannot be turned down to.
     const tops = a.parts.map(({ place, mode }) => {
       const pump = duty[place]!;
       return pump.flowInto(header, mode === 'drive' ? pump.maxSpeed : 1);
     });
-    if (free > 0) stretch(a.parts, flows, tops, left, valve);
+    const lows = a.parts.map(({ place, mode }) =>
+      mode === 'drive' && !valve ? duty[place]!.flowInto(header, duty[place]!.minSpeed) : 0,
+    );
+    if (free > 0) stretch(a.parts, flows, { lows, tops, sum: left, valve });
     const running: Running[] = [];
     let set = 0;
     for (let k = 0; k < a.parts.length; k++) {
@@ -479,8 +484,16 @@ class SetTable {
   }
 }
 
-/** Scales free flows to a sum; what lies above a pump's most goes to the others. */
-function stretch(parts: readonly Part[], flows: number[], tops: readonly number[], sum: number, valve: boolean): void {
+/** What the parts of an arrangement may carry, least and most, and what they have to in all [m³/s]. */
+interface Room {
+  readonly lows: readonly number[];
+  readonly tops: readonly number[];
+  readonly sum: number;
+  readonly valve: boolean;
+}
+
+/** Scales free flows to a sum; what lies above a pump's most, or is missing at its least, goes to the others. */
+function stretch(parts: readonly Part[], flows: number[], { lows, tops, sum, valve }: Room): void {
   const capped = new Set<number>();
   for (let round = 0; round <= parts.length; round++) {
     let room = sum;
@@ -496,11 +509,11 @@ function stretch(parts: readonly Part[], flows: number[], tops: readonly number[
     parts.forEach(({ mode }, k) => {
       if ((mode === 'line' && !valve) || capped.has(k)) return;
       flows[k]! *= scale;
-      if (flows[k]! > tops[k]!) {
-        flows[k] = tops[k]!;
-        capped.add(k);
-        more = true;
-      }
+      const held = Math.min(Math.max(flows[k]!, lows[k]!), tops[k]!);
+      if (held === flows[k]) return;
+      flows[k] = held;
+      capped.add(k);
+      more = true;
     });
     if (!more) return;
   }

@@ -18,7 +18,7 @@ export const batch: Rule = {
   start(pumps): Decide {
     if (pumps instanceof MixedPumps) {
       const sets = new BestSets(pumps);
-      return (flow) => (flow === 0 ? held(pumps.off) : (sets.batch(flow) ?? flatOut(pumps, flow)));
+      return (flow) => (flow === 0 ? held(pumps.off) : (sets.batch(flow) ?? sets.best(flow) ?? flatOut(pumps, flow)));
     }
     const envelopes = new Envelopes(pumps);
     return (flow) => (flow === 0 ? held(pumps.off) : envelopes.action(flow));
