@@ -118,11 +118,12 @@ describe('the case to begin with', () => {
   });
 });
 
-describe('the three demo stations, under the terms the page begins with', () => {
+describe('the demo stations, under the terms the page begins with', () => {
   it.each([
     ['Withy Bank lift station', 'restage-first', /^Restage first: .* for nothing\./, /friction/],
     ['Juniper Bench booster station', 'pays', /^It pays: /, /valve loss −/],
     ['Quoll Ridge raw-water lift', 'does-not-pay', /^It does not pay: /, /drive loss \+/],
+    ['Larkrigg high-lift station', 'pays', /^It pays: restaging to best.count saves /, /pipe friction −/],
   ])('%s: %s', (name, advice, said, reason) => {
     const demo = demoStations().find(({ station }) => station.name === name)!;
     const station = readStation(demo.station, 'station.json');
