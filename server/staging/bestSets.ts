@@ -220,9 +220,21 @@ function mostSettings(pumps: MixedPumps, places: readonly number[]): Setting[] {
   });
 }
 
+const known = new WeakMap<MixedPumps, BestSets>();
+
+/** The best sets of some pumps; rules that run over the same pumps share what was searched. */
+export function bestSetsOf(pumps: MixedPumps): BestSets {
+  let sets = known.get(pumps);
+  if (!sets) {
+    sets = new BestSets(pumps);
+    known.set(pumps, sets);
+  }
+  return sets;
+}
+
 /** Sets that are the best at some flow, at the static head that is set: by bits, in the order met. */
 export function setsInUse(pumps: MixedPumps): number[] {
-  const sets = new BestSets(pumps);
+  const sets = bestSetsOf(pumps);
   const capacity = pumps.flatOut(pumps.most).flow;
   const found = new Set<number>();
   for (let i = 1; i <= NODES; i++) {
@@ -256,7 +268,7 @@ class SetTable {
     this.step = only ?? capacity / NODES;
     const nodes = only === undefined ? NODES : 1;
     this.nodes = Array.from({ length: nodes }, (_, i) => this.search((i + 1) * this.step));
-    this.rests = this.valve ? [] : this.findRests();
+    this.rests = this.valve ? [] : this.findRests(only ?? 0);
   }
 
   /** Exact search at one flow. Without a valve, pumps direct on line give what they give; the driven ones the rest. */
@@ -313,9 +325,11 @@ class SetTable {
     return best && nodeOf(flow, best.parts);
   }
 
-  private findRests(): SetTable['rests'] {
+  /** @param least  flow that a set must at least give to be of use */
+  private findRests(least: number): SetTable['rests'] {
     const { pumps, choice } = this;
     const { allowable } = pumps.station;
+    const header = systemHead(pumps.station.friction, pumps.staticHead, least);
     const found: { settings: Setting[]; flow: number; perFlow: number }[] = [];
     const seen = new Set<string>();
     const all = this.set ? this.set.reduce((sum, place) => sum + 2 ** place, 0) : 2 ** pumps.most - 1;
@@ -328,7 +342,7 @@ class SetTable {
       if (seen.has(alike)) continue;
       seen.add(alike);
       const settings = lowestSettings(pumps, places, choice.ranged ? allowable : null);
-      if (settings === null) continue;
+      if (settings === null || pumps.sent(settings, header) < least) continue;
       const state = pumps.pointOf(settings);
       if (state.count < places.length) continue; // a pump that would be dead-headed
       if (!choice.overload && state.doubts.overloaded) continue;
@@ -338,10 +352,10 @@ class SetTable {
     // Of two sets that reach as far, only the cheaper per volume can ever be the best.
     found.sort((a, b) => b.flow - a.flow || a.perFlow - b.perFlow);
     const kept: typeof found = [];
-    let least = Infinity;
+    let cheapest = Infinity;
     for (const rest of found) {
-      if (rest.perFlow >= least) continue;
-      least = rest.perFlow;
+      if (rest.perFlow >= cheapest) continue;
+      cheapest = rest.perFlow;
       kept.push(rest);
     }
     return kept.reverse();

@@ -71,7 +71,8 @@ export class MixedPumps implements StagedPumps {
     return systemHead(this.station.friction, this.staticHead, flow);
   }
 
-  private sent(settings: readonly Setting[], header: number): number {
+  /** What some pumps send into a header at a head [m³/s]. */
+  sent(settings: readonly Setting[], header: number): number {
     let sum = 0;
     for (const { place, speed } of settings) sum += this.duty[place]!.flowInto(header, speed);
     return sum;

@@ -1,4 +1,4 @@
-import { BestSets, FixedSet } from './bestSets.ts';
+import { bestSetsOf, FixedSet } from './bestSets.ts';
 import { lastWithin } from './lastWithin.ts';
 import { MixedPumps } from './mixedPumps.ts';
 import type { StagedPumps } from './stagedPumps.ts';
@@ -44,7 +44,7 @@ const STEPS = 300;
  */
 export function setLadder(pumps: StagedPumps, band: number): SetStep[] {
   if (!(pumps instanceof MixedPumps) || !pumps.onDrives) return [];
-  const sets = new BestSets(pumps);
+  const sets = bestSetsOf(pumps);
   const capacity = pumps.flatOut(pumps.most).flow;
   const setAt = (flow: number) => {
     const action = sets.best(flow);

@@ -1,4 +1,4 @@
-import { BestSets } from '../bestSets.ts';
+import { bestSetsOf } from '../bestSets.ts';
 import { type Branch, type HullPiece, lowerHull, pieceAt } from '../hull.ts';
 import { MixedPumps } from '../mixedPumps.ts';
 import type { Decide, Rule } from '../rule.ts';
@@ -17,7 +17,7 @@ export const batch: Rule = {
   storageOnly: true,
   start(pumps): Decide {
     if (pumps instanceof MixedPumps) {
-      const sets = new BestSets(pumps);
+      const sets = bestSetsOf(pumps);
       return (flow) => (flow === 0 ? held(pumps.off) : (sets.batch(flow) ?? sets.best(flow) ?? flatOut(pumps, flow)));
     }
     const envelopes = new Envelopes(pumps);

@@ -1,4 +1,4 @@
-import { BestSets } from '../bestSets.ts';
+import { bestSetsOf } from '../bestSets.ts';
 import { Contenders } from '../contenders.ts';
 import type { DemandRecord } from '../demandRecord.ts';
 import { MixedPumps } from '../mixedPumps.ts';
@@ -92,7 +92,7 @@ export const bestCount: Rule = {
   drives: 'all',
   start(pumps, record): Decide {
     if (pumps instanceof MixedPumps) {
-      const sets = new BestSets(pumps);
+      const sets = bestSetsOf(pumps);
       return (flow) => (flow === 0 ? held(pumps.off) : (sets.best(flow) ?? flatOut(pumps, flow)));
     }
     const contenders = contendersOver(pumps, record);
