@@ -8,6 +8,7 @@ import { demoStations } from './demo/demo.ts';
 import { isLoopback } from './guards.ts';
 import { loadDemo } from './loadDemo.ts';
 import { databasePath } from './settings.ts';
+import { warmUp } from './warmUp.ts';
 
 /** The one file that reads the environment, opens the database and listens. Only the address goes to stdout. */
 
@@ -59,6 +60,7 @@ server.on('listening', () => {
   const { port } = server.address() as AddressInfo;
   const name = host.includes(':') ? `[${host}]` : host;
   process.stdout.write(`http://${name}:${port}\n`);
+  warmUp(db);
 });
 server.on('error', (error: NodeJS.ErrnoException) => {
   if (error.code !== 'EADDRINUSE') throw error;
