@@ -45,21 +45,45 @@ export function allocate(makes: readonly Make[], flow: number, header: number): 
     }
     const limit = least.mostFlow('line', header);
     for (let n = 1; n < count && n * limit < flow; n++) {
-      consider([
-        { least, mode: 'line', count: n, flow: limit },
-        { least, mode: 'drive', count: 1, flow: flow - n * limit },
-      ]);
+      const rest = flow - n * limit;
+      const atLimit: Share = { least, mode: 'line', count: n, flow: limit };
+      consider([atLimit, { least, mode: 'line', count: 1, flow: rest }]);
+      for (let m = 1; m <= count - n; m++) consider([atLimit, { least, mode: 'drive', count: m, flow: rest / m }]);
     }
   }
+  const reach = (2 * flow) / GRID;
   const found = onGrid(makes, flow, header);
-  if (found) consider(polished(found, (2 * flow) / GRID, header));
+  if (found) {
+    consider(polished(found, reach, header));
+    if (differAlike(found)) consider(passedAround(found, reach, header));
+  }
+  const held = best.power < Infinity ? onGrid(makes, flow, header, { price: best.power / flow }) : null;
+  if (held) consider(polished(held, 2 * reach, header));
   for (const tight of tightArrangements(makes, flow, header)) consider(polished(tight, flow, header));
+  // Where powers kink Newton's steps end short of the least, and pumps alike may do better at different flows.
+  const apart = takenApart(best.shares, reach, header);
+  if (apart.length > 2 || apart.length > best.shares.length) consider(passedAround(apart, reach, header));
   return best;
+}
+
+/** Pumps alike one by one, where their power is not convex about the flow they share. */
+function takenApart(shares: readonly Share[], reach: number, header: number): readonly Share[] {
+  return shares.flatMap((share) => {
+    if (share.count === 1 || slopesOf(share, limitsOf(share, reach, header), header)) return [share];
+    return Array.from({ length: share.count }, () => ({ ...share, count: 1 }));
+  });
+}
+
+/** Whether pumps of one make in one mode carry different flows. */
+function differAlike(shares: readonly Share[]): boolean {
+  return shares.some((one) =>
+    shares.some((two) => two.least === one.least && two.mode === one.mode && two.flow !== one.flow),
+  );
 }
 
 /** The same where every pump must carry some of the flow. */
 export function allocateToAll(makes: readonly Make[], flow: number, header: number): Allocation {
-  const found = onGrid(makes, flow, header, 1);
+  const found = onGrid(makes, flow, header, { least: 1 });
   const starts = found ? [polished(found, (2 * flow) / GRID, header)] : [];
   for (const tight of tightArrangements(makes, flow, header)) {
     const running = tight.reduce((sum, share) => sum + share.count, 0);
@@ -126,16 +150,27 @@ function powerOf(shares: readonly Share[], header: number): number {
   return sum;
 }
 
-/**
- * The exact search: pumps one after another, the least power of carrying j/GRID of the flow with those so far.
- *
- * @param least  steps that each pump must carry: 0 where it may rest, 1 where it has to run
- */
-function onGrid(makes: readonly Make[], flow: number, header: number, least = 0): Share[] | null {
+interface Search {
+  /** Steps that each pump must carry: 0 where it may rest, 1 where it has to run. */
+  readonly least?: number;
+  /**
+   * Given, each pump may also stand direct on line at the very end of its range, where it is cheapest; what that is off
+   * the grid is counted at this price [W per m³/s], and the others then carry what is left.
+   */
+  readonly price?: number;
+}
+
+/** The exact search: pumps one after another, the least power of carrying j/GRID of the flow with those so far. */
+function onGrid(
+  makes: readonly Make[],
+  flow: number,
+  header: number,
+  { least = 0, price }: Search = {},
+): Share[] | null {
   const step = flow / GRID;
   let table = new Float64Array(GRID + 1).fill(Infinity);
   table[0] = 0;
-  const choices: { make: Make; curve: Float64Array; modes: Mode[]; taken: Uint8Array }[] = [];
+  const choices: { make: Make; modes: Mode[]; end: End | null; taken: Uint8Array }[] = [];
   for (const make of makes) {
     const curve = new Float64Array(GRID + 1).fill(Infinity);
     const modes: Mode[] = new Array(GRID + 1).fill('line');
@@ -147,6 +182,13 @@ function onGrid(makes: readonly Make[], flow: number, header: number, least = 0)
       curve[j] = power;
       modes[j] = mode;
       top = j;
+    }
+    const end = price === undefined ? null : endOnLine(make.least, header, step);
+    const endPower = end ? end.power + price! * (end.steps * step - end.flow) : Infinity;
+    const endTaken = end !== null && endPower < curve[end.steps]!;
+    if (end && endTaken) {
+      curve[end.steps] = endPower;
+      top = Math.max(top, end.steps);
     }
     for (let k = 0; k < make.count; k++) {
       const next = new Float64Array(GRID + 1).fill(Infinity);
@@ -162,19 +204,42 @@ function onGrid(makes: readonly Make[], flow: number, header: number, least = 0)
         }
       }
       table = next;
-      choices.push({ make, curve, modes, taken });
+      choices.push({ make, modes, end: endTaken ? end : null, taken });
     }
   }
   if (table[GRID] === Infinity) return null;
-  const shares: Share[] = [];
+  const held: Share[] = [];
+  const free: Share[] = [];
   let left = GRID;
   for (let c = choices.length - 1; c >= 0; c--) {
-    const { make, modes, taken } = choices[c]!;
+    const { make, modes, end, taken } = choices[c]!;
     const i = taken[left]!;
     left -= i;
-    if (i > 0) shares.push({ least: make.least, mode: modes[i]!, count: 1, flow: i * step });
+    if (i === 0) continue;
+    if (end?.steps === i) held.push({ least: make.least, mode: 'line', count: 1, flow: end.flow });
+    else free.push({ least: make.least, mode: modes[i]!, count: 1, flow: i * step });
   }
-  return shares;
+  if (held.length === 0) return free;
+  // What stands at its end is off the grid by part of a step; the others make up for it.
+  const rest = held.reduce((sum, share) => sum - share.flow, flow);
+  const carried = free.reduce((sum, share) => sum + share.flow, 0);
+  if (!(rest > 0 && carried > 0)) return null;
+  return [...held, ...free.map((share) => ({ ...share, flow: (share.flow * rest) / carried }))];
+}
+
+/** The end of a pump's range direct on line. */
+interface End {
+  readonly flow: number;
+  readonly power: number;
+  /** Steps of the grid it is nearest to. */
+  readonly steps: number;
+}
+
+function endOnLine(least: LeastPower, header: number, step: number): End | null {
+  const flow = least.mostFlow('line', header);
+  const steps = Math.round(flow / step);
+  if (!(flow > 0) || steps < 1 || steps > GRID) return null;
+  return { flow, power: least.inMode('line', flow, header), steps };
 }
 
 /**
@@ -237,10 +302,7 @@ function equalMarginals(
   reach: number,
   header: number,
 ): { shares: readonly Share[]; convex: boolean } {
-  const limits = start.map((s) => ({
-    low: Math.max(s.least.leastFlow(s.mode, header), 1e-3 * s.flow, s.flow - reach),
-    high: Math.min(s.least.mostFlow(s.mode, header), s.flow + reach),
-  }));
+  const limits = start.map((s) => limitsOf(s, reach, header));
   let shares = [...start];
   let power = powerOf(shares, header);
   let convex = true;
@@ -293,6 +355,14 @@ function equalMarginals(
     if (!gained) break;
   }
   return { shares, convex };
+}
+
+/** How far each pump's flow may move. */
+function limitsOf({ least, mode, flow }: Share, reach: number, header: number): { low: number; high: number } {
+  return {
+    low: Math.max(least.leastFlow(mode, header), 1e-3 * flow, flow - reach),
+    high: Math.min(least.mostFlow(mode, header), flow + reach),
+  };
 }
 
 /** First and second derivative of a pump's power over its flow, by differences; null where it is not convex there. */

@@ -226,21 +226,21 @@ class Tally {
   }
 
   /**
-   * Starts: the rises of the count that keeps running (that of the lower state), and one start per cycle for each pump
-   * that two shared states differ by. The first interval and the first after a gap start free.
+   * Starts: pumps that keep running and did not before (of the lower state, where two share), and one start per cycle for
+   * each pump of the higher state that the lower one rests. The first interval and the first after a gap start free.
    */
   private addStarts(action: Action, flow: number, seconds: number, adjacent: boolean): void {
     const { low, high, share } = action;
-    const base = share >= 1 ? high.count : low.count;
-    if (adjacent && this.before >= 0 && base > this.before) this.starts += base - this.before;
+    const base = share >= 1 ? high.set : low.set;
+    if (adjacent && this.before >= 0) this.starts += pumpsRisen(this.before, base);
     this.before = base;
-    if (share <= 0 || share >= 1 || high.count === low.count) return;
+    if (share <= 0 || share >= 1 || high.set === low.set) return;
     if (this.volume === null) {
       this.startsKnown = false;
       return;
     }
     const cycle = this.volume / (flow - low.flow) + this.volume / (high.flow - flow);
-    this.starts += (seconds / cycle) * (high.count - low.count);
+    this.starts += (seconds / cycle) * pumpsRisen(low.set, high.set);
   }
 
   totals(): Totals {
@@ -275,4 +275,11 @@ class Tally {
       watched: this.watch.watched(),
     };
   }
+}
+
+/** Pumps of one set that are not in another, told by bits. */
+function pumpsRisen(from: number, to: number): number {
+  let count = 0;
+  for (let rising = to & ~from; rising !== 0; rising &= rising - 1) count++;
+  return count;
 }
