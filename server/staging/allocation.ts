@@ -52,17 +52,19 @@ export function allocate(makes: readonly Make[], flow: number, header: number): 
     }
   }
   const reach = (2 * flow) / GRID;
-  const found = onGrid(makes, flow, header);
+  const curves = makes.map((make) => gridCurve(make, header, flow / GRID));
+  const found = onGrid(curves, flow, header);
   if (found) {
     consider(polished(found, reach, header));
     if (differAlike(found)) consider(passedAround(found, reach, header));
   }
-  const held = best.power < Infinity ? onGrid(makes, flow, header, { price: best.power / flow }) : null;
+  const held = best.power < Infinity ? onGrid(curves, flow, header, { price: best.power / flow }) : null;
   if (held) consider(polished(held, 2 * reach, header));
   for (const tight of tightArrangements(makes, flow, header)) consider(polished(tight, flow, header));
   // Where powers kink Newton's steps end short of the least, and pumps alike may do better at different flows.
   const apart = takenApart(best.shares, reach, header);
-  if (apart.length > 2 || apart.length > best.shares.length) consider(passedAround(apart, reach, header));
+  const kinked = best.shares.length > 2 && best.shares.some((s) => s.least.heldBy(s.mode, s.flow, header) !== '');
+  if (kinked || apart.length > best.shares.length) consider(passedAround(apart, reach, header));
   return best;
 }
 
@@ -83,7 +85,8 @@ function differAlike(shares: readonly Share[]): boolean {
 
 /** The same where every pump must carry some of the flow. */
 export function allocateToAll(makes: readonly Make[], flow: number, header: number): Allocation {
-  const found = onGrid(makes, flow, header, { least: 1 });
+  const curves = makes.map((make) => gridCurve(make, header, flow / GRID));
+  const found = onGrid(curves, flow, header, { least: 1 });
   const starts = found ? [polished(found, (2 * flow) / GRID, header)] : [];
   for (const tight of tightArrangements(makes, flow, header)) {
     const running = tight.reduce((sum, share) => sum + share.count, 0);
@@ -160,9 +163,34 @@ interface Search {
   readonly price?: number;
 }
 
+/** Least power of one pump of a make on the grid, j steps of flow each. */
+interface GridCurve {
+  readonly make: Make;
+  readonly power: Float64Array;
+  readonly onDrive: Uint8Array;
+  /** Largest j that it can carry. */
+  readonly top: number;
+}
+
+function gridCurve(make: Make, header: number, step: number): GridCurve {
+  const power = new Float64Array(GRID + 1).fill(Infinity);
+  const onDrive = new Uint8Array(GRID + 1);
+  power[0] = 0;
+  let top = 0;
+  for (let j = 1; j <= GRID; j++) {
+    const line = make.least.inMode('line', j * step, header);
+    const drive = make.least.inMode('drive', j * step, header);
+    power[j] = Math.min(line, drive);
+    if (power[j] === Infinity) continue;
+    if (drive < line) onDrive[j] = 1;
+    top = j;
+  }
+  return { make, power, onDrive, top };
+}
+
 /** The exact search: pumps one after another, the least power of carrying j/GRID of the flow with those so far. */
 function onGrid(
-  makes: readonly Make[],
+  curves: readonly GridCurve[],
   flow: number,
   header: number,
   { least = 0, price }: Search = {},
@@ -170,41 +198,36 @@ function onGrid(
   const step = flow / GRID;
   let table = new Float64Array(GRID + 1).fill(Infinity);
   table[0] = 0;
-  const choices: { make: Make; modes: Mode[]; end: End | null; taken: Uint8Array }[] = [];
-  for (const make of makes) {
-    const curve = new Float64Array(GRID + 1).fill(Infinity);
-    const modes: Mode[] = new Array(GRID + 1).fill('line');
-    curve[0] = 0;
-    let top = 0;
-    for (let j = 1; j <= GRID; j++) {
-      const { power, mode } = make.least.at(j * step, header);
-      if (power === Infinity) continue;
-      curve[j] = power;
-      modes[j] = mode;
-      top = j;
-    }
-    const end = price === undefined ? null : endOnLine(make.least, header, step);
+  const choices: { curve: GridCurve; end: End | null; taken: Uint8Array }[] = [];
+  for (const curve of curves) {
+    const { make } = curve;
+    let { power, top } = curve;
+    let end = price === undefined ? null : endOnLine(make.least, header, step);
     const endPower = end ? end.power + price! * (end.steps * step - end.flow) : Infinity;
-    const endTaken = end !== null && endPower < curve[end.steps]!;
-    if (end && endTaken) {
-      curve[end.steps] = endPower;
+    if (end && endPower < power[end.steps]!) {
+      power = power.slice();
+      power[end.steps] = endPower;
       top = Math.max(top, end.steps);
-    }
+    } else end = null;
     for (let k = 0; k < make.count; k++) {
       const next = new Float64Array(GRID + 1).fill(Infinity);
       const taken = new Uint8Array(GRID + 1);
       for (let j = 0; j <= GRID; j++) {
         const most = Math.min(j, top);
+        let best = Infinity;
+        let steps = 0;
         for (let i = least; i <= most; i++) {
-          const power = table[j - i]! + curve[i]!;
-          if (power < next[j]!) {
-            next[j] = power;
-            taken[j] = i;
+          const sum = table[j - i]! + power[i]!;
+          if (sum < best) {
+            best = sum;
+            steps = i;
           }
         }
+        next[j] = best;
+        taken[j] = steps;
       }
       table = next;
-      choices.push({ make, modes, end: endTaken ? end : null, taken });
+      choices.push({ curve, end, taken });
     }
   }
   if (table[GRID] === Infinity) return null;
@@ -212,12 +235,13 @@ function onGrid(
   const free: Share[] = [];
   let left = GRID;
   for (let c = choices.length - 1; c >= 0; c--) {
-    const { make, modes, end, taken } = choices[c]!;
+    const { curve, end, taken } = choices[c]!;
+    const { least: pump } = curve.make;
     const i = taken[left]!;
     left -= i;
     if (i === 0) continue;
-    if (end?.steps === i) held.push({ least: make.least, mode: 'line', count: 1, flow: end.flow });
-    else free.push({ least: make.least, mode: modes[i]!, count: 1, flow: i * step });
+    if (end?.steps === i) held.push({ least: pump, mode: 'line', count: 1, flow: end.flow });
+    else free.push({ least: pump, mode: curve.onDrive[i] === 1 ? 'drive' : 'line', count: 1, flow: i * step });
   }
   if (held.length === 0) return free;
   // What stands at its end is off the grid by part of a step; the others make up for it.

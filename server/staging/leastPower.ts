@@ -86,13 +86,6 @@ export class LeastPower {
     if (needed < pump.minSpeed) return 'least-speed';
     return q >= pump.endFlow(needed) * (1 - 1e-9) ? 'end' : '';
   }
-
-  /** The lesser of the modes. */
-  at(q: number, header: number): { power: number; mode: Mode } {
-    const line = this.inMode('line', q, header);
-    const drive = this.inMode('drive', q, header);
-    return drive < line ? { power: drive, mode: 'drive' } : { power: line, mode: 'line' };
-  }
 }
 
 /** Where power does not rise with speed throughout, the best speed is looked for on a grid, then polished. */

@@ -19,6 +19,9 @@ const GAP = 2e-4;
 /** Room for the rounding of both sides, and for the solver's flows, which add up to 1e-9. */
 const ROUNDING = 1e-7;
 
+/** Newton's steps on the split of different pumps may end this far from a kink in one's power. */
+const BESIDE_KINKS = 1e-5;
+
 /**
  * Between the nodes of its table best-count takes a split between two solved ones, and passes over an arrangement that is
  * the best only there.
@@ -69,7 +72,7 @@ describe.each([
         const { power, shares } = floor.allocation(flow, station.staticHead);
         const alike = kind === 'equal';
         const bounds = leastAllocation(floorCarriers(plain, flow, { alike }), flow, { gap: GAP, alike });
-        expectWithin(power, bounds!, where);
+        expectWithin(power, bounds!, where, alike ? ROUNDING : BESIDE_KINKS);
         // The arrangement itself, added up from the second working.
         const header = plain.system(flow);
         let carried = 0;
