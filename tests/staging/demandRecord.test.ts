@@ -47,3 +47,10 @@ describe('the static head of an interval', () => {
     expect(texts(record)[0]).toMatch(/3 of 4 intervals follows .* In 1 it is that of the station file/);
   });
 });
+
+it('intervals without a flow are left out and counted, not taken for no flow', () => {
+  const record = demandRecord(station, flowLog([0.01, unknown, 0, 0.03]));
+  expect(Array.from(record.flow)).toEqual([0.01, 0, 0.03]);
+  expect(record.startMs[1]! - record.startMs[0]!).toBe(2 * 3_600_000);
+  expect([record.coveredSeconds, record.gapSeconds]).toEqual([3 * 3600, 3600]);
+});
