@@ -267,8 +267,9 @@ export class EqualPumps implements StagedPumps {
 
   private mixed(count: number, fixedFlow: number, trimmedFlow: number, speed: number): State {
     const { pump } = this;
-    const running = [{ pump, count: 1, flow: trimmedFlow, speed, onDrive: true }];
-    if (count > 1) running.unshift({ pump, count: count - 1, flow: fixedFlow, speed: 1, onDrive: false });
+    const trimmed = { pump, count: 1, flow: trimmedFlow, speed, onDrive: true };
+    const running =
+      count === 1 ? [trimmed] : [{ pump, count: count - 1, flow: fixedFlow, speed: 1, onDrive: false }, trimmed];
     return new State(this.station, this.staticHead, setOf(count), running);
   }
 }

@@ -37,26 +37,27 @@ type Choice = (typeof CHOICES)[number];
 /** Envelopes at one static head, built when first needed; heads that differ by less than a millimetre share theirs. */
 class Envelopes {
   private readonly pumps: StagedPumps;
-  private readonly known = new Map<string, readonly HullPiece[]>();
+  private readonly known = new Map<number, readonly HullPiece[]>();
 
   constructor(pumps: StagedPumps) {
     this.pumps = pumps;
   }
 
   action(flow: number): Action {
-    for (const choice of CHOICES) {
+    for (let choice = 0; choice < CHOICES.length; choice++) {
       const piece = pieceAt(this.envelope(choice), flow);
       if (piece) return this.within(piece, flow);
     }
     return flatOut(this.pumps, flow);
   }
 
-  private envelope(choice: Choice): readonly HullPiece[] {
+  /** @param choice  its place in CHOICES */
+  private envelope(choice: number): readonly HullPiece[] {
     const { pumps } = this;
-    const key = `${choice}@${Math.round(pumps.staticHead * HEADS_PER_METRE)}`;
+    const key = CHOICES.length * Math.round(pumps.staticHead * HEADS_PER_METRE) + choice;
     let pieces = this.known.get(key);
     if (!pieces) {
-      pieces = lowerHull(Array.from({ length: pumps.most }, (_, i) => branches(pumps, i + 1, choice)).flat());
+      pieces = lowerHull(Array.from({ length: pumps.most }, (_, i) => branches(pumps, i + 1, CHOICES[choice]!)).flat());
       this.known.set(key, pieces);
     }
     return pieces;
