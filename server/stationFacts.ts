@@ -5,7 +5,7 @@ import type { Machine } from './hydraulics/pump.ts';
 import { vapourPressure, waterViscosity } from './hydraulics/water.ts';
 import { setName } from './staging/compare.ts';
 import { firmCapacity } from './staging/firmCapacity.ts';
-import { stagedPumps } from './staging/stagedPumps.ts';
+import { stagedPumpsOf } from './staging/stagedPumpsOf.ts';
 import type { State } from './staging/state.ts';
 import { npshRatio } from './staging/watch.ts';
 import { pumpsByMake, type Station } from './station/station.ts';
@@ -154,7 +154,7 @@ function fitNotes({ names, machines }: PumpFacts): Note[] {
 }
 
 function pointsOf(station: Station): PointFacts[] {
-  const pumps = stagedPumps(station, station.duty);
+  const pumps = stagedPumpsOf(station, station.duty);
   return station.duty.map((_, i) => pointFacts(station, i + 1, pumps.fixed(i + 1)));
 }
 

@@ -2,7 +2,7 @@ import type { Db } from '../db/open.ts';
 import { findStation, listStations } from '../db/stations.ts';
 import { advise } from './advise.ts';
 import { InputError } from './errors.ts';
-import { stagedPumps } from './staging/stagedPumps.ts';
+import { stagedPumpsOf } from './staging/stagedPumpsOf.ts';
 import { readStation } from './station/readStation.ts';
 import { FLOW_UNITS } from './units.ts';
 
@@ -30,7 +30,7 @@ function ask(db: Db, id: number, share: number): void {
   if (!stored) return;
   try {
     const station = readStation(stored.file, 'station.json');
-    const capacity = stagedPumps(station, station.duty).flatOut(station.duty.length).flow;
+    const capacity = stagedPumpsOf(station, station.duty).flatOut(station.duty.length).flow;
     advise(station, { flow: (share * capacity) / FLOW_UNITS[station.units.flow] });
   } catch (error) {
     // A file that an older version stored may be refused today; whoever asks for it is told.

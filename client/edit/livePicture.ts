@@ -1,5 +1,5 @@
 import { systemHead } from '../../server/hydraulics/systemCurve.ts';
-import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { dutyPumpsAreEqual, type Station } from '../../server/station/station.ts';
 import { GRAVITY } from '../../server/units.ts';
 
@@ -42,7 +42,7 @@ const POINTS = 48;
 /** Curves and operating points of 1 to N duty pumps in the station's order, direct on line at rated speed. */
 export function pumpPicture(station: Station): PumpPicture {
   const { duty, friction, staticHead } = station;
-  const pumps = stagedPumps(station, duty);
+  const pumps = stagedPumpsOf(station, duty);
   pumps.at(staticHead);
   const shutoff = Math.max(...duty.map((pump) => pump.shutoffHead(1)));
   const counts = duty.map((_, i) => {

@@ -3,7 +3,7 @@ import { Floor } from '../../server/staging/floor.ts';
 import { floorPower } from '../../server/staging/floorOverRecord.ts';
 import { RULES } from '../../server/staging/rules/all.ts';
 import { runRule } from '../../server/staging/run.ts';
-import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import { billOf } from '../../server/tariff/bill.ts';
 import { planBill } from '../../server/tariff/plan.ts';
@@ -33,7 +33,7 @@ function everyRule(curves: Curves, rounds: number): Measured[] {
   const station = readStation(stationFile(6, curves), 'bench.json');
   const bare = bareTime(record, 6, rounds);
   const rows = RULES.map((rule) => {
-    const time = shortest(rounds, () => runRule(rule, stagedPumps(station, station.duty), record));
+    const time = shortest(rounds, () => runRule(rule, stagedPumpsOf(station, station.duty), record));
     return measured(`${rule.id}, ${curves}`, time, { what: BARE, milliseconds: bare, aim: AIMS[curves] });
   });
   if (curves === 'parabola') proveSameWork(record);
@@ -49,7 +49,7 @@ function everyRule(curves: Curves, rounds: number): Measured[] {
 function proveSameWork(record: DemandRecord): void {
   const station = readStation(stationFile(6, 'parabola'), 'bench.json');
   const rule = RULES.find(({ id }) => id === 'best-count')!;
-  const { totals } = runRule(rule, stagedPumps(station, station.duty), record);
+  const { totals } = runRule(rule, stagedPumpsOf(station, station.duty), record);
   const short = totals.shortfallHours;
   const bare = bareBestCount(record.flow, record.seconds, 6, new Uint8Array(record.flow.length)) / JOULES_PER_KWH;
   if (short > 0 || Math.abs(totals.energyKwh / bare - 1) > 1e-9) {
@@ -64,7 +64,7 @@ function movingHead(rounds: number): Measured {
   const station = readStation(stationFile(6, 'parabola'), 'bench.json');
   const rule = RULES.find(({ id }) => id === 'best-count')!;
   const bare = bareTime(record, 6, rounds);
-  const time = shortest(rounds, () => runRule(rule, stagedPumps(station, station.duty), record));
+  const time = shortest(rounds, () => runRule(rule, stagedPumpsOf(station, station.duty), record));
   const aim = { what: BARE, milliseconds: bare, aim: null };
   return measured('best-count, parabola, static head new every minute', time, aim);
 }
@@ -89,7 +89,7 @@ function bestCountTime(flows: Float64Array, pumps: number, rounds: number): numb
   const station = readStation(stationFile(pumps, 'parabola'), 'bench.json');
   const rule = RULES.find(({ id }) => id === 'best-count')!;
   const record = recordOf(flows);
-  return shortest(rounds, () => runRule(rule, stagedPumps(station, station.duty), record));
+  return shortest(rounds, () => runRule(rule, stagedPumpsOf(station, station.duty), record));
 }
 
 function money(rounds: number): Measured[] {
@@ -97,7 +97,7 @@ function money(rounds: number): Measured[] {
   const tariff = readTariff(TARIFF_FILE, 'bench.json');
   const station = readStation(stationFile(6, 'parabola'), 'bench.json');
   const rule = RULES.find(({ id }) => id === 'best-count')!;
-  const { series } = runRule(rule, stagedPumps(station, station.duty), record);
+  const { series } = runRule(rule, stagedPumpsOf(station, station.duty), record);
   const plan = planBill(tariff, record.startMs, record.seconds);
   return [
     measured(

@@ -7,7 +7,8 @@ import { BestSets } from './bestSets.ts';
 import { deadHeadedNotes } from './deadHeaded.ts';
 import { MixedPumps } from './mixedPumps.ts';
 import { fixedSpeed } from './rules/fixedSpeed.ts';
-import { type StagedPumps, stagedPumps } from './stagedPumps.ts';
+import type { StagedPumps } from './stagedPumps.ts';
+import { stagedPumpsOf } from './stagedPumpsOf.ts';
 import { type Action, held, meanPower, NEAR_DEAD_HEAD, SLACK, type State } from './state.ts';
 
 /** One way to meet a flow now. */
@@ -38,7 +39,7 @@ export interface Advice {
  * weighed by mean power; a state near dead-head, or outside the allowable range, is proposed only where there is no other.
  */
 export function adviceNow(station: Station, duty: readonly Pump[], flow: number, staticHead: number): Advice {
-  const pumps = stagedPumps(station, duty);
+  const pumps = stagedPumpsOf(station, duty);
   pumps.at(staticHead);
   const headerHead = systemHead(station.friction, staticHead, flow);
   if (flow <= 0) return { best: null, nextBest: null, shortfall: 0, headerHead, notes: [] };

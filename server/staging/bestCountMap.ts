@@ -4,7 +4,7 @@ import { capacityOf } from './crossings.ts';
 import { fixedSpeed } from './rules/fixedSpeed.ts';
 import { bestCount } from './rules/trimmedCounts.ts';
 import { placesOf } from './setLadder.ts';
-import { stagedPumps } from './stagedPumps.ts';
+import { stagedPumpsOf } from './stagedPumpsOf.ts';
 
 /** Which count of pumps is best over flow and static head, and the hours the record spends in each cell. */
 export interface BestCountMap {
@@ -26,7 +26,7 @@ const ROWS = 24;
 /** Where the record's static head does not vary, the map spans ±25 % of it, so that one sees where the steps would move. */
 export function bestCountMap(comparison: Comparison): BestCountMap {
   const { station, duty, record } = comparison;
-  const pumps = stagedPumps(station, duty);
+  const pumps = stagedPumpsOf(station, duty);
   const { low, high } = headSpan(comparison);
   const top = record.flow.reduce((most, flow) => Math.max(most, flow), capacityOf(pumps, pumps.most)) * 1.001;
   const flowM3s = Array.from({ length: COLUMNS }, (_, i) => (top * (i + 0.5)) / COLUMNS);

@@ -9,7 +9,8 @@ import { deadHeadedNotes, shutOutNotes } from './deadHeaded.ts';
 import { lastWithin } from './lastWithin.ts';
 import { MixedPumps } from './mixedPumps.ts';
 import { type SetStep, setLadder } from './setLadder.ts';
-import { type StagedPumps, stagedPumps } from './stagedPumps.ts';
+import type { StagedPumps } from './stagedPumps.ts';
+import { stagedPumpsOf } from './stagedPumpsOf.ts';
 import { NEAR_DEAD_HEAD, type State } from './state.ts';
 
 /** Staying on n may cost this share more than n + 1 before the next pump is brought on, and the other way round. */
@@ -87,7 +88,7 @@ export function operatorCard(
     range = levelRange(station),
   }: { staticHead?: number; band?: number; range?: { readonly low: number; readonly high: number } | null } = {},
 ): OperatorCard {
-  const pumps = stagedPumps(station, duty);
+  const pumps = stagedPumpsOf(station, duty);
   pumps.at(staticHead);
   const steps: CardStep[] = [];
   for (let n = 1; n < pumps.most; n++) {
@@ -96,7 +97,7 @@ export function operatorCard(
   }
   const capacities = Array.from({ length: pumps.most }, (_, i) => capacityOf(pumps, i + 1));
   const flowsAt = (head: number) => {
-    const moved = stagedPumps(station, duty);
+    const moved = stagedPumpsOf(station, duty);
     moved.at(head);
     return {
       staticHead: head,

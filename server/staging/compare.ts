@@ -18,7 +18,7 @@ import { type ComparisonResult, type PumpTestResult, RULE_IDS, type RuleId, type
 import type { Rule } from './rule.ts';
 import { RULES } from './rules/all.ts';
 import { type OnAction, type Run, runRule } from './run.ts';
-import { stagedPumps } from './stagedPumps.ts';
+import { stagedPumpsOf } from './stagedPumpsOf.ts';
 import { watchNotes } from './watchNotes.ts';
 
 export interface ComparisonRequest {
@@ -96,7 +96,7 @@ export function compareRules(request: ComparisonRequest): Comparison {
       : null;
   const plan = tariff ? planBill(tariff, record.startMs, record.seconds, 'tariff') : null;
   const { rules, notes } = rulesToRun(station, duty, request.rules);
-  const pumps = stagedPumps(station, duty);
+  const pumps = stagedPumpsOf(station, duty);
   const runs: Run[] = [];
   const bills: (Bill | null)[] = [];
   for (const rule of rules) {

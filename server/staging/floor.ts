@@ -1,10 +1,11 @@
 import type { Pump } from '../hydraulics/pump.ts';
 import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { Station } from '../station/station.ts';
-import { type Allocation, allocate, arrangementOf, type Make } from './allocation.ts';
+import { type Allocation, allocate, arrangementOf } from './allocation.ts';
 import { combinedFlow } from './firmCapacity.ts';
 import { type Branch, type HullPiece, hullPower, lowerHull, pieceAt } from './hull.ts';
 import { LeastPower } from './leastPower.ts';
+import type { Make } from './shares.ts';
 
 /** Nodes of F over flow at one static head; between them it is interpolated, kinks and jumps respected. */
 const NODES = 360;

@@ -5,7 +5,7 @@ import type { Rule } from './rule.ts';
 import { eachCandidate, flatOut } from './rules/trimmedCounts.ts';
 import { runRule } from './run.ts';
 import type { Trim } from './stagedPumps.ts';
-import { stagedPumps } from './stagedPumps.ts';
+import { stagedPumpsOf } from './stagedPumpsOf.ts';
 import { held } from './state.ts';
 
 /** What the station's own order of bringing on costs over a record, against the best sets. */
@@ -38,7 +38,7 @@ const bestCountInOrder: Rule = {
 export function ownOrderCost({ station, duty, record, plan, runs, bills }: Comparison): OwnOrderCost | null {
   const place = runs.findIndex(({ rule }) => rule.id === 'best-count');
   if (place < 0 || dutyPumpsAreEqual(duty)) return null;
-  const own = runRule(bestCountInOrder, stagedPumps(station, duty), record);
+  const own = runRule(bestCountInOrder, stagedPumpsOf(station, duty), record);
   const best = bills[place];
   return {
     energyKwh: own.totals.energyKwh - runs[place]!.totals.energyKwh,

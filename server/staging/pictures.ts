@@ -1,13 +1,14 @@
 import { dutyPumpsAreEqual } from '../station/station.ts';
-import { FixedSet } from './bestSets.ts';
 import { DEFAULT_BAND } from './card.ts';
 import type { Comparison } from './compare.ts';
 import { allCrossings, capacityOf, powerOfCount } from './crossings.ts';
+import { FixedSet } from './fixedSet.ts';
 import { MixedPumps } from './mixedPumps.ts';
 import type { RuleId } from './result.ts';
 import type { RunSets } from './runSets.ts';
 import { placesOf, setLadder } from './setLadder.ts';
-import { type StagedPumps, stagedPumps } from './stagedPumps.ts';
+import type { StagedPumps } from './stagedPumps.ts';
+import { stagedPumpsOf } from './stagedPumpsOf.ts';
 
 /** Mean power over flow for each count, where they cross, and the hours the record spends at each flow. */
 export interface PowerOverFlow {
@@ -51,7 +52,7 @@ const CLASSES = 60;
 /** Drawn at the station's static head, whatever static head the intervals of the record have. */
 export function powerOverFlow(comparison: Comparison): PowerOverFlow {
   const { station, duty, record } = comparison;
-  const pumps = stagedPumps(station, duty);
+  const pumps = stagedPumpsOf(station, duty);
   const largestFlow = record.flow.reduce((most, flow) => Math.max(most, flow), 0);
   const top = Math.max(capacityOf(pumps, pumps.most), largestFlow) * 1.02;
   const flows = Array.from({ length: CURVE_POINTS }, (_, i) => (top * (i + 1)) / CURVE_POINTS);

@@ -1,4 +1,5 @@
-import { bestSetsOf, FixedSet } from './bestSets.ts';
+import { bestSetsOf } from './bestSets.ts';
+import { FixedSet } from './fixedSet.ts';
 import { lastWithin } from './lastWithin.ts';
 import { MixedPumps } from './mixedPumps.ts';
 import type { StagedPumps } from './stagedPumps.ts';

@@ -1,7 +1,7 @@
 import type { Pump } from '../hydraulics/pump.ts';
 import { systemHead } from '../hydraulics/systemCurve.ts';
 import type { Station } from '../station/station.ts';
-import { stagedPumps } from './stagedPumps.ts';
+import { stagedPumpsOf } from './stagedPumpsOf.ts';
 
 /** What somebody read off gauges at one moment; what was not read is null. Flow of the station, head across the pumps. */
 export interface SpotReading {
@@ -28,7 +28,7 @@ export interface LaidReading extends SpotReading {
 /** Lays readings on the pump and system curves, to see whether these explain what was measured. */
 export function laySpotReadings(station: Station, readings: readonly SpotReading[]): LaidReading[] {
   return readings.map((reading) => {
-    const pumps = stagedPumps(station, reading.pumps);
+    const pumps = stagedPumpsOf(station, reading.pumps);
     const count = pumps.most;
     const point = pumps.fixed(count);
     const { flow } = reading;

@@ -1,7 +1,5 @@
 import type { Pump } from '../hydraulics/pump.ts';
-import { dutyPumpsAreEqual, type Station } from '../station/station.ts';
-import { EqualPumps } from './equalPumps.ts';
-import { MixedPumps } from './mixedPumps.ts';
+import type { Station } from '../station/station.ts';
 import type { Action, State } from './state.ts';
 
 /** A count of pumps trimmed to a flow: the figures that decide, before an action is made of it. */
@@ -65,8 +63,4 @@ export interface StagedPumps {
   oneThrottled(count: number, flow: number): State;
   /** One of n pumps at its least speed (`low`) or at rated speed, the others direct on line, at their operating point. */
   oneAt(count: number, speed: 'least' | 'rated'): State;
-}
-
-export function stagedPumps(station: Station, duty: readonly Pump[]): StagedPumps {
-  return dutyPumpsAreEqual(duty) ? new EqualPumps(station, duty) : new MixedPumps(station, duty);
 }

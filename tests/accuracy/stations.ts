@@ -1,5 +1,6 @@
 import { firmCapacity } from '../../server/staging/firmCapacity.ts';
-import { type StagedPumps, stagedPumps } from '../../server/staging/stagedPumps.ts';
+import type { StagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import type { State } from '../../server/staging/state.ts';
 import { Watch } from '../../server/staging/watch.ts';
 import { readStation } from '../../server/station/readStation.ts';
@@ -57,7 +58,7 @@ export function headPoints(rows: readonly (readonly [number, number])[]): object
 
 /** Its duty pumps, as a rule asks them. */
 export function pumpsOf(station: Station): StagedPumps {
-  return stagedPumps(station, station.duty);
+  return stagedPumpsOf(station, station.duty);
 }
 
 /** The first n duty pumps at full speed, direct on line, where they meet the system. */

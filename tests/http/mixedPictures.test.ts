@@ -1,5 +1,5 @@
 import { beforeAll, describe, expect, it } from 'vitest';
-import { FixedSet } from '../../server/staging/bestSets.ts';
+import { FixedSet } from '../../server/staging/fixedSet.ts';
 import { MixedPumps } from '../../server/staging/mixedPumps.ts';
 import { setLadder } from '../../server/staging/setLadder.ts';
 import { readStation } from '../../server/station/readStation.ts';

@@ -7,7 +7,7 @@ import { firmCapacity } from '../../server/staging/firmCapacity.ts';
 import { floorPower } from '../../server/staging/floorOverRecord.ts';
 import type { RuleId } from '../../server/staging/result.ts';
 import { type Run, runRule } from '../../server/staging/run.ts';
-import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import type { Station } from '../../server/station/station.ts';
 import type { StationFile } from '../../server/station/stationFile.ts';
@@ -37,7 +37,7 @@ function made(seed: number, mixed: boolean): Omit<Case, 'comparison' | 'runs'> {
   const file = { ...madeStation(seed, { mixed, most: mixed && !ENDURE ? 3 : 4 }), storage: { activeVolume: 12 } };
   const station = readStation(file, 'station.json');
   const roll = dice(seed + 77);
-  const most = stagedPumps(station, station.duty).flatOut(station.duty.length).flow;
+  const most = stagedPumpsOf(station, station.duty).flatOut(station.duty.length).flow;
   const flows = Array.from({ length: 16 }, () => (roll() < 0.1 ? 0 : 1.1 * most * roll()));
   const log = logOf(flows);
   const staticHead = Float64Array.from(flows, () => station.staticHead * (0.95 + 0.1 * roll()));
@@ -78,7 +78,7 @@ function holds(law: (one: Case, seed: number) => void): void {
 /** Each rule that a station can run, over a log. */
 function runs(station: Station, log: Log, without: readonly RuleId[] = []): Run[] {
   const { rules } = rulesToRun(station, station.duty, undefined);
-  const pumps = stagedPumps(station, station.duty);
+  const pumps = stagedPumpsOf(station, station.duty);
   const record = demandRecord(station, log);
   return rules.filter(({ id }) => !without.includes(id)).map((rule) => runRule(rule, pumps, record));
 }
@@ -252,7 +252,7 @@ describe(`for ${10 * RUNS} stations of equal pumps`, () => {
             'station.json',
           );
         const station = at(speed);
-        const pumps = stagedPumps(station, station.duty);
+        const pumps = stagedPumpsOf(station, station.duty);
         for (let n = 1; n <= pumps.most; n++) {
           const [slow, full] = [pumps.lowest(n), pumps.flatOut(n)];
           const head = ({ running }: typeof full) => running[0]!.pump.head(running[0]!.flow, running[0]!.speed);

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { RuleId } from '../../server/staging/result.ts';
-import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import { dice, madeStation, seeds } from '../support/madeStations.ts';
 import { PlainStation } from '../support/plainModel.ts';
@@ -28,7 +28,7 @@ const made = seeds(40, 500).map((seed) => {
   const station = readStation(file, 'station.json');
   const plain = new PlainRules(new PlainStation(file));
   const roll = dice(seed + 10_000);
-  const most = stagedPumps(station, station.duty).flatOut(station.duty.length).flow;
+  const most = stagedPumpsOf(station, station.duty).flatOut(station.duty.length).flow;
   const flows = Array.from({ length: FLOWS }, () => 1.08 * most * roll());
   return { seed, station, plain, flows };
 });
@@ -36,7 +36,7 @@ const made = seeds(40, 500).map((seed) => {
 describe(`${made.length} stations of equal pumps, at ${FLOWS} flows each`, () => {
   it('meet the system where the second working says, direct on line, flat out and at least speed, to 1e-9', () => {
     for (const { seed, station, plain } of made) {
-      const pumps = stagedPumps(station, station.duty);
+      const pumps = stagedPumpsOf(station, station.duty);
       for (let n = 1; n <= pumps.most; n++) {
         for (const [state, speed, onDrive] of [
           [pumps.fixed(n), 1, false],

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { Floor } from '../../server/staging/floor.ts';
-import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import type { StationFile } from '../../server/station/stationFile.ts';
 import { bestCountCarriers, floorCarriers, leastResting } from '../support/carriers.ts';
@@ -39,7 +39,7 @@ function cases(numbers: readonly number[], mixed: boolean, flows: number): Case[
   return numbers.map((seed) => {
     const made = madeStation(seed, { mixed, most: 4 });
     const station = readStation(made, 'station.json');
-    const most = stagedPumps(station, station.duty).flatOut(station.duty.length).flow;
+    const most = stagedPumpsOf(station, station.duty).flatOut(station.duty.length).flow;
     const roll = dice(seed + 500);
     return { seed, file: made, flows: Array.from({ length: flows }, () => most * (0.05 + 0.93 * roll())) };
   });

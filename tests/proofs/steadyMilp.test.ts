@@ -1,11 +1,11 @@
 import { describe, expect, it } from 'vitest';
 import type { Log } from '../../server/ingest/log.ts';
-import { FixedSet } from '../../server/staging/bestSets.ts';
 import { demandRecord } from '../../server/staging/demandRecord.ts';
+import { FixedSet } from '../../server/staging/fixedSet.ts';
 import { MixedPumps } from '../../server/staging/mixedPumps.ts';
 import { ruleOf } from '../../server/staging/rules/all.ts';
 import { runRule } from '../../server/staging/run.ts';
-import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import type { Action } from '../../server/staging/state.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import { dutyPumpsAreEqual, type Station } from '../../server/station/station.ts';
@@ -36,7 +36,7 @@ function aDay(seed: number, mixed: boolean, steps: number): Day {
   const made = madeStation(seed, { mixed, most: 3 });
   const roll = dice(seed + 900);
   const fresh = readStation(made, 'station.json');
-  const full = stagedPumps(fresh, fresh.duty).flatOut(fresh.duty.length);
+  const full = stagedPumpsOf(fresh, fresh.duty).flatOut(fresh.duty.length);
   const file: StationFile = {
     ...made,
     storage: { activeVolume: (1 + 3000 * roll()) * full.flow },
@@ -112,7 +112,7 @@ function expectLeast(day: Day, ways: Ways): void {
   const actions: Action[] = [];
   const { totals } = runRule(
     ruleOf('steady')!,
-    stagedPumps(station, station.duty),
+    stagedPumpsOf(station, station.duty),
     demandRecord(station, log),
     (i, action) => {
       actions[i] = action;

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { Contenders } from '../../server/staging/contenders.ts';
-import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import { dice, madeStation } from '../support/madeStations.ts';
 
@@ -9,7 +9,7 @@ describe('counts that may be the best at a flow', () => {
     let left = 0;
     for (let seed = 0; seed < 60; seed++) {
       const station = readStation(madeStation(seed), 'station.json');
-      const pumps = stagedPumps(station, station.duty);
+      const pumps = stagedPumpsOf(station, station.duty);
       const contenders = new Contenders(pumps);
       const roll = dice(seed + 3);
       const most = pumps.flatOut(pumps.most).flow;

@@ -3,7 +3,7 @@ import { demandRecord } from '../../server/staging/demandRecord.ts';
 import type { RuleId } from '../../server/staging/result.ts';
 import { ruleOf } from '../../server/staging/rules/all.ts';
 import { type Run, runRule } from '../../server/staging/run.ts';
-import { stagedPumps } from '../../server/staging/stagedPumps.ts';
+import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import type { Station } from '../../server/station/station.ts';
 
 /** A log of flows [m³/s], an hour each unless said otherwise, from 2025 on. */
@@ -22,5 +22,5 @@ export function logOf(flows: readonly number[], seconds = 3600): Log {
 
 /** One rule over a log. */
 export function run(station: Station, rule: RuleId, log: Log): Run {
-  return runRule(ruleOf(rule)!, stagedPumps(station, station.duty), demandRecord(station, log));
+  return runRule(ruleOf(rule)!, stagedPumpsOf(station, station.duty), demandRecord(station, log));
 }

@@ -1,8 +1,10 @@
-import { FixedSet, type SetCurve, setsInUse } from '../bestSets.ts';
+import { setsInUse } from '../bestSets.ts';
 import type { DemandRecord } from '../demandRecord.ts';
 import { setOf } from '../equalPumps.ts';
+import { FixedSet } from '../fixedSet.ts';
 import { MixedPumps } from '../mixedPumps.ts';
 import { type Decide, type Rule, staticHeadAt } from '../rule.ts';
+import type { SetCurve } from '../setCurve.ts';
 import type { StagedPumps } from '../stagedPumps.ts';
 import { type Action, held, type State } from '../state.ts';
 import { eachCandidate, flatOut } from './trimmedCounts.ts';
