@@ -1,6 +1,7 @@
 import type { ComponentChildren } from 'preact';
 import { useLayoutEffect, useRef, useState } from 'preact/hooks';
-import { type Drawn, type Look, lookOf } from '../chart.ts';
+import type { Drawn } from '../chart/drawing.ts';
+import { type Look, lookOf } from '../chart/look.ts';
 import { usePage } from '../context.ts';
 
 interface PictureProps {

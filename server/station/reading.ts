@@ -11,3 +11,11 @@ export interface Reading {
   readonly notes: Note[];
   fault(code: Fault['code'], at: string, found: string, wanted: string): void;
 }
+
+/** Two fields that say the same by different numbers are told apart from one that is rounded. */
+export const DIFFERS = 0.05;
+
+/** A value of the file in SI; null where the file has none. */
+export function scaled(value: number | undefined, unit: number): number | null {
+  return value === undefined ? null : value * unit;
+}

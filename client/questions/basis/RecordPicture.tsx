@@ -3,7 +3,7 @@ import type { ComparisonBody } from '../../../server/api.ts';
 import type { RuleSeries } from '../../../server/staging/pictures.ts';
 import type { RuleId } from '../../../server/staging/result.ts';
 import { api, linesOf } from '../../api.ts';
-import { drawRecord } from '../../chart.ts';
+import { drawRecord } from '../../chart/record.ts';
 import { usePage } from '../../context.ts';
 import { type Format, list, sentence } from '../../format.ts';
 import { Picture } from '../../parts/Picture.tsx';

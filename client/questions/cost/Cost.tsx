@@ -1,7 +1,7 @@
 import { useCallback, useMemo } from 'preact/hooks';
 import type { RuleResult } from '../../../server/staging/result.ts';
 import { asRun, type Weighed, weigh } from '../../answers.ts';
-import { drawBars } from '../../chart.ts';
+import { drawBars } from '../../chart/bars.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
 import { type Format, type Measure, pumps, sentence } from '../../format.ts';
 import { Cautions } from '../../parts/Cautions.tsx';

@@ -2,7 +2,7 @@ import { useCallback, useMemo } from 'preact/hooks';
 import type { PowerOverFlow } from '../../../server/staging/pictures.ts';
 import { HEAD_UNITS } from '../../../server/units.ts';
 import { stepsText } from '../../answers.ts';
-import { drawCurves, drawHours } from '../../chart.ts';
+import { drawCurves, drawHours } from '../../chart/curves.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
 import { Cautions } from '../../parts/Cautions.tsx';
 import { Figure } from '../../parts/Figure.tsx';
