@@ -90,9 +90,13 @@ function sha256(bytes) {
  * that one too; npm told to stop ends with its shell and tells nobody, so the parent is watched where npm is one.
  */
 export function runTypeScript(file, args) {
-  const child = spawn(process.execPath, ['--import', import.meta.resolve('tsx'), at(file), ...args], {
-    stdio: 'inherit',
-  });
+  const child = spawn(
+    process.execPath,
+    ['--enable-source-maps', '--import', import.meta.resolve('./typescript.mjs'), at(file), ...args],
+    {
+      stdio: 'inherit',
+    },
+  );
   for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, () => child.kill(signal));
   const parent = process.ppid;
   if (process.env.npm_lifecycle_event !== undefined) {

@@ -62,7 +62,7 @@ export interface Server {
 /** Starts server/main.ts with so much of an environment, and waits for its address or its end. */
 export function server(env: Readonly<Record<string, string>>): Promise<Server | Ended> {
   const before = performance.now();
-  const child = spawn(process.execPath, ['--import', 'tsx', 'server/main.ts'], {
+  const child = spawn(process.execPath, ['--import', './scripts/typescript.mjs', 'server/main.ts'], {
     cwd: ROOT,
     env: { ...process.env, ...env },
   });
