@@ -57,7 +57,7 @@ export interface OptionResult {
 }
 
 /** What stands on every case (model.md §10). */
-export const CASE_CAUTIONS: readonly string[] = [
+const CASE_CAUTIONS: readonly string[] = [
   'Advice only. Savings are worked out from curves, a record and a tariff; a licensed engineer must design the change.',
   'A drive needs a look at motor cooling and minimum speed, critical speeds, harmonics and bearing currents.',
   'Minimum flow, surge on speed changes and power cuts, and velocity in a rising main that carries solids still bind.',
@@ -107,6 +107,7 @@ export function makeCase(
   return {
     format: 'nth-pump/case-result/1',
     ...results[0]!,
+    sentence: `${results[0]!.sentence}${worthMore(results, input.tariff.currency)}`,
     station: input.station.name,
     currency: input.tariff.currency,
     baseline: { rule: terms.baseline, annual: baseline, lifeCycleCost: leave.lifeCycleCost },
@@ -119,6 +120,14 @@ export function makeCase(
     notes: [...results[0]!.notes, ...comparison.notes.filter((note) => note.code !== 'rule-left-out')],
     cautions: CASE_CAUTIONS,
   };
+}
+
+/** A word for another option that is worth more than the one proposed; nothing where none is. */
+function worthMore([proposed, ...others]: readonly OptionResult[], currency: string): string {
+  const best = others.reduce((most, one) => (one.npv > most.npv ? one : most), proposed!);
+  if (best.npv <= 0 || best.npv <= proposed!.npv + 0.01 * Math.abs(proposed!.npv)) return '';
+  const worth = moneyText(best.npv, currency);
+  return ` Of the options, ${withinSentence(best.name)} has the highest net present value: ${worth}.`;
 }
 
 function requireRun(comparison: Comparison, rule: RuleId, at: string, file: string): void {

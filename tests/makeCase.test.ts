@@ -39,6 +39,18 @@ describe('the sentence of a case', () => {
     expect(caseOf(name === undefined ? {} : { name }).sentence).toContain(`It pays: ${text} `);
   });
 
+  it('names another option that is worth more', () => {
+    const dear = { name: 'all drives', capital: 1_000_000 };
+    const cheap = { name: 'One drive', rule: 'one-trimmed' as const, capital: 100 };
+    const { sentence, options } = caseOf({ ...dear, options: [cheap] });
+    expect(options[2]!.npv).toBeGreaterThan(options[1]!.npv);
+    expect(sentence).toMatch(/Of the options, one drive has the highest net present value: [\d ]+ EUR\.$/);
+    // Worth less than what is proposed, it goes without a word.
+    expect(caseOf({ name: 'all drives', capital: 0, options: [{ ...cheap, capital: 1e6 }] }).sentence).not.toContain(
+      'Of the options',
+    );
+  });
+
   it('says short paybacks in months', () => {
     const yearly = caseOf({}).annualCostSaving;
     const sentenceAt = (years: number) => caseOf({ capital: years * yearly }).sentence;
