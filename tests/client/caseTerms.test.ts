@@ -8,7 +8,7 @@ import {
   shortVerdict,
   startingCase,
 } from '../../client/questions/change/caseTerms.ts';
-import { demoStations } from '../../server/demo/demo.ts';
+import { demoStations } from '../../server/demo/all.ts';
 import { readCase } from '../../server/economics/caseFile.ts';
 import { readRecord } from '../../server/ingest/record.ts';
 import { makeCase } from '../../server/makeCase.ts';
@@ -106,6 +106,10 @@ describe('the case to begin with', () => {
     const format = aFormat();
     expect(caseAnswer({ sentence }, format, { placeholder: true })).toMatch(/€9,000\. The price is a placeholder$/);
     expect(caseAnswer({ sentence }, format, { placeholder: false })).toMatch(/€9,000$/);
+    const long = { sentence: 'Restage first: it is free. Beyond that, no. Of the options, one drive is worth most.' };
+    expect(caseAnswer(long, format, { placeholder: false })).toBe(
+      'Restage first: it is free. Of the options, one drive is worth most',
+    );
   });
 
   it('writes money as everywhere on the page and calls rules by its names', () => {

@@ -172,14 +172,17 @@ export function readable(text: string, format: Format): string {
   return metered.replace(/(\d) (?=\d{3}\b|%|kWh)/g, '$1\u00a0');
 }
 
-/** The one line of the answer: the sentence of the case, with a word where its price is not yet one. */
+/** The one line of the answer: the verdict and the last word on it, with a word where its price is not yet one. */
 export function caseAnswer(
   result: Pick<CaseResult, 'sentence'>,
   format: Format,
   { placeholder }: { readonly placeholder: boolean },
 ): string {
-  const sentence = readable(result.sentence, format).replace(/\.$/, '');
-  return placeholder ? `${sentence}. The price is a placeholder` : sentence;
+  const sentences = readable(result.sentence, format)
+    .replace(/\.$/, '')
+    .split(/\. (?=[A-Z])/);
+  const said = sentences.length < 3 ? sentences : [sentences[0]!, sentences[sentences.length - 1]!];
+  return [...said, ...(placeholder ? ['The price is a placeholder'] : [])].join('. ');
 }
 
 /** The first sentence of a case: `Restage first: the same pumps under batch save 4 190 EUR a year for nothing` */
