@@ -143,7 +143,7 @@ function leastOf<T extends { readonly perYear: number }>(rules: readonly T[]): T
 }
 
 /** An amount a year in the coin of the weighing: `€41,200 a year`. */
-export function perYearText(weighing: Weighing, amount: number, format: Format): string {
+function perYearText(weighing: Weighing, amount: number, format: Format): string {
   return `${format.say(weighing === 'money' ? format.money : format.energy, amount)} a year`;
 }
 

@@ -18,7 +18,7 @@ export function faultsOf(read: () => unknown): FaultsByPath {
   }
 }
 
-export function byPath(faults: readonly Fault[]): FaultsByPath {
+function byPath(faults: readonly Fault[]): FaultsByPath {
   const found = new Map<string, string>();
   for (const fault of faults) {
     const line = `found ${fault.found}; wanted ${fault.wanted}`;

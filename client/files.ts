@@ -1,6 +1,4 @@
 /** Which of the program's files a dropped file is, told by its content and not by its name. */
-export type FileKind = 'station' | 'tariff' | 'record' | 'case';
-
 export type Told =
   | { readonly kind: 'station' | 'tariff' | 'case'; readonly content: unknown }
   /** `type` is what a record is sent as: rows of text, or a profile in JSON. */

@@ -4,7 +4,7 @@ import { fileURLToPath } from 'node:url';
 import type { Db } from './open.ts';
 
 /** The migrations of this checkout. */
-export const MIGRATIONS = fileURLToPath(new URL('../migrations', import.meta.url));
+const MIGRATIONS = fileURLToPath(new URL('../migrations', import.meta.url));
 
 /** The database and the migrations on disk do not fit together; the message says how, for a person. */
 export class MigrationError extends Error {

@@ -24,6 +24,6 @@ export function existing<T>(find: (id: number) => T | null, text: unknown, at: s
 }
 
 /** Refuses an id that stands for nothing. */
-export function notFound(text: unknown, at: string, thing: string): never {
+function notFound(text: unknown, at: string, thing: string): never {
   refuse({ code: 'not_found', file: 'request', at, found: `'${String(text)}'`, wanted: `the id of a ${thing}` });
 }

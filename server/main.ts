@@ -4,7 +4,7 @@ import { fileURLToPath } from 'node:url';
 import { MigrationError, migrate } from '../db/migrate.ts';
 import { openDatabase } from '../db/open.ts';
 import { createApp } from './app.ts';
-import { demoStations } from './demo/demo.ts';
+import { demoStations } from './demo/all.ts';
 import { isLoopback } from './guards.ts';
 import { loadDemo } from './loadDemo.ts';
 import { databasePath } from './settings.ts';

@@ -40,7 +40,7 @@ const made = (summary: string, answer: z.ZodType, more: Partial<Operation>): Ope
 const removed = (summary: string): Operation => ({ summary, status: 204 });
 
 /** Every operation of the interface, by path below `/api`; a test holds it against the routes of the server. */
-export const OPERATIONS: Readonly<Record<string, Methods>> = {
+const OPERATIONS: Readonly<Record<string, Methods>> = {
   '/health': { get: ok('Whether the server answers, and its version', answers.health) },
   '/stations': {
     get: ok('Stations', z.array(answers.stationEntry)),

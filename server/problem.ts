@@ -23,7 +23,7 @@ const STATUS_OF: Partial<Record<FaultCode, number>> = {
 };
 
 /** The problem document for an {@link InputError}. */
-export function problemOf(error: InputError): Problem {
+function problemOf(error: InputError): Problem {
   const statuses = error.faults.map((fault) => STATUS_OF[fault.code] ?? 422);
   const status = statuses.every((each) => each === statuses[0]) ? (statuses[0] ?? 422) : 422;
   return {

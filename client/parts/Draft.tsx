@@ -47,7 +47,7 @@ export function Draft({ saved, format, changes, without, onKeep, onDrop, faults 
 }
 
 /** `static head 96 to 30 m`; a number without a name of its own is called by its path. */
-export function differenceText({ path, saved, draft }: Difference, station: StationFile, format: Format): string {
+function differenceText({ path, saved, draft }: Difference, station: StationFile, format: Format): string {
   const known = touchables(station, format).find((each) => each.path.join('.') === path.join('.'));
   const factor = known ? known.fileFactor * known.measure.factor : 1;
   const shown = (value: number) => String(Number((value * factor).toPrecision(6)));

@@ -10,7 +10,7 @@ export interface LocalHour {
   readonly weekday: number;
 }
 
-export const DEMO_YEAR = 2025;
+const DEMO_YEAR = 2025;
 
 /** Every hour of the demo's year in a zone: 8760, clock changes included. */
 export function localHours(zone: string): LocalHour[] {

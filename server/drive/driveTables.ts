@@ -3,8 +3,6 @@ import type { LoadPoint } from './partLoad.ts';
 
 export const DRIVE_NAMES = ['typical'] as const;
 
-export type DriveName = (typeof DRIVE_NAMES)[number];
-
 /** Loads of the columns below. */
 const LOADS = [0.016, 0.125, 0.25, 0.42, 0.5, 0.75, 1];
 

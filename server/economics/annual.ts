@@ -2,7 +2,7 @@ import type { LedgerKwh } from '../staging/result.ts';
 import type { Bill, Tariff } from '../tariff/tariff.ts';
 
 /** Hours of a year in which a record is scaled to a year (model.md §8). */
-export const HOURS_PER_YEAR = 8760;
+const HOURS_PER_YEAR = 8760;
 
 /** A year of a rule, scaled from a record. */
 export interface AnnualFigures {

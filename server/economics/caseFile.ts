@@ -4,7 +4,7 @@ import { readAs, shown } from '../readFile.ts';
 import { RULE_IDS, type RuleId } from '../staging/result.ts';
 import type { InvestmentTerms } from './investment.ts';
 
-export const CASE_FORMAT = 'nth-pump/case/1';
+const CASE_FORMAT = 'nth-pump/case/1';
 
 /** Grades of ISO 9906:2012, table 8. */
 const PUMP_GRADES = ['1U', '1E', '1B', '2B', '2U', '3B'] as const;

@@ -27,7 +27,7 @@ export interface InvestmentWorth {
 }
 
 /** Saving of each year: t = 1…n saves annualCostSaving·(1 + energyEscalation)^t + maintenanceSavingPerYear. */
-export function yearlySavings(terms: InvestmentTerms, annualCostSaving: number): number[] {
+function yearlySavings(terms: InvestmentTerms, annualCostSaving: number): number[] {
   return Array.from(
     { length: terms.years },
     (_, i) => annualCostSaving * (1 + terms.energyEscalation) ** (i + 1) + terms.maintenanceSavingPerYear,

@@ -5,7 +5,7 @@
  * ed. 1990, Tables 32a to 32c). Its own spread (Table 3.B.1): flanged elbow ±35 %, flanged gate valve ±50 %, flanged
  * check valve +200/−80 %. Where the maker gives a K, use that as `minorLoss` instead.
  */
-export const FITTINGS = {
+const FITTINGS = {
   /** Rounded inlet, Table 32a. */
   'bell-mouth-inlet': 0.05,
   /** Inlet flush with a wall, Table 32a. */

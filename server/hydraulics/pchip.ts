@@ -49,10 +49,6 @@ export class Pchip {
   }
 
   /** dy/dx at v. */
-  slopeAt(v: number): number {
-    return this.slopeInSegment(this.segment(v), v);
-  }
-
   slopeInSegment(i: number, v: number): number {
     const t = v - this.x[i]!;
     return this.slope[i]! + t * (2 * this.c2[i]! + 3 * t * this.c3[i]!);

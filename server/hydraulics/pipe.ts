@@ -2,8 +2,8 @@ import { GRAVITY } from '../units.ts';
 import type { Friction } from './systemCurve.ts';
 
 /** Flow is laminar below the first Reynolds number and turbulent above the second. */
-export const LAMINAR_BELOW = 2000;
-export const TURBULENT_ABOVE = 4000;
+const LAMINAR_BELOW = 2000;
+const TURBULENT_ABOVE = 4000;
 
 /** Colebrook and White's formula is meant for pipes no rougher than this share of their diameter. */
 export const MOST_RELATIVE_ROUGHNESS = 0.05;
@@ -52,7 +52,7 @@ export function frictionFactor(reynolds: number, roughness: number): number {
 }
 
 /** Head lost along a pipe [m] by Hazen and Williams, h = 10.667·L·Q^1.852/(C^1.852·D^4.871); m and m³/s. */
-export function hazenWilliamsLoss(pipe: { length: number; diameter: number; c: number }, flow: number): number {
+function hazenWilliamsLoss(pipe: { length: number; diameter: number; c: number }, flow: number): number {
   return (10.667 * pipe.length * flow ** 1.852) / (pipe.c ** 1.852 * pipe.diameter ** 4.871);
 }
 

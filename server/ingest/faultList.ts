@@ -27,10 +27,6 @@ export class FaultList {
     else this.#unlisted++;
   }
 
-  hasLine(line: number): boolean {
-    return this.#lines.has(line);
-  }
-
   get isEmpty(): boolean {
     return this.#faults.length === 0;
   }

@@ -19,7 +19,7 @@ export interface Timestamp {
 export type TimeFault = 'not-a-time' | 'no-such-day' | 'needs-order';
 
 /** Milliseconds from 1970 to a calendar day in UTC, or NaN if there is no such day (30 February is refused). */
-export function dayMs(year: number, month: number, day: number): number {
+function dayMs(year: number, month: number, day: number): number {
   if (month < 1 || month > 12 || day < 1 || day > 31) return Number.NaN;
   const ms = Date.UTC(year, month - 1, day);
   return new Date(ms).getUTCMonth() === month - 1 ? ms : Number.NaN;

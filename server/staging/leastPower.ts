@@ -18,7 +18,7 @@ export interface Leave {
 }
 
 /** All that the floor allows (model.md §5). */
-export const ANY_WAY: Leave = { modes: ['line', 'drive'], valve: true, overload: true, range: null };
+const ANY_WAY: Leave = { modes: ['line', 'drive'], valve: true, overload: true, range: null };
 
 /**
  * P̃(q; H): the least electric power with which a pump sends flow q into a header at head H, within what it may do: for

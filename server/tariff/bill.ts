@@ -54,20 +54,6 @@ export function billOf(plan: BillPlan, series: PowerSeries): Bill {
   };
 }
 
-/** Energy cost by interval, in the tariff's currency; one that straddles two rates pays each for its part. */
-export function energyCosts(plan: BillPlan, mean: Float64Array): Float64Array {
-  const costs = new Float64Array(plan.intervals);
-  const { cellStart, cellRate, segmentInterval, segmentSeconds } = plan;
-  for (let c = 0; c < cellRate.length; c++) {
-    const pricePerJoule = plan.tariff.energy[cellRate[c]!]!.rate / JOULES_PER_KWH;
-    for (let s = cellStart[c]!; s < cellStart[c + 1]!; s++) {
-      const i = segmentInterval[s]!;
-      costs[i]! += mean[i]! * segmentSeconds[s]! * pricePerJoule;
-    }
-  }
-  return costs;
-}
-
 /**
  * Share of the fullest demand window that the higher of two shared states runs,
  * w = (⌊W/T⌋·t_b + min(W mod T, t_b))/W with t_b = V/(Q_b − Q) and T = t_b + V/(Q − Q_a).

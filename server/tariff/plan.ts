@@ -1,4 +1,4 @@
-import { type Fault, InputError } from '../errors.ts';
+import { InputError } from '../errors.ts';
 import { DAY_MS, HOUR_MS, MINUTE_MS, offsetSpans, SECOND_MS, startOfLocalDay } from '../time.ts';
 import type { Period, Season, Tariff, Weekday } from './tariff.ts';
 
@@ -237,44 +237,6 @@ function seasonsOn(tariff: Tariff, monthDay: number): ReadonlySet<string> {
   const within = ({ from, to }: Season) =>
     from <= to ? monthDay >= from && monthDay <= to : monthDay >= from || monthDay <= to;
   return new Set(tariff.seasons.filter(within).map((season) => season.name));
-}
-
-/**
- * Faults of a tariff that leaves hours of the year without an energy rate, one for each day of the week that has some,
- * naming its first; none where every hour has one. `planBill` asks no more than the hours of a record; this asks all,
- * for a tariff that is kept for records to come.
- */
-export function coverageFaults(tariff: Tariff, fileName: string): Fault[] {
-  const faults: Fault[] = [];
-  for (const weekday of WEEKDAYS) {
-    const gap = firstGap(tariff, weekday);
-    if (gap === null) continue;
-    faults.push({
-      code: 'uncovered_hours',
-      file: fileName,
-      at: 'energy',
-      found: `no rate on a ${weekday} of ${gap.day} from ${gap.time}`,
-      wanted: RATE_WANTED,
-    });
-  }
-  return faults;
-}
-
-function firstGap(tariff: Tariff, weekday: Weekday): { day: string; time: string } | null {
-  const seen = new Set<string>();
-  for (let day = 0; day < 366; day++) {
-    const date = new Date(Date.UTC(2024, 0, 1 + day)); // a year with a 29 February
-    const seasons = seasonsOn(tariff, (date.getUTCMonth() + 1) * 100 + date.getUTCDate());
-    const key = [...seasons].join('\n');
-    if (seen.has(key)) continue;
-    seen.add(key);
-    const table = dayTableOf(tariff, weekday, seasons);
-    const cell = table.rate.indexOf(-1);
-    if (cell < 0) continue;
-    const time = new Date(table.cuts[cell]!).toISOString().slice(11, 16);
-    return { day: date.toISOString().slice(5, 10), time };
-  }
-  return null;
 }
 
 /** Table of a day of the week in so many seasons. */

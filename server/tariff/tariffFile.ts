@@ -4,7 +4,7 @@ import { readAs, shown } from '../readFile.ts';
 import { isTimeZone, MINUTE_MS, SECOND_MS } from '../time.ts';
 import type { Period, Season, Tariff, Weekday } from './tariff.ts';
 
-export const TARIFF_FORMAT = 'nth-pump/tariff/1';
+const TARIFF_FORMAT = 'nth-pump/tariff/1';
 
 const WEEKDAYS = ['mon', 'tue', 'wed', 'thu', 'fri', 'sat', 'sun'] as const satisfies readonly Weekday[];
 
@@ -13,7 +13,7 @@ const WINDOW_MINUTES = [15, 30, 60] as const;
 const DEFAULT_WINDOW_MINUTES = 30;
 
 /** Years for which the holidays of a country are worked out: those of the loggers whose records are read today. */
-export const HOLIDAY_YEARS: readonly number[] = Array.from({ length: 41 }, (_, i) => 2000 + i);
+const HOLIDAY_YEARS: readonly number[] = Array.from({ length: 41 }, (_, i) => 2000 + i);
 
 /**
  * Local dates `2025-12-25` of the public holidays of a country (ISO 3166 code) or of a region of it, or null where

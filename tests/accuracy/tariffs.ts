@@ -1,11 +1,10 @@
 import { publicHolidayDates } from '../../server/holidays.ts';
-import { energyCosts } from '../../server/tariff/bill.ts';
 import { planBill } from '../../server/tariff/plan.ts';
 import type { Bill, PowerSeries } from '../../server/tariff/tariff.ts';
 import { readTariff } from '../../server/tariff/tariffFile.ts';
 import localDays from '../reference/local-days.json' with { type: 'json' };
 import published from '../reference/published-bills.json' with { type: 'json' };
-import { aTariff, aTariffFile, billFor, powerOf, steady } from '../support/tariffs.ts';
+import { aTariff, aTariffFile, billFor, energyCosts, powerOf, steady } from '../support/tariffs.ts';
 import { halfDigit, type OutsideCheck } from './check.ts';
 
 const CENT = 'half of the last digit printed';

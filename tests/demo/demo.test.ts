@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { demoStations } from '../../server/demo/demo.ts';
+import { demoStations } from '../../server/demo/all.ts';
 import { localHours } from '../../server/demo/localHours.ts';
 import { randomFrom, wandering } from '../../server/demo/random.ts';
 import { readCase } from '../../server/economics/caseFile.ts';

@@ -1,6 +1,6 @@
 import type { Response } from 'supertest';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { demoStations } from '../../server/demo/demo.ts';
+import { demoStations } from '../../server/demo/all.ts';
 import { aRecordCsv, aStationFile } from '../support/aStation.ts';
 import { mismatches } from '../support/jsonSchema.ts';
 import { madeStation } from '../support/madeStations.ts';

@@ -3,7 +3,6 @@ import type { Log } from '../../server/ingest/log.ts';
 import { demandRecord } from '../../server/staging/demandRecord.ts';
 import { FixedSet } from '../../server/staging/fixedSet.ts';
 import { MixedPumps } from '../../server/staging/mixedPumps.ts';
-import { ruleOf } from '../../server/staging/rules/all.ts';
 import { runRule } from '../../server/staging/run.ts';
 import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import type { Action } from '../../server/staging/state.ts';
@@ -13,7 +12,7 @@ import type { StationFile } from '../../server/station/stationFile.ts';
 import { dice, ENDURE, madeStation, seeds } from '../support/madeStations.ts';
 import { PlainStation } from '../support/plainModel.ts';
 import { PlainRules } from '../support/plainRules.ts';
-import { logOf } from '../support/running.ts';
+import { logOf, ruleOf } from '../support/running.ts';
 import { type Interval, leastSequence, type Way } from '../support/steadyProgram.ts';
 
 /**
@@ -111,7 +110,7 @@ function expectLeast(day: Day, ways: Ways): void {
   }));
   const actions: Action[] = [];
   const { totals } = runRule(
-    ruleOf('steady')!,
+    ruleOf('steady'),
     stagedPumpsOf(station, station.duty),
     demandRecord(station, log),
     (i, action) => {

@@ -1,7 +1,8 @@
 import type { Log } from '../../server/ingest/log.ts';
 import { demandRecord } from '../../server/staging/demandRecord.ts';
 import type { RuleId } from '../../server/staging/result.ts';
-import { ruleOf } from '../../server/staging/rules/all.ts';
+import type { Rule } from '../../server/staging/rule.ts';
+import { RULES } from '../../server/staging/rules/all.ts';
 import { type Run, runRule } from '../../server/staging/run.ts';
 import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import type { Station } from '../../server/station/station.ts';
@@ -20,7 +21,13 @@ export function logOf(flows: readonly number[], seconds = 3600): Log {
   };
 }
 
+export function ruleOf(id: RuleId): Rule {
+  const found = RULES.find((rule) => rule.id === id);
+  if (!found) throw new Error(`no rule ${id}`);
+  return found;
+}
+
 /** One rule over a log. */
 export function run(station: Station, rule: RuleId, log: Log): Run {
-  return runRule(ruleOf(rule)!, stagedPumpsOf(station, station.duty), demandRecord(station, log));
+  return runRule(ruleOf(rule), stagedPumpsOf(station, station.duty), demandRecord(station, log));
 }

@@ -1,7 +1,8 @@
 import { billOf } from '../../server/tariff/bill.ts';
-import { planBill } from '../../server/tariff/plan.ts';
+import { type BillPlan, planBill } from '../../server/tariff/plan.ts';
 import type { Bill, PowerSeries, SharedIntervals, Tariff } from '../../server/tariff/tariff.ts';
 import { readTariff, type TariffFile } from '../../server/tariff/tariffFile.ts';
+import { JOULES_PER_KWH } from '../../server/units.ts';
 
 /** A tariff file with one rate, in a zone of the test's choice; any field may be replaced. */
 export function aTariffFile(fields: Partial<TariffFile> = {}): TariffFile {
@@ -57,4 +58,18 @@ export function billFor(tariff: Tariff, series: PowerSeries): Bill {
 /** The same power over so many hours. */
 export function steady(from: string, hours: number, kw = 1, stepMinutes = 60): EvenRecord {
   return { from, stepMinutes, kw: new Array<number>((hours * 60) / stepMinutes).fill(kw) };
+}
+
+/** Energy cost by interval as a plan has it, in the tariff's currency; one that straddles two rates pays each for its part. */
+export function energyCosts(plan: BillPlan, mean: Float64Array): Float64Array {
+  const costs = new Float64Array(plan.intervals);
+  const { cellStart, cellRate, segmentInterval, segmentSeconds } = plan;
+  for (let c = 0; c < cellRate.length; c++) {
+    const pricePerJoule = plan.tariff.energy[cellRate[c]!]!.rate / JOULES_PER_KWH;
+    for (let s = cellStart[c]!; s < cellStart[c + 1]!; s++) {
+      const i = segmentInterval[s]!;
+      costs[i]! += mean[i]! * segmentSeconds[s]! * pricePerJoule;
+    }
+  }
+  return costs;
 }

@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest';
-import { billOf, energyCosts, peakShare } from '../../server/tariff/bill.ts';
-import { coverageFaults, planBill } from '../../server/tariff/plan.ts';
+import { billOf, peakShare } from '../../server/tariff/bill.ts';
+import { planBill } from '../../server/tariff/plan.ts';
 import type { PowerSeries } from '../../server/tariff/tariff.ts';
 import localDays from '../reference/local-days.json' with { type: 'json' };
-import { aTariff, billFor, powerOf, steady } from '../support/tariffs.ts';
+import { aTariff, billFor, energyCosts, powerOf, steady } from '../support/tariffs.ts';
 
 const WORKDAYS = ['mon', 'tue', 'wed', 'thu', 'fri'] as const;
 
@@ -127,30 +127,6 @@ describe('hours without a rate', () => {
     expect(() => planBill(tariff, series.startMs, series.seconds, 'rates.json')).toThrow(
       'rates.json energy: found no rate from 2025-06-07 00:00 (sat); 48 h of the record in all',
     );
-  });
-
-  it('of any record are told of a tariff by itself', () => {
-    const tariff = aTariff({
-      seasons: [
-        { name: 'winter', from: '11-01', to: '02-28' },
-        { name: 'summer', from: '04-01', to: '10-31' },
-      ],
-      energy: [
-        { name: 'winter', season: 'winter', rate: 0.3 },
-        { name: 'weekend', days: ['sat', 'sun'], rate: 0.1 },
-        { name: 'summer', season: 'summer', from: '06:00', to: '05:30', rate: 0.2 },
-      ],
-    });
-    // March is in no season; and the first summer day that lacks its half-hour comes after it.
-    expect(coverageFaults(tariff, 'rates.json').map((fault) => fault.found)).toEqual(
-      WORKDAYS.map((day) => `no rate on a ${day} of 03-01 from 00:00`),
-    );
-    const withMarch = { ...tariff, seasons: [...tariff.seasons, { name: 'march', from: 301, to: 331 }] };
-    const rate = { ...tariff.energy[0]!, name: 'march', season: 'march' };
-    expect(
-      coverageFaults({ ...withMarch, energy: [...tariff.energy, rate] }, 'rates.json').map((fault) => fault.found),
-    ).toEqual(WORKDAYS.map((day) => `no rate on a ${day} of 04-01 from 05:30`));
-    expect(coverageFaults(aTariff(), 'rates.json')).toEqual([]);
   });
 
   it('outside the record do not matter', () => {

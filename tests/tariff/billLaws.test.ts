@@ -1,10 +1,10 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { billOf, energyCosts } from '../../server/tariff/bill.ts';
+import { billOf } from '../../server/tariff/bill.ts';
 import { planBill } from '../../server/tariff/plan.ts';
 import type { PowerSeries, Tariff, Weekday } from '../../server/tariff/tariff.ts';
 import { readTariff, type TariffFile } from '../../server/tariff/tariffFile.ts';
-import { aTariffFile, NOT_SHARED } from '../support/tariffs.ts';
+import { aTariffFile, energyCosts, NOT_SHARED } from '../support/tariffs.ts';
 
 /** Laws that hold for every tariff and record, and a slow bill that walks the clock minute by minute. */
 

@@ -45,10 +45,7 @@ export function CaseView({ result, placeholder, brief = false }: CaseViewProps) 
 }
 
 /** `Over 15 years at 5 % a year, prices rising 0 %; real rates. A year, scaled from 2,000 hours.` */
-export function termsText(
-  { years, discountRate, energyEscalation, rates, record }: CaseResult,
-  format: Format,
-): string {
+function termsText({ years, discountRate, energyEscalation, rates, record }: CaseResult, format: Format): string {
   const percent = (rate: number) => format.say(format.percent, 100 * rate);
   const kind = rates === null ? '' : `, ${rates === 'real' ? 'both above inflation' : 'both with inflation'}`;
   const scaled = isScaled(record.hours)

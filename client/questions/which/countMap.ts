@@ -22,7 +22,7 @@ function whoOf({ count, set }: BestCountMap): readonly (readonly number[])[] {
 }
 
 /** Whoever is best: `2 pumps`, `Beck and Pair`, `none can`. */
-export function whoText({ sets }: Pick<BestCountMap, 'sets'>, who: number): string {
+function whoText({ sets }: Pick<BestCountMap, 'sets'>, who: number): string {
   if (who === 0) return 'none can';
   return sets.length > 0 ? list(sets[who - 1]!) : pumps(who);
 }

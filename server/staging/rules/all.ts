@@ -1,4 +1,3 @@
-import type { RuleId } from '../result.ts';
 import type { Rule } from '../rule.ts';
 import { batch } from './batch.ts';
 import { fixedSpeed } from './fixedSpeed.ts';
@@ -9,7 +8,3 @@ import { bestCount, lateStaging } from './trimmedCounts.ts';
 
 /** The rules in the order in which they are shown. */
 export const RULES: readonly Rule[] = [fixedSpeed, oneTrimmed, lateStaging, flowSteps, bestCount, steady, batch];
-
-export function ruleOf(id: RuleId): Rule | null {
-  return RULES.find((rule) => rule.id === id) ?? null;
-}
