@@ -15,6 +15,7 @@ import { latestRecord, tariffFor } from './opening.ts';
 import { AddFiles } from './parts/AddFiles.tsx';
 import { AdviceOnly, AllCautions } from './parts/Cautions.tsx';
 import { Draft } from './parts/Draft.tsx';
+import { Faults } from './parts/Faults.tsx';
 import { Header } from './parts/Header.tsx';
 import { Rail } from './parts/Rail.tsx';
 import { Sheet } from './parts/Sheet.tsx';
@@ -253,11 +254,7 @@ export function App() {
           </button>
         </AddFiles>
       )}
-      {faults.length > 0 && (
-        <p class="faults" role="alert">
-          {faults.join(' ')}
-        </p>
-      )}
+      <Faults lines={faults} />
       {!editing && saved && loaded && (
         <section class="subject" aria-label="Station">
           <h1>{saved.name}</h1>

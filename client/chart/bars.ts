@@ -1,6 +1,6 @@
 import type { Plugin } from 'chart.js';
 import type { Bars } from '../series.ts';
-import { type Drawn, draw, linear } from './drawing.ts';
+import { type Drawn, draw, type Kind, linear } from './drawing.ts';
 import type { Look } from './look.ts';
 
 /** Room behind the longest bar for what it comes to: so much a letter, and before the first. */
@@ -55,7 +55,7 @@ export function drawBars(canvas: HTMLCanvasElement, bars: Bars, look: Look): Dra
 }
 
 /** What each bar comes to, behind its end. */
-function barTexts(bars: Bars, look: Look): Plugin<'bar'> {
+function barTexts(bars: Bars, look: Look): Plugin<Kind> {
   return {
     id: 'texts',
     afterDatasetsDraw({ ctx, scales }) {

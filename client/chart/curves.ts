@@ -1,7 +1,7 @@
 import type { Plugin } from 'chart.js';
 import { type Box, overlap, placeNames, raiseClear } from '../labels.ts';
 import type { Curves, HoursByFlow } from '../series.ts';
-import { type Drawn, draw, figures, fixedWidth, linear, plotted, RIGHT, tip, unitOf } from './drawing.ts';
+import { type Drawn, draw, figures, fixedWidth, type Kind, linear, plotted, RIGHT, tip, unitOf } from './drawing.ts';
 import { countColour, type Look } from './look.ts';
 
 /** Power over flow: each who may run a line, heavy where it draws least, named where it ends; crossings stand on the axis. */
@@ -76,7 +76,7 @@ export function drawHours(canvas: HTMLCanvasElement, hours: HoursByFlow, curves:
 }
 
 /** Vertical lines where one gives way to another; with `labels`, the flow is written at the foot and its box noted. */
-function crossingMarks(curves: Curves, most: number, look: Look, labels: Box[] | null): Plugin<'line' | 'bar'> {
+function crossingMarks(curves: Curves, most: number, look: Look, labels: Box[] | null): Plugin<Kind> {
   const named = labels !== null;
   return {
     id: 'crossings',
@@ -130,7 +130,7 @@ function crossingMarks(curves: Curves, most: number, look: Look, labels: Box[] |
 }
 
 /** The name of each line beside it, where it covers no other. */
-function lineNames(curves: Curves, look: Look, labels: readonly Box[]): Plugin<'line'> {
+function lineNames(curves: Curves, look: Look, labels: readonly Box[]): Plugin<Kind> {
   return {
     id: 'names',
     afterDatasetsDraw({ ctx, scales, chartArea }) {

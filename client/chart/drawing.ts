@@ -4,7 +4,6 @@ import {
   CategoryScale,
   Chart,
   type ChartConfiguration,
-  type ChartType,
   Filler,
   LinearScale,
   LineController,
@@ -31,6 +30,9 @@ Chart.register(
   Tooltip,
 );
 
+/** The kinds of picture there are, told apart by `type`; one name for both, so that what marks one may mark the other. */
+export type Kind = 'line' | 'bar';
+
 /** A picture on its canvas, until it is taken off. */
 export interface Drawn {
   destroy(): void;
@@ -42,7 +44,7 @@ const AXIS_WIDTH = 70;
 export const RIGHT = 18;
 
 /** A picture on a canvas: as large as its box on the screen, of fixed size and fine on paper. */
-export function draw<T extends ChartType>(canvas: HTMLCanvasElement, look: Look, config: ChartConfiguration<T>): Drawn {
+export function draw(canvas: HTMLCanvasElement, look: Look, config: ChartConfiguration<Kind>): Drawn {
   const options = {
     ...config.options,
     animation: false,
@@ -54,7 +56,7 @@ export function draw<T extends ChartType>(canvas: HTMLCanvasElement, look: Look,
     canvas.width = look.size.width;
     canvas.height = look.size.height;
   }
-  const chart = new Chart(canvas, { ...config, options } as ChartConfiguration<T>);
+  const chart = new Chart(canvas, { ...config, options } as ChartConfiguration<Kind>);
   return { destroy: () => chart.destroy() };
 }
 
@@ -105,7 +107,7 @@ interface Tip {
 
 /** A tool tip in words: its head from x, a line for each series from y. */
 export function tip(look: Look, { title, label }: Tip) {
-  type Item = TooltipItem<'line'> | TooltipItem<'bar'>;
+  type Item = TooltipItem<Kind>;
   return {
     backgroundColor: look.paper,
     titleColor: look.ink,

@@ -33,7 +33,7 @@ export function drawRecord(
         },
       ]
     : [];
-  return draw<'line'>(canvas, look, {
+  return draw(canvas, look, {
     type: 'line',
     data: {
       datasets: [

@@ -1,5 +1,5 @@
 import type { Note } from '../errors.ts';
-import type { MonthBill } from '../tariff/tariff.ts';
+import type { MonthBill, PeriodBill } from '../tariff/tariff.ts';
 import type { MainVelocity, NpshMargin } from './watch.ts';
 
 /** Every rule the program knows; model.md calls them by these ids and so do files, HTTP and commands. */
@@ -67,7 +67,7 @@ export interface RuleResult {
   readonly starts: number | null;
   readonly ledgerKwh: LedgerKwh;
   readonly months?: readonly MonthBill[];
-  readonly periods?: readonly { readonly name: string; readonly energyKwh: number; readonly energyCost: number }[];
+  readonly periods?: readonly PeriodBill[];
 }
 
 /** What one set of pumps delivered in the runs of a log of levels: a drawdown test of each run, together. */

@@ -92,6 +92,13 @@ export interface MonthBill {
   readonly totalCost: number;
 }
 
+/** Energy of one rate of the tariff over the whole record. */
+export interface PeriodBill {
+  readonly name: string;
+  readonly energyKwh: number;
+  readonly energyCost: number;
+}
+
 export interface Bill {
   readonly energyCost: number;
   readonly demandCost: number;
@@ -100,6 +107,6 @@ export interface Bill {
   readonly totalCost: number;
   readonly carbonKg: number;
   readonly months: readonly MonthBill[];
-  readonly periods: readonly { readonly name: string; readonly energyKwh: number; readonly energyCost: number }[];
+  readonly periods: readonly PeriodBill[];
   readonly notes: readonly { readonly code: string; readonly text: string }[];
 }

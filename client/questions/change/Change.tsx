@@ -1,11 +1,10 @@
 import type { CaseResult } from '../../../server/makeCase.ts';
-import { HEAD_UNITS } from '../../../server/units.ts';
 import { type Change as ChangeFound, changesOf, changeText, liftText, unlikeText, weigh } from '../../answers.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
 import { Cautions } from '../../parts/Cautions.tsx';
 import { Figure } from '../../parts/Figure.tsx';
+import { StaticHead } from '../../parts/StaticHead.tsx';
 import { Table } from '../../parts/Table.tsx';
-import { Touch } from '../../parts/Touch.tsx';
 import { RULE_TEXT } from '../../rules.ts';
 import { equipmentOf } from '../../station.ts';
 import { isScaled } from '../../yearly.ts';
@@ -47,14 +46,7 @@ function TheCase({ open, record, saved, draft, touch, work }: QuestionProps & { 
         )}
       </div>
       <div class="touches no-print">
-        <Touch
-          label="Static head"
-          measure={format.head}
-          fileFactor={HEAD_UNITS[draft.units.head]}
-          value={draft.system.staticHead}
-          saved={saved.system.staticHead}
-          onChange={(value) => touch(['system', 'staticHead'], value)}
-        />
+        <StaticHead saved={saved} draft={draft} touch={touch} />
         <button
           type="button"
           disabled={result === null}
@@ -129,14 +121,7 @@ function EnergyChange({ open, saved, draft, touch }: QuestionProps) {
       {unlike && <p>{unlike}.</p>}
       <p>{liftText(deciding.from, format)}</p>
       <div class="touches no-print">
-        <Touch
-          label="Static head"
-          measure={format.head}
-          fileFactor={HEAD_UNITS[draft.units.head]}
-          value={draft.system.staticHead}
-          saved={saved.system.staticHead}
-          onChange={(value) => touch(['system', 'staticHead'], value)}
-        />
+        <StaticHead saved={saved} draft={draft} touch={touch} />
         <p class="aside">It decides most of what drives can do: try another.</p>
       </div>
       <Table

@@ -1,6 +1,7 @@
 import type { RuleResult } from '../../../server/staging/result.ts';
+import type { MonthBill, PeriodBill } from '../../../server/tariff/tariff.ts';
 import { usePage } from '../../context.ts';
-import { sentence } from '../../format.ts';
+import { type Measure, sentence } from '../../format.ts';
 import { Figure } from '../../parts/Figure.tsx';
 import { type Column, Table } from '../../parts/Table.tsx';
 import { RULE_TEXT } from '../../rules.ts';
@@ -14,6 +15,30 @@ interface RuleDetailsProps {
 /** A rule in full: what it does, every figure of its row, and its bill by period and month. */
 export function RuleDetails({ rule, columns }: RuleDetailsProps) {
   const { format } = usePage();
+  const { hours } = format;
+  const energy = {
+    head: 'Energy',
+    unit: 'kWh',
+    cell: (each: { readonly energyKwh: number }) => <Figure of={format.energy} value={each.energyKwh} bare />,
+  };
+  const money = <Row,>(head: string, cost: (row: Row) => number): Column<Row> => ({
+    head,
+    unit: format.money.unit,
+    cell: (row) => <Figure of={format.money} value={cost(row)} bare />,
+  });
+  const facts: readonly (readonly [string, Measure, number | null])[] = [
+    ['Highest power of any state', format.power, rule.peakStateKw],
+    ['Wire to water', format.percent, rule.wireToWaterPercent],
+    ['Hours with a shortfall', hours, rule.shortfallHours],
+    ['Hours below 0.3 of best flow', hours, rule.nearDeadHeadHours],
+    ['Hours outside the preferred range', hours, rule.outsidePreferredHours],
+    ...(rule.outsideAllowableHours === null
+      ? []
+      : [['Hours outside the allowable range', hours, rule.outsideAllowableHours] as const]),
+    ['Hours with a motor overloaded', hours, rule.overloadHours],
+    ['Hours at the end of a curve', hours, rule.endOfCurveHours],
+    ...(rule.carbonKg === undefined ? [] : [['Carbon', format.carbon, rule.carbonKg] as const]),
+  ];
   return (
     <div class="rule-details">
       <p>{RULE_TEXT[rule.rule].says}</p>
@@ -26,64 +51,14 @@ export function RuleDetails({ rule, columns }: RuleDetailsProps) {
             </dd>
           </div>
         ))}
-        <div>
-          <dt>Highest power of any state</dt>
-          <dd>
-            <Figure of={format.power} value={rule.peakStateKw} />
-          </dd>
-        </div>
-        <div>
-          <dt>Wire to water</dt>
-          <dd>
-            <Figure of={format.percent} value={rule.wireToWaterPercent} />
-          </dd>
-        </div>
-        <div>
-          <dt>Hours with a shortfall</dt>
-          <dd>
-            <Figure of={format.hours} value={rule.shortfallHours} />
-          </dd>
-        </div>
-        <div>
-          <dt>Hours below 0.3 of best flow</dt>
-          <dd>
-            <Figure of={format.hours} value={rule.nearDeadHeadHours} />
-          </dd>
-        </div>
-        <div>
-          <dt>Hours outside the preferred range</dt>
-          <dd>
-            <Figure of={format.hours} value={rule.outsidePreferredHours} />
-          </dd>
-        </div>
-        {rule.outsideAllowableHours !== null && (
-          <div>
-            <dt>Hours outside the allowable range</dt>
+        {facts.map(([name, of, value]) => (
+          <div key={name}>
+            <dt>{name}</dt>
             <dd>
-              <Figure of={format.hours} value={rule.outsideAllowableHours} />
+              <Figure of={of} value={value} />
             </dd>
           </div>
-        )}
-        <div>
-          <dt>Hours with a motor overloaded</dt>
-          <dd>
-            <Figure of={format.hours} value={rule.overloadHours} />
-          </dd>
-        </div>
-        <div>
-          <dt>Hours at the end of a curve</dt>
-          <dd>
-            <Figure of={format.hours} value={rule.endOfCurveHours} />
-          </dd>
-        </div>
-        {rule.carbonKg !== undefined && (
-          <div>
-            <dt>Carbon</dt>
-            <dd>
-              <Figure of={format.carbon} value={rule.carbonKg} />
-            </dd>
-          </div>
-        )}
+        ))}
       </dl>
       <Table
         caption="Hours of each set of pumps"
@@ -98,14 +73,7 @@ export function RuleDetails({ rule, columns }: RuleDetailsProps) {
           rows={rule.periods}
           keyOf={(period) => period.name}
           name={{ head: 'Period', cell: (period) => period.name }}
-          columns={[
-            { head: 'Energy', unit: 'kWh', cell: (each) => <Figure of={format.energy} value={each.energyKwh} bare /> },
-            {
-              head: 'Cost',
-              unit: format.money.unit,
-              cell: (each) => <Figure of={format.money} value={each.energyCost} bare />,
-            },
-          ]}
+          columns={[energy, money('Cost', (period: PeriodBill) => period.energyCost)]}
         />
       )}
       {rule.months && (
@@ -115,22 +83,10 @@ export function RuleDetails({ rule, columns }: RuleDetailsProps) {
           keyOf={(month) => month.month}
           name={{ head: 'Month', cell: (month) => month.month }}
           columns={[
-            { head: 'Energy', unit: 'kWh', cell: (each) => <Figure of={format.energy} value={each.energyKwh} bare /> },
-            {
-              head: 'Energy cost',
-              unit: format.money.unit,
-              cell: (each) => <Figure of={format.money} value={each.energyCost} bare />,
-            },
-            {
-              head: 'Demand',
-              unit: format.money.unit,
-              cell: (each) => <Figure of={format.money} value={each.demandCost} bare />,
-            },
-            {
-              head: 'Total',
-              unit: format.money.unit,
-              cell: (each) => <Figure of={format.money} value={each.totalCost} bare />,
-            },
+            energy,
+            money('Energy cost', (month: MonthBill) => month.energyCost),
+            money('Demand', (month: MonthBill) => month.demandCost),
+            money('Total', (month: MonthBill) => month.totalCost),
           ]}
         />
       )}

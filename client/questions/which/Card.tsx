@@ -4,6 +4,7 @@ import { api, linesOf } from '../../api.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
 import { list, ordinal, sentence, typeset } from '../../format.ts';
 import { useRemembered } from '../../hooks.ts';
+import { Faults } from '../../parts/Faults.tsx';
 import { Table } from '../../parts/Table.tsx';
 import { withoutDust } from '../cost/ledger.ts';
 import {
@@ -99,11 +100,7 @@ export function Card({ open, record }: Pick<QuestionProps, 'open' | 'record'>) {
           Print the card
         </button>
       </p>
-      {faults.length > 0 && (
-        <p class="faults" role="alert">
-          {faults.join(' ')}
-        </p>
-      )}
+      <Faults lines={faults} />
       {card && (
         <>
           <p class="aside">

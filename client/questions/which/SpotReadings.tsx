@@ -3,6 +3,7 @@ import { FLOW_UNITS, HEAD_UNITS } from '../../../server/units.ts';
 import { api, type LaidReading, linesOf, type SpotReading, type StationBody } from '../../api.ts';
 import { usePage } from '../../context.ts';
 import { type Format, list, type Measure } from '../../format.ts';
+import { Faults } from '../../parts/Faults.tsx';
 import { NumberField } from '../../parts/Field.tsx';
 import { type Column, Table } from '../../parts/Table.tsx';
 import { dutyNames } from '../../station.ts';
@@ -96,11 +97,7 @@ export function SpotReadings({ saved, without, alike }: SpotReadingsProps) {
           Add a reading
         </button>
       </form>
-      {faults.length > 0 && (
-        <p class="faults" role="alert">
-          {faults.join(' ')}
-        </p>
-      )}
+      <Faults lines={faults} />
       {laid.length > 0 && (
         <>
           <Table

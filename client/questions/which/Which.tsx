@@ -1,14 +1,13 @@
 import { useCallback, useMemo } from 'preact/hooks';
 import type { PowerOverFlow } from '../../../server/staging/pictures.ts';
-import { HEAD_UNITS } from '../../../server/units.ts';
 import { stepsText } from '../../answers.ts';
 import { drawCurves, drawHours } from '../../chart/curves.ts';
 import { type QuestionProps, usePage } from '../../context.ts';
 import { Cautions } from '../../parts/Cautions.tsx';
 import { Figure } from '../../parts/Figure.tsx';
 import { Picture } from '../../parts/Picture.tsx';
+import { StaticHead } from '../../parts/StaticHead.tsx';
 import { Table } from '../../parts/Table.tsx';
-import { Touch } from '../../parts/Touch.tsx';
 import { runnersOf } from '../../runners.ts';
 import { crossingsOf, curvesOf, hoursByFlow, leastRunners } from '../../series.ts';
 import { dutyNames } from '../../station.ts';
@@ -27,14 +26,7 @@ export function Which({ open, record, saved, draft, touch, without, onWithout }:
   return (
     <>
       <div class="touches no-print">
-        <Touch
-          label="Static head"
-          measure={format.head}
-          fileFactor={HEAD_UNITS[draft.units.head]}
-          value={draft.system.staticHead}
-          saved={saved.system.staticHead}
-          onChange={(value) => touch(['system', 'staticHead'], value)}
-        />
+        <StaticHead saved={saved} draft={draft} touch={touch} />
         <TakenOut names={dutyNames(saved)} without={without} onWithout={onWithout} />
         <p class="aside">{varies ? varies.text : 'Curves, crossings, table and bill follow.'}</p>
       </div>
