@@ -36,8 +36,9 @@ export class SetTable {
     this.set = set ?? null;
     this.valve = pumps.station.surplus === 'throttle';
     const capacity = pumps.flatOut(pumps.most).flow;
-    this.step = only ?? capacity / NODES;
-    const nodes = only === undefined ? NODES : 1;
+    // A given set has few arrangements, each over a long stretch: fewer nodes see as much.
+    const nodes = only !== undefined ? 1 : set ? NODES / 2 : NODES;
+    this.step = only ?? capacity / nodes;
     this.nodes = Array.from({ length: nodes }, (_, i) => this.search((i + 1) * this.step));
     this.rests = this.valve ? [] : restingSets(pumps, choice, { least: only ?? 0, only: this.set });
   }
