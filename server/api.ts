@@ -97,14 +97,7 @@ export const caseRequest = z.union([
 
 export type CaseRequest = z.infer<typeof caseRequest>;
 
-export interface StationEntry {
-  readonly id: number;
-  readonly name: string;
-  readonly demo: boolean;
-  readonly records: number;
-  /** The tariff the station was last compared under. */
-  readonly tariffId: number | null;
-}
+export type { StationEntry } from '../db/stations.ts';
 
 export interface RecordEntry {
   readonly id: number;

@@ -1,18 +1,12 @@
-import { readFileSync } from 'node:fs';
-import { readRecord } from '../../server/ingest/record.ts';
 import type { ComparisonResult, RuleId } from '../../server/staging/result.ts';
-import { readStation } from '../../server/station/readStation.ts';
-import { readTariff } from '../../server/tariff/tariffFile.ts';
 import { resultFor, ruleIn } from '../support/comparing.ts';
+import { exampleJson, exampleOf } from '../support/examples.ts';
 import type { OutsideCheck } from './check.ts';
 
 /**
  * Invented stations, each with a record and a tariff, that an independent implementation of the model has run (numpy and
  * scipy). tests/staging/examples.test.ts holds the same figures against ours field by field and interval by interval.
  */
-
-const folder = new URL('../reference/examples/', import.meta.url);
-const text = (path: string) => readFileSync(new URL(path, folder), 'utf8');
 
 interface Expected {
   readonly floorKwh: number;
@@ -25,16 +19,7 @@ const results = new Map<string, ComparisonResult>();
 function resultOf(name: string): ComparisonResult {
   const known = results.get(name);
   if (known) return known;
-  const station = readStation(JSON.parse(text(`${name}/station.json`)), 'station.json');
-  const { log } = readRecord({
-    fileName: 'record.csv',
-    data: text(`${name}/record.csv`),
-    units: station.units,
-    timeZone: station.timeZone,
-    pumpNames: station.duty.map((pump) => pump.name),
-  });
-  const tariff = readTariff(JSON.parse(text(`${name}/tariff.json`)), 'tariff.json');
-  const result = resultFor({ station, log, tariff });
+  const result = resultFor(exampleOf(name));
   results.set(name, result);
   return result;
 }
@@ -43,7 +28,7 @@ const SAME = { share: 1e-6, why: '1e-6: both solve the same equations to roundin
 const GRIDDED = { share: 1e-4, why: '1e-4: there found on a grid of flows, which lies that near the least' };
 
 function checksOf(name: string, source: string): OutsideCheck[] {
-  const expected: Expected = JSON.parse(text(`${name}/expected.json`));
+  const expected = exampleJson(name, 'expected.json') as Expected;
   const check = (
     what: string,
     unit: string,

@@ -1,20 +1,15 @@
 import { beforeEach, describe, expect, it } from 'vitest';
-import { aRecordCsv, aStationFile } from '../support/aStation.ts';
-import { aTariffFile } from '../support/tariffs.ts';
-import { type Served, served } from './support.ts';
+import { aStationFile } from '../support/aStation.ts';
+import { type Served, type StoredIds, served, storeThree } from './support.ts';
 
 /** What the three people take away, over HTTP; expected values by formulas written out here, from the model alone. */
 
 let api: Served;
-let ids: { stationId: number; recordId: number; tariffId: number };
+let ids: StoredIds;
 
 beforeEach(async () => {
   api = served();
-  const stationId = (await api.http.post('/api/stations').send(aStationFile())).body.id;
-  const csv = api.http.post(`/api/stations/${stationId}/records`).set('Content-Type', 'text/csv').send(aRecordCsv());
-  const recordId = (await csv).body.id;
-  const tariffId = (await api.http.post('/api/tariffs').send(aTariffFile())).body.id;
-  ids = { stationId, recordId, tariffId };
+  ids = await storeThree(api);
 });
 
 // The station of aStationFile: h = 30 − 0.003·q² and η = 0.78·(2x − x²) with x = q/50 (L/s, m), H_sys = 12 + 0.001·Q².

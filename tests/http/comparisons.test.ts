@@ -1,18 +1,14 @@
 import { beforeEach, describe, expect, it } from 'vitest';
-import { aRecordCsv, aStationFile } from '../support/aStation.ts';
+import { aStationFile } from '../support/aStation.ts';
 import { aTariffFile } from '../support/tariffs.ts';
-import { NOW, rowCounts, type Served, served } from './support.ts';
+import { NOW, rowCounts, type Served, type StoredIds, served, storeThree } from './support.ts';
 
 let api: Served;
-let ids: { stationId: number; recordId: number; tariffId: number };
+let ids: StoredIds;
 
 beforeEach(async () => {
   api = served();
-  const stationId = (await api.http.post('/api/stations').send(aStationFile())).body.id;
-  const csv = api.http.post(`/api/stations/${stationId}/records`).set('Content-Type', 'text/csv').send(aRecordCsv());
-  const recordId = (await csv).body.id;
-  const tariffId = (await api.http.post('/api/tariffs').send(aTariffFile())).body.id;
-  ids = { stationId, recordId, tariffId };
+  ids = await storeThree(api);
 });
 
 const compare = async (more: object = {}) => {

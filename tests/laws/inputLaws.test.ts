@@ -10,8 +10,8 @@ import { stationFacts } from '../../server/stationFacts.ts';
 import { planBill } from '../../server/tariff/plan.ts';
 import { readTariff } from '../../server/tariff/tariffFile.ts';
 import { aRecordCsv, aStationFile } from '../support/aStation.ts';
+import { flowLog } from '../support/comparing.ts';
 import { ENDURE, madeStation } from '../support/madeStations.ts';
-import { logOf } from '../support/running.ts';
 import { aTariffFile } from '../support/tariffs.ts';
 
 /** Whatever a person sends, what comes back is a result or a list of what to mend; anything else thrown is our bug. */
@@ -146,7 +146,7 @@ describe('a file that is not sound', () => {
         if (!station) return;
         answered(() => stationFacts(station));
         const flows = [0, 1e-9, 0.03 * share, 0.1, 30];
-        const made = answered(() => compareRules({ station, log: logOf(flows), tariff: null }));
+        const made = answered(() => compareRules({ station, log: flowLog(flows), tariff: null }));
         for (const { rule, totals } of made?.runs ?? []) {
           expect(Number.isFinite(totals.energyKwh), `${rule.id}: ${totals.energyKwh} kWh`).toBe(true);
         }
@@ -156,7 +156,7 @@ describe('a file that is not sound', () => {
   });
 
   it('of a tariff is refused, or bills', () => {
-    const { startMs, seconds } = logOf([1, 2, 3]);
+    const { startMs, seconds } = flowLog([1, 2, 3]);
     fc.assert(
       fc.property(spoilt(tariffs), (file) => {
         const tariff = answered(() => readTariff(file, 'tariff.json'));

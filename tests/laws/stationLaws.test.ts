@@ -11,9 +11,9 @@ import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import type { Station } from '../../server/station/station.ts';
 import type { StationFile } from '../../server/station/stationFile.ts';
+import { flowLog } from '../support/comparing.ts';
 import { dice, ENDURE, madeStation } from '../support/madeStations.ts';
 import { inUnits } from '../support/otherUnits.ts';
-import { logOf } from '../support/running.ts';
 
 /** What holds of every station, whatever its pumps: laws that need no expected figure. */
 
@@ -39,7 +39,7 @@ function made(seed: number, mixed: boolean): Omit<Case, 'comparison' | 'runs'> {
   const roll = dice(seed + 77);
   const most = stagedPumpsOf(station, station.duty).flatOut(station.duty.length).flow;
   const flows = Array.from({ length: 16 }, () => (roll() < 0.1 ? 0 : 1.1 * most * roll()));
-  const log = logOf(flows);
+  const log = flowLog(flows);
   const staticHead = Float64Array.from(flows, () => station.staticHead * (0.95 + 0.1 * roll()));
   return { file, station, log, heads: !mixed && roll() < 0.5 ? { ...log, staticHead } : null };
 }
@@ -147,7 +147,7 @@ describe(`for ${RUNS} stations, equal pumps or not, over sixteen hours each`, ()
   it('an hour takes what sixty equal minutes take', () => {
     holds(({ station, log, comparison }) => {
       const hours = log.flow!.subarray(0, 4);
-      const minutes = logOf(
+      const minutes = flowLog(
         [...hours].flatMap((flow) => new Array<number>(60).fill(flow)),
         60,
       );

@@ -2,10 +2,11 @@ import { describe, expect, it } from 'vitest';
 import type { RuleId } from '../../server/staging/result.ts';
 import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
+import { flowLog } from '../support/comparing.ts';
 import { dice, madeStation, seeds } from '../support/madeStations.ts';
 import { PlainStation } from '../support/plainModel.ts';
 import { type PlainAnswer, PlainRules } from '../support/plainRules.ts';
-import { logOf, run } from '../support/running.ts';
+import { run } from '../support/running.ts';
 
 /**
  * Every rule of equal pumps against a second working from the station file (tests/support), by scans and the bisection of
@@ -54,7 +55,7 @@ describe(`${made.length} stations of equal pumps, at ${FLOWS} flows each`, () =>
   it.each(rules)('run %s as the second working does, to 1e-9', (id, answer) => {
     let decided = 0;
     for (const { seed, station, plain, flows } of made) {
-      const { series, lowCount, highCount, share, speed } = run(station, id, logOf(flows));
+      const { series, lowCount, highCount, share, speed } = run(station, id, flowLog(flows));
       flows.forEach((flow, i) => {
         const expected = answer(plain, flow);
         const where = `station ${seed}, ${id} at ${flow} m³/s`;

@@ -4,10 +4,11 @@ import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import type { StationFile } from '../../server/station/stationFile.ts';
 import { bestCountCarriers, floorCarriers, leastResting } from '../support/carriers.ts';
+import { flowLog } from '../support/comparing.ts';
 import { type Bounds, leastAllocation } from '../support/leastAllocation.ts';
 import { dice, ENDURE, madeStation, seeds } from '../support/madeStations.ts';
 import { PlainStation } from '../support/plainModel.ts';
-import { logOf, run } from '../support/running.ts';
+import { run } from '../support/running.ts';
 
 /**
  * Who runs and who carries what, against a mixed-integer program: the power of each pump worked out from the station file
@@ -99,7 +100,7 @@ describe('best-count of different pumps', () => {
       ) as StationFile;
       const station = readStation(file, 'station.json');
       const plain = new PlainStation(file);
-      const { series } = run(station, 'best-count', logOf(flows));
+      const { series } = run(station, 'best-count', flowLog(flows));
       flows.forEach((flow, i) => {
         const where = `station ${seed} at ${flow} m³/s`;
         const found = leastAllocation(bestCountCarriers(plain, flow), flow, { gap: GAP, alike: false });

@@ -3,16 +3,17 @@ import type { Log } from '../../server/ingest/log.ts';
 import { demandRecord } from '../../server/staging/demandRecord.ts';
 import { FixedSet } from '../../server/staging/fixedSet.ts';
 import { MixedPumps } from '../../server/staging/mixedPumps.ts';
+import { ruleOf } from '../../server/staging/rules/all.ts';
 import { runRule } from '../../server/staging/run.ts';
 import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import type { Action } from '../../server/staging/state.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import { dutyPumpsAreEqual, type Station } from '../../server/station/station.ts';
 import type { StationFile } from '../../server/station/stationFile.ts';
+import { flowLog } from '../support/comparing.ts';
 import { dice, ENDURE, madeStation, seeds } from '../support/madeStations.ts';
 import { PlainStation } from '../support/plainModel.ts';
 import { PlainRules } from '../support/plainRules.ts';
-import { logOf, ruleOf } from '../support/running.ts';
 import { type Interval, leastSequence, type Way } from '../support/steadyProgram.ts';
 
 /**
@@ -46,7 +47,7 @@ function aDay(seed: number, mixed: boolean, steps: number): Day {
     const tide = 0.5 - 0.35 * Math.cos((2 * Math.PI * i) / steps);
     return i === pause ? 0 : full.flow * Math.max(0, tide + 0.5 * (roll() - 0.5));
   });
-  const log = logOf(flows, 86_400 / steps);
+  const log = flowLog(flows, 86_400 / steps);
   const lost = roll() < 0.5 ? Math.floor(steps * roll()) : steps;
   const startMs = log.startMs.map((ms, i) => (i < lost ? ms : ms + 2 * 3_600_000));
   return { seed, file, station: readStation(file, 'station.json'), log: { ...log, startMs } };
@@ -110,7 +111,7 @@ function expectLeast(day: Day, ways: Ways): void {
   }));
   const actions: Action[] = [];
   const { totals } = runRule(
-    ruleOf('steady'),
+    ruleOf('steady')!,
     stagedPumpsOf(station, station.duty),
     demandRecord(station, log),
     (i, action) => {

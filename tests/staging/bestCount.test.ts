@@ -2,7 +2,8 @@ import { expect, it } from 'vitest';
 import { stagedPumpsOf } from '../../server/staging/stagedPumpsOf.ts';
 import { readStation } from '../../server/station/readStation.ts';
 import { aStationFile } from '../support/aStation.ts';
-import { logOf, run } from '../support/running.ts';
+import { flowLog } from '../support/comparing.ts';
+import { run } from '../support/running.ts';
 
 /** Where every efficiency is one number, so many pumps draw ρgQH/η whatever their count. */
 it('of counts that draw alike best-count runs the fewest', () => {
@@ -15,5 +16,5 @@ it('of counts that draw alike best-count runs the fewest', () => {
     const alike = [1, 2, 3].map((count) => pumps.trim(count, flow).power);
     for (const power of alike) expect(Math.abs(power / alike[0]! - 1)).toBeLessThan(1e-13);
   }
-  expect(Array.from(run(station, 'best-count', logOf(flows)).highCount)).toEqual([1, 1, 1, 1, 1]);
+  expect(Array.from(run(station, 'best-count', flowLog(flows)).highCount)).toEqual([1, 1, 1, 1, 1]);
 });

@@ -1,10 +1,7 @@
-import { readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
-import { readRecord } from '../../server/ingest/record.ts';
 import { compareRules, resultOf } from '../../server/staging/compare.ts';
-import { readStation } from '../../server/station/readStation.ts';
-import { readTariff } from '../../server/tariff/tariffFile.ts';
 import { differs } from '../support/comparing.ts';
+import { exampleJson, exampleOf } from '../support/examples.ts';
 
 /**
  * Invented stations with figures from an independent implementation of the model (numpy and scipy, no code shared with
@@ -26,29 +23,9 @@ interface Expected {
   readonly rules: Readonly<Record<string, Figures>>;
 }
 
-const folder = new URL('../reference/examples/', import.meta.url);
-const text = (path: string) => readFileSync(new URL(path, folder), 'utf8');
-const json = (path: string) => JSON.parse(text(path));
-
-function comparison(name: string, tariff: boolean) {
-  const station = readStation(json(`${name}/station.json`), 'station.json');
-  const { log } = readRecord({
-    fileName: 'record.csv',
-    data: text(`${name}/record.csv`),
-    units: station.units,
-    timeZone: station.timeZone,
-    pumpNames: station.duty.map((pump) => pump.name),
-  });
-  return compareRules({
-    station,
-    log,
-    tariff: tariff ? readTariff(json(`${name}/tariff.json`), 'tariff.json') : null,
-  });
-}
-
 describe.each(['storage', 'throttle'])('figures from an independent implementation of the model: %s', (name) => {
-  const expected: Expected = json(`${name}/expected.json`);
-  const compared = comparison(name, true);
+  const expected = exampleJson(name, 'expected.json') as Expected;
+  const compared = compareRules(exampleOf(name));
   const result = resultOf(compared, { station: '', record: '', tariff: '' });
   const computed = Object.entries(expected.rules);
 
@@ -88,8 +65,8 @@ describe.each(['storage', 'throttle'])('figures from an independent implementati
 });
 
 it('figures from an independent implementation of the model: a train beside a single pump, above their capacity', () => {
-  const expected: { shortfallM3: number; fixedKwh: number } = json('series-train/expected.json');
-  const { rules } = resultOf(comparison('series-train', false), { station: '', record: '', tariff: null });
+  const expected = exampleJson('series-train', 'expected.json') as { shortfallM3: number; fixedKwh: number };
+  const { rules } = resultOf(compareRules(exampleOf('series-train')), { station: '', record: '', tariff: null });
   const fixed = rules.find(({ rule }) => rule === 'fixed-speed')!;
   expect(differs(fixed.shortfallM3, expected.shortfallM3)).toBeLessThan(SAME);
   expect(differs(fixed.energyKwh, expected.fixedKwh)).toBeLessThan(SAME);

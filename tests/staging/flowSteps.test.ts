@@ -1,14 +1,15 @@
 import { describe, expect, it } from 'vitest';
 import { readStation } from '../../server/station/readStation.ts';
 import { aStationFile } from '../support/aStation.ts';
-import { logOf, run } from '../support/running.ts';
+import { flowLog } from '../support/comparing.ts';
+import { run } from '../support/running.ts';
 
 /** Two equal pumps on fitted drives; one alone gives √((30 − 12)/(0.003 + 0.001)) = 67 L/s at most. */
 const [pump] = aStationFile().pumps as [Record<string, object>];
 const ran = (steps: object, litresPerSecond: readonly number[]) => {
   const pumps = [{ ...pump, drive: { ...pump.drive, fitted: true } }];
   const station = readStation(aStationFile({ pumps, rules: { 'flow-steps': steps } }), 'station.json');
-  return run(station, 'flow-steps', logOf(litresPerSecond.map((flow) => flow / 1000)));
+  return run(station, 'flow-steps', flowLog(litresPerSecond.map((flow) => flow / 1000)));
 };
 const counts = (...asked: Parameters<typeof ran>) => Array.from(ran(...asked).highCount);
 
