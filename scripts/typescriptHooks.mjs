@@ -8,6 +8,8 @@ import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { transformSync, version } from 'esbuild';
 
+const SETTINGS = { loader: 'ts', format: 'esm', target: 'node20.10', sourcemap: 'inline', sourcesContent: false };
+
 const kept = fileURLToPath(new URL('../.build/javascript/', import.meta.url));
 
 export async function load(url, context, nextLoad) {
@@ -17,21 +19,17 @@ export async function load(url, context, nextLoad) {
 }
 
 function javaScriptOf(path, source) {
-  const digest = createHash('sha256').update(`${version}\0${path}\0`).update(source).digest('hex');
+  const digest = createHash('sha256')
+    .update(`${version}\0${JSON.stringify(SETTINGS)}\0${path}\0`)
+    .update(source)
+    .digest('hex');
   const file = join(kept, `${digest}.mjs`);
   try {
     return readFileSync(file, 'utf8');
   } catch {
     // Not kept yet, or kept where nobody may read it: made anew.
   }
-  const { code } = transformSync(source, {
-    loader: 'ts',
-    format: 'esm',
-    target: 'node20',
-    sourcefile: path,
-    sourcemap: 'inline',
-    sourcesContent: false,
-  });
+  const { code } = transformSync(source, { ...SETTINGS, sourcefile: path });
   keep(file, code);
   return code;
 }

@@ -1,5 +1,6 @@
 /** What the benchmarks work on: a made-up station, a record of minutes and a tariff, the same on every machine. */
 import { randomFrom, wandering } from '../../server/demo/random.ts';
+import type { Log } from '../../server/ingest/log.ts';
 import { MINUTE_MS } from '../../server/time.ts';
 
 export const YEAR_OF_MINUTES = 525_600;
@@ -69,6 +70,47 @@ function partLoad(best: number): { load: number; efficiency: number }[] {
 
 function steps(pumps: number, each: number): number[] {
   return Array.from({ length: Math.max(1, pumps - 1) }, (_, i) => (i + 1) * each);
+}
+
+/** The same wet well with pumps that all differ; every fourth has no drive. */
+export function mixedStationFile(pumps: number): Record<string, unknown> {
+  const random = randomFrom(11);
+  const file = stationFile(pumps, 'parabola');
+  const { rules: _counts, pumps: alike, ...rest } = file as { rules: unknown; pumps: Record<string, unknown>[] };
+  const { count: _count, drive, ...pump } = alike[0]!;
+  return {
+    ...rest,
+    name: `Bench, ${pumps} different pumps`,
+    pumps: Array.from({ length: pumps }, (_, i) => {
+      const shutoffHead = PLAIN.shutoffHead * (0.95 + 0.15 * random.uniform());
+      const bestFlow = PLAIN.bestFlow * (0.5 + 0.8 * random.uniform());
+      return {
+        ...pump,
+        name: String.fromCharCode(65 + i),
+        curve: {
+          shutoffHead,
+          shape: (0.25 * shutoffHead) / bestFlow ** 2,
+          bestFlow,
+          bestEfficiency: 0.72 + 0.1 * random.uniform(),
+        },
+        ...(i % 4 !== 3 && { drive }),
+      };
+    }),
+  };
+}
+
+/** A record of flows alone, equal steps from the start of 2025. */
+export function logOf(flow: Float64Array, seconds: number, staticHead: Float64Array | null = null): Log {
+  return {
+    startMs: Float64Array.from(flow, (_, i) => START_MS + i * seconds * 1000),
+    seconds: new Float64Array(flow.length).fill(seconds),
+    flow,
+    level: null,
+    staticHead,
+    power: null,
+    pumpsOn: null,
+    pumps: [],
+  };
 }
 
 /** Flow by minute [m³/s]: two peaks a day, slow weather, fresh noise each minute; never 0, seldom above capacity. */

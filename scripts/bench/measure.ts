@@ -8,6 +8,8 @@ export interface Measured {
   readonly ratio: number | null;
   /** The ratio hoped for; null where there is none. */
   readonly aim: number | null;
+  /** The time hoped for [ms]; null where there is none. */
+  readonly aimMilliseconds: number | null;
 }
 
 /** The shortest of some rounds [ms]: what the work takes where nothing else gets in between. */
@@ -33,5 +35,11 @@ export function measured(
     againstMilliseconds: against?.milliseconds ?? null,
     ratio: against ? milliseconds / against.milliseconds : null,
     aim: against?.aim ?? null,
+    aimMilliseconds: null,
   };
+}
+
+/** A time held against one hoped for on two cores. */
+export function within(what: string, milliseconds: number, aimMilliseconds: number): Measured {
+  return { ...measured(what, milliseconds), aimMilliseconds };
 }

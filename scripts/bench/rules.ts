@@ -8,10 +8,9 @@ import { readStation } from '../../server/station/readStation.ts';
 import { billOf } from '../../server/tariff/bill.ts';
 import { planBill } from '../../server/tariff/plan.ts';
 import { readTariff } from '../../server/tariff/tariffFile.ts';
-import { MINUTE_MS } from '../../server/time.ts';
 import { JOULES_PER_KWH } from '../../server/units.ts';
 import { bareBestCount } from './bareLoop.ts';
-import { type Curves, flowsOf, PLAIN, START_MS, stationFile, TARIFF_FILE, YEAR_OF_MINUTES } from './made.ts';
+import { type Curves, flowsOf, logOf, PLAIN, stationFile, TARIFF_FILE, YEAR_OF_MINUTES } from './made.ts';
 import { type Measured, measured, shortest } from './measure.ts';
 
 const AIMS: Record<Curves, number> = { parabola: 3, table: 8 };
@@ -118,14 +117,5 @@ function bareTime(record: DemandRecord, pumps: number, rounds: number): number {
 
 function recordOf(flow: Float64Array, staticHead: Float64Array | null = null): DemandRecord {
   const station = readStation(stationFile(6, 'parabola'), 'bench.json');
-  return demandRecord(station, {
-    startMs: Float64Array.from(flow, (_, i) => START_MS + i * MINUTE_MS),
-    seconds: new Float64Array(flow.length).fill(60),
-    flow,
-    level: null,
-    staticHead,
-    power: null,
-    pumpsOn: null,
-    pumps: [],
-  });
+  return demandRecord(station, logOf(flow, 60, staticHead));
 }
