@@ -121,15 +121,15 @@ describe('for the developer', () => {
     for (const name of names) expect(DEVELOPERS, name).toContain(`\`${name}\``);
   });
 
-  it('every folder of the calculation and every file of it is on the map', () => {
+  it('every file of the calculation, the server, the database and the page is on the map', () => {
     const map = DEVELOPERS.slice(DEVELOPERS.indexOf('## Map'), DEVELOPERS.indexOf('### Which way'));
-    const folders = ['ingest', 'hydraulics', 'drive', 'tariff', 'economics'];
-    for (const folder of folders) {
-      const row = map.split('\n').find((line) => line.startsWith(`| \`server/${folder}/\``));
-      expect(row, folder).toBeDefined();
-      for (const file of readdirSync(join(ROOT, 'server', folder))) {
-        if (!/^(log|faultList)\.ts$/.test(file)) expect(row, `${folder}/${file}`).toContain(`\`${file}\``);
-      }
+    const folders = ['ingest', 'hydraulics', 'drive', 'station', 'staging', 'tariff', 'economics'];
+    for (const folder of folders) expect(map).toContain(`| \`server/${folder}/\` |`);
+    const listed = [...folders.map((folder) => `server/${folder}`), 'server', 'db', 'client', 'client/chart'];
+    for (const folder of listed) {
+      const files = readdirSync(join(ROOT, folder)).filter((name) => /\.(ts|tsx|css)$/.test(name));
+      expect(files.length, folder).toBeGreaterThan(2);
+      for (const file of files) expect(map, `${folder}/${file}`).toMatch(new RegExp(`[\`/]${file}\``));
     }
   });
 });
