@@ -49,6 +49,7 @@ interface Choice {
   readonly tariffId?: number | null;
 }
 
+/** The whole page: the stations at hand, and the one that is open with its four questions. */
 export function App() {
   const [entries, setEntries] = useState<readonly StationEntry[] | null>(null);
   const [openId, setOpenId] = useState<number | null>(stationInAddress());

@@ -122,6 +122,7 @@ export interface HoursByFlow {
   }[];
 }
 
+/** Hours of the record at each flow, told by who draws least there. */
 export function hoursByFlow(power: PowerOverFlow, format: Format): HoursByFlow {
   const least = leastRunners(power);
   const nearest = (flow: number) => {
@@ -211,6 +212,7 @@ export function steps(series: Pick<RuleSeries, 'startMs' | 'endMs'>, values: rea
   return points;
 }
 
+/** The record over time as steps: flow, and the pumps that a rule ran. */
 export function recordSteps(series: RuleSeries, format: Format, duty: number): RecordSteps {
   const inUnit = (values: readonly number[]) => values.map((value) => value * format.flow.factor);
   const most = Math.max(duty, ...series.mostCount);

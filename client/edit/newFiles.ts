@@ -7,6 +7,7 @@ export interface Place {
   readonly us: boolean;
 }
 
+/** Zone and family of units as the browser has them, to start a new file with. */
 export function placeOfReader(): Place {
   const { timeZone, locale } = new Intl.DateTimeFormat().resolvedOptions();
   return { timeZone, us: locale.endsWith('-US') };

@@ -11,7 +11,7 @@ interface ExhibitProps {
   readonly level?: 2 | 3;
 }
 
-/** A picture of our own, in markup, under its sentence, with its numbers one press away. */
+/** A picture under its sentence, with its numbers one press away. */
 export function Exhibit({ title, numbers, children, level = 3 }: ExhibitProps) {
   const [open, setOpen] = useState(false);
   return (

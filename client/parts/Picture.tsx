@@ -1,8 +1,9 @@
 import type { ComponentChildren } from 'preact';
-import { useLayoutEffect, useRef, useState } from 'preact/hooks';
+import { useLayoutEffect, useRef } from 'preact/hooks';
 import type { Drawn } from '../chart/drawing.ts';
 import { type Look, lookOf } from '../chart/look.ts';
 import { usePage } from '../context.ts';
+import { Exhibit } from './Exhibit.tsx';
 
 interface PictureProps {
   /** A sentence that says what is to be seen. */
@@ -21,11 +22,10 @@ const PAPER_HEIGHT = { tall: 160, low: 92 };
 const ROW_HEIGHT = { screen: 34, paper: 16 };
 const FRAME_HEIGHT = 52;
 
-/** A picture under its sentence, with its numbers one press away. */
+/** An exhibit that the chart library draws. */
 export function Picture({ title, draw, numbers, height, children }: PictureProps) {
   const { printing, dark } = usePage();
   const canvas = useRef<HTMLCanvasElement>(null);
-  const [open, setOpen] = useState(false);
   const rows =
     typeof height === 'object' ? height.rows * ROW_HEIGHT[printing ? 'paper' : 'screen'] + FRAME_HEIGHT : null;
   const paperHeight = typeof height === 'object' ? rows! : PAPER_HEIGHT[height];
@@ -36,21 +36,12 @@ export function Picture({ title, draw, numbers, height, children }: PictureProps
     return () => drawn.destroy();
   }, [draw, printing, dark, paperHeight]);
   return (
-    <figure class="picture">
-      <figcaption>
-        <h3>{title}</h3>
-      </figcaption>
+    <Exhibit title={title} numbers={numbers}>
       {children}
       <div class={`plot ${rows === null ? height : ''}`} style={rows === null ? {} : { height: `${rows}px` }}>
         {/* A canvas that changes between paper and screen is a new one: its size belongs to its drawer. */}
         <canvas key={printing ? 'paper' : 'screen'} ref={canvas} role="img" aria-label={title} />
       </div>
-      <div class="no-print">
-        <button type="button" class="quiet numbers" aria-expanded={open} onClick={() => setOpen(!open)}>
-          Numbers
-        </button>
-        {open && numbers()}
-      </div>
-    </figure>
+    </Exhibit>
   );
 }

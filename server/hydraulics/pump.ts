@@ -4,6 +4,7 @@ import type { NpshCurve } from './npsh.ts';
 import { type PumpCurve, speedCorrection } from './pumpCurve.ts';
 import { root } from './roots.ts';
 
+/** A motor; its efficiency goes by load, as a share of the rating. */
 export interface Motor {
   /** Rating [W], or null where unknown: then no overload can be told. */
   readonly ratedPower: number | null;
@@ -11,6 +12,7 @@ export interface Motor {
   readonly efficiency: PartLoad;
 }
 
+/** A variable speed drive between supply and motor; its efficiency goes by load, as the motor's does. */
 export interface Drive {
   /** false: a proposal, so that rules that need drives show a retrofit. */
   readonly fitted: boolean;

@@ -31,6 +31,7 @@ export function speedCorrection(bestEfficiency: number, speed: number): number {
   return (1 - (1 - bestEfficiency) * speed ** -0.1) / bestEfficiency;
 }
 
+/** What a parabola is made from, at rated speed: heads [m], flows [m³/s], density [kg/m³]. */
 export interface ParabolaShape {
   readonly shutoffHead: number;
   /** a in h = H0 − a·q² [m/(m³/s)²]. */
@@ -86,6 +87,7 @@ export class ParabolaCurve implements PumpCurve {
   }
 }
 
+/** What a table is made from, at rated speed: heads [m], flows [m³/s], density [kg/m³]. */
 export interface TableShape {
   /** Flows, strictly rising, four or more. */
   readonly flows: readonly number[];

@@ -1,5 +1,6 @@
 export type Encoding = 'utf-8' | 'utf-16le' | 'utf-16be' | 'windows-1252';
 
+/** A text, and the encoding it was found to be in. */
 export interface DecodedText {
   readonly text: string;
   readonly encoding: Encoding;

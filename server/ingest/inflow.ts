@@ -2,6 +2,7 @@ import type { Note } from '../errors.ts';
 import { SECOND_MS } from '../time.ts';
 import type { Channel, Log } from './log.ts';
 
+/** What inflow is worked out from. */
 export interface InflowInput {
   /** With `level` and run states (`on` of the pumps, or `pumpsOn`). */
   readonly log: Log;
@@ -22,6 +23,7 @@ export interface Stretch {
   readonly gain: number;
 }
 
+/** The inflow, and what was pumped beside it. */
 export interface Inflow {
   /** The log with `flow` = mean inflow per interval [m³/s], NaN where it cannot be known. The last reading only ends
    * the interval before it and is no row of its own. */

@@ -10,6 +10,7 @@ export type Role =
   | { readonly kind: 'flow' | 'level' | 'staticHead' | 'power' | 'pumpsOn' }
   | { readonly kind: 'on' | 'speed' | 'pumpPower'; readonly pump: number };
 
+/** A column of values, and what it holds. */
 export interface ValueColumn {
   readonly index: number;
   readonly title: string;
@@ -18,6 +19,7 @@ export interface ValueColumn {
   readonly factor: number;
 }
 
+/** Which row and column of a table holds what. */
 export interface Layout {
   readonly headerRow: number;
   /** First row of data: after the header and any rows of units. */
@@ -33,6 +35,7 @@ export interface Layout {
   readonly ignored: readonly string[];
 }
 
+/** A table, and what its owner says of it. */
 export interface LayoutInput {
   readonly table: CsvTable;
   readonly faults: FaultList;

@@ -9,6 +9,7 @@ interface ClockChange {
   readonly after: number;
 }
 
+/** Wall-clock times as instants. */
 export interface ResolvedTimes {
   /** Instant of each row [ms]; NaN where its wall clock never showed that time. */
   readonly instants: Float64Array;

@@ -67,6 +67,7 @@ export const profileSchema = z.strictObject({
 });
 type Profile = z.infer<typeof profileSchema>;
 
+/** A profile as text, and what its station says of units and zone. */
 export interface ProfileInput {
   readonly fileName: string;
   readonly text: string;

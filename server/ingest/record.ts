@@ -27,6 +27,7 @@ export interface RecordOptions {
   readonly delimiter?: Delimiter | undefined;
 }
 
+/** A file, and what its station says of units, zone and pumps. */
 export interface RecordInput {
   readonly fileName: string;
   readonly data: Uint8Array | string;
@@ -38,6 +39,7 @@ export interface RecordInput {
   readonly options?: RecordOptions | undefined;
 }
 
+/** A record, and what was done to make it. */
 export interface ReadRecord {
   readonly log: Log;
   readonly report: QualityReport;

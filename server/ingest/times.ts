@@ -4,12 +4,14 @@ import { type CsvTable, cellText } from './csv.ts';
 import type { FaultList } from './faultList.ts';
 import { type DateOrder, IsoReader, orderEvidence, parseTime, type TimeFault } from './timestamps.ts';
 
+/** The time of each row. */
 export interface TimeColumn {
   /** Instant [ms], or the wall clock read as UTC where `local` is 1; NaN where a fault was found. */
   readonly ms: Float64Array;
   readonly local: Uint8Array;
 }
 
+/** The column of times, and where faults and notes go. */
 export interface TimeInput {
   readonly table: CsvTable;
   /** Rows of the table that hold data, in file order. */

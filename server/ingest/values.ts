@@ -4,6 +4,7 @@ import type { FaultList } from './faultList.ts';
 import type { Role, ValueColumn } from './layout.ts';
 import { type DecimalMark, decideMark, isMissing, numberFromText, plainNumber, runState } from './numbers.ts';
 
+/** The columns of values, and where faults and notes go. */
 export interface ValueInput {
   readonly table: CsvTable;
   readonly rows: Int32Array;

@@ -23,6 +23,7 @@ export interface Way {
   readonly kwhPerM3: number | null;
 }
 
+/** What to run at one flow; SI throughout. */
 export interface Advice {
   /** null where nothing should run: no flow, or no pump lifts the static head. */
   readonly best: Way | null;

@@ -49,6 +49,7 @@ export interface CardStep {
   readonly crossings: readonly number[];
 }
 
+/** The card in SI: static head [m], band as a share. */
 export interface OperatorCard {
   readonly staticHead: number;
   readonly band: number;

@@ -21,6 +21,7 @@ import { type OnAction, type Run, runRule } from './run.ts';
 import { stagedPumpsOf } from './stagedPumpsOf.ts';
 import { watchNotes } from './watchNotes.ts';
 
+/** What to compare. Nothing of it is changed. */
 export interface ComparisonRequest {
   readonly station: Station;
   readonly log: Log;

@@ -7,6 +7,7 @@ export interface Branch {
   power(flow: number): number;
 }
 
+/** A point of the envelope: flow [m³/s] and power [W]. */
 export interface HullPoint {
   readonly flow: number;
   readonly power: number;

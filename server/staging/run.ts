@@ -19,6 +19,7 @@ export interface Run {
   readonly totals: Totals;
 }
 
+/** What a rule comes to over a record. */
 export interface Totals {
   readonly energyKwh: number;
   readonly ledgerKwh: LedgerKwh;

@@ -21,6 +21,7 @@ export interface MainVelocity {
   readonly hoursAboveMaximum: number;
 }
 
+/** How the suction of the pumps fared over a record. */
 export interface NpshMargin {
   /** Hours in which a pump has less than margin × NPSH required. */
   readonly hoursBelowMargin: number;

@@ -25,6 +25,7 @@ export interface BillPlan {
   readonly windows: DemandWindows;
 }
 
+/** A month that the record touches. */
 export interface PlannedMonth {
   /** `2025-03` */
   readonly month: string;

@@ -16,12 +16,14 @@ export interface Period {
   readonly toMinute: number;
 }
 
+/** A price of energy, and when it holds. */
 export interface EnergyRate extends Period {
   readonly name: string;
   /** Money per kWh. */
   readonly rate: number;
 }
 
+/** A charge for the highest window of a month. */
 export interface DemandCharge {
   readonly name: string;
   /** A demand window counts where its start is inside any of these. */
@@ -34,6 +36,7 @@ export interface DemandCharge {
   readonly history: readonly { readonly month: string; readonly kw: number }[];
 }
 
+/** A tariff as bills are made from it; times are local, money is in its currency. */
 export interface Tariff {
   readonly name: string;
   readonly currency: string;
@@ -74,6 +77,7 @@ export interface SharedIntervals {
   readonly highFlow: Float64Array;
 }
 
+/** The bill of one local calendar month, in the tariff's currency. */
 export interface MonthBill {
   /** Local calendar month, `2025-03`. */
   readonly month: string;
@@ -99,6 +103,7 @@ export interface PeriodBill {
   readonly energyCost: number;
 }
 
+/** The bill of a record, in the tariff's currency; every total is the sum of its months. */
 export interface Bill {
   readonly energyCost: number;
   readonly demandCost: number;

@@ -9,7 +9,6 @@ import { niceTicks } from '../../series.ts';
 import { cellOf, mapSentence, namesOf, rowText, runsOf } from './countMap.ts';
 import { countShade } from './Ladder.tsx';
 
-/** The map, asked for when it is opened. */
 interface CountMapProps {
   readonly comparisonId: number;
   readonly most: number;
@@ -17,6 +16,7 @@ interface CountMapProps {
   readonly alike: boolean;
 }
 
+/** Which count is best over flow and static head, with the hours that the record spends there; asked for when opened. */
 export function CountMap({ comparisonId, most, alike }: CountMapProps) {
   const [open, setOpen] = useState(false);
   return (
