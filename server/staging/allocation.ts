@@ -36,20 +36,45 @@ export function allocate(makes: readonly Make[], flow: number, header: number): 
     }
   }
   const reach = (2 * flow) / GRID;
+  const rough: Rough[] = [];
+  const polish = (start: Share[], within: number) => {
+    const { shares, convex } = polished(start, within, header);
+    consider(shares);
+    if (!convex) rough.push({ shares, reach: within, power: powerOf(shares, header) });
+  };
   const curves = makes.map((make) => gridCurve(make, header, flow / GRID));
   const found = onGrid(curves, flow, header);
   if (found) {
-    consider(polished(found, reach, header));
+    polish(found, reach);
     if (differAlike(found)) consider(passedAround(found, reach, header));
   }
   const held = best.power < Infinity ? onGrid(curves, flow, header, { price: best.power / flow }) : null;
-  if (held) consider(polished(held, 2 * reach, header));
-  for (const tight of tightArrangements(makes, flow, header)) consider(polished(tight, flow, header));
+  if (held) polish(held, 2 * reach);
+  for (const tight of tightArrangements(makes, flow, header)) polish(tight, flow);
+  for (const { shares, reach: within } of nearest(rough, best.power)) consider(passedAround(shares, within, header));
   // Where powers kink Newton's steps end short of the least, and pumps alike may do better at different flows.
   const apart = takenApart(best.shares, reach, header);
   const kinked = best.shares.length > 2 && best.shares.some((s) => s.least.heldBy(s.mode, s.flow, header) !== '');
   if (kinked || apart.length > best.shares.length) consider(passedAround(apart, reach, header));
   return best;
+}
+
+/** A split that is not convex, so that it may not yet be the least of its arrangement. */
+interface Rough {
+  readonly shares: readonly Share[];
+  readonly reach: number;
+  readonly power: number;
+}
+
+/** Passing flow around is slow: only the few that may still become the best are worth it. */
+const MOST_ROUGH = 3;
+const WORTH_A_PASS = 1.05;
+
+function nearest(rough: readonly Rough[], best: number): readonly Rough[] {
+  return rough
+    .filter(({ power }) => power < WORTH_A_PASS * best)
+    .sort((a, b) => a.power - b.power)
+    .slice(0, MOST_ROUGH);
 }
 
 /** Pumps alike one by one, where their power is not convex about the flow they share. */
@@ -71,10 +96,14 @@ function differAlike(shares: readonly Share[]): boolean {
 export function allocateToAll(makes: readonly Make[], flow: number, header: number): Allocation {
   const curves = makes.map((make) => gridCurve(make, header, flow / GRID));
   const found = onGrid(curves, flow, header, { least: 1 });
-  const starts = found ? [polished(found, (2 * flow) / GRID, header)] : [];
+  const exact = (start: Share[], reach: number) => {
+    const { shares, convex } = polished(start, reach, header);
+    return convex ? shares : passedAround(shares, reach, header);
+  };
+  const starts = found ? [exact(found, (2 * flow) / GRID)] : [];
   for (const tight of tightArrangements(makes, flow, header)) {
     const running = tight.reduce((sum, share) => sum + share.count, 0);
-    if (running === makes.reduce((sum, make) => sum + make.count, 0)) starts.push(polished(tight, flow, header));
+    if (running === makes.reduce((sum, make) => sum + make.count, 0)) starts.push(exact(tight, flow));
   }
   let best: Allocation = { power: Infinity, shares: [] };
   for (const shares of starts) {

@@ -1,19 +1,25 @@
 import { leastOn } from '../hydraulics/roots.ts';
 import { powerOf, type Share } from './shares.ts';
 
+/** A split, and whether every pump with room to move had a convex power where it ended. */
+export interface Polished {
+  readonly shares: readonly Share[];
+  readonly convex: boolean;
+}
+
 /**
  * The split made exact: pumps alike in make and mode are set to their mean flow where that costs no more, then flow is
- * passed between the groups until all that can move have the same marginal power dP/dq.
+ * passed between the groups until all that can move have the same marginal power dP/dq. Where powers are not convex that
+ * may end short of the least; `passedAround` goes on from there.
  *
  * @param reach  how far a flow may move [m³/s]: the grid has it right to a step or two
  */
-export function polished(found: Share[], reach: number, header: number): readonly Share[] {
+export function polished(found: Share[], reach: number, header: number): Polished {
   const shares = grouped(found, header);
-  if (shares.length === 1) return shares;
-  if (shares.length === 2) return passedBetween(shares[0]!, shares[1]!, reach, header);
-  const { shares: moved, convex } = equalMarginals(shares, reach, header);
-  const better = powerOf(moved, header) < powerOf(shares, header) ? moved : shares;
-  return convex ? better : passedAround(better, reach, header);
+  if (shares.length === 1) return { shares, convex: true };
+  if (shares.length === 2) return { shares: passedBetween(shares[0]!, shares[1]!, reach, header), convex: true };
+  const moved = equalMarginals(shares, reach, header);
+  return powerOf(moved.shares, header) < powerOf(shares, header) ? moved : { shares, convex: moved.convex };
 }
 
 /** Flow passed between every two groups in turn until nothing is gained: where powers are not convex. */
@@ -42,25 +48,22 @@ function passedBetween(one: Share, two: Share, reach: number, header: number): [
   const low = -Math.min(reach, spare(one), room(two));
   const high = Math.min(reach, spare(two), room(one));
   if (!(high > low)) return [one, two];
-  const pass = (d: number): [Share, Share] => [
+  const power = (d: number) =>
+    one.count * one.least.inMode(one.mode, one.flow + d / one.count, header) +
+    two.count * two.least.inMode(two.mode, two.flow - d / two.count, header);
+  const d = leastOn(power, low, high);
+  if (!(power(d) < power(0))) return [one, two];
+  return [
     { ...one, flow: one.flow + d / one.count },
     { ...two, flow: two.flow - d / two.count },
   ];
-  const moved = pass(leastOn((d) => powerOf(pass(d), header), low, high));
-  return powerOf(moved, header) < powerOf([one, two], header) ? moved : [one, two];
 }
 
 /**
  * Newton's method on the condition that every group that can move has one marginal power: each step solves the
  * quadratic model under Σ n·δ = 0, groups at a limit that would leave it being held there.
- *
- * @returns  the split, and whether every group with room to move was convex where it ended
  */
-function equalMarginals(
-  start: readonly Share[],
-  reach: number,
-  header: number,
-): { shares: readonly Share[]; convex: boolean } {
+function equalMarginals(start: readonly Share[], reach: number, header: number): Polished {
   const limits = start.map((s) => limitsOf(s, reach, header));
   let shares = [...start];
   let power = powerOf(shares, header);
