@@ -134,6 +134,31 @@ function breaches(all: readonly Source[]): string[] {
   return [...new Set(found)].sort();
 }
 
+/** A circle of imports, types among them, as its files in order; null where there is none. */
+function circle(all: readonly Source[]): string[] | null {
+  const byFile = new Map(all.map((each) => [each.file, each]));
+  const done = new Set<string>();
+  const path: string[] = [];
+  const visit = (file: string): string[] | null => {
+    const at = path.indexOf(file);
+    if (at >= 0) return [...path.slice(at), file];
+    if (done.has(file)) return null;
+    path.push(file);
+    for (const { target, isPackage } of byFile.get(file)?.imports ?? []) {
+      const found = isPackage || !byFile.has(target) ? null : visit(target);
+      if (found) return found;
+    }
+    path.pop();
+    done.add(file);
+    return null;
+  };
+  for (const { file } of all) {
+    const found = visit(file);
+    if (found) return found;
+  }
+  return null;
+}
+
 describe('the arrows between folders', () => {
   const all = sources();
 
@@ -141,6 +166,15 @@ describe('the arrows between folders', () => {
     expect(all.length).toBeGreaterThan(100);
     for (const folder of CALCULATION) expect(all.some(({ file }) => file.startsWith(`server/${folder}/`))).toBe(true);
     expect(breaches(all)).toEqual([]);
+  });
+
+  it('never lead back to where they came from', () => {
+    expect(circle(all)).toBeNull();
+    const line = "import type { Run } from './run.ts';";
+    const broken = all.map((each) =>
+      each.file === 'server/staging/state.ts' ? source(each.file, `${line}\n${each.code}`) : each,
+    );
+    expect(circle(broken)).toContain('server/staging/state.ts');
   });
 
   it('finds an import for each line that has one', () => {
