@@ -11,6 +11,9 @@ import type { Strictness } from './strictness.ts';
 /** Nodes over flow at which the best set and split are searched. */
 export const NODES = 240;
 
+/** Smaller steps between two nodes with different arrangements. */
+const PARTS = 4;
+
 /**
  * The best set, or the best split of a given set, over flow at one static head and strictness: nodes are searched
  * exactly, and a flow between two nodes is solved for the arrangements on either side.
@@ -21,6 +24,7 @@ export class SetTable {
   private readonly valve: boolean;
   private readonly step: number;
   private readonly nodes: readonly (Arrangement | null)[];
+  private readonly inner = new Map<number, readonly (Arrangement | null)[]>();
   /** Sets at their lowest, told by their settings, with the flow and the power per flow found when the table was made. */
   private readonly rests: readonly RestingSet[];
   private hull: readonly HullPiece[] | null = null;
@@ -97,11 +101,32 @@ export class SetTable {
     return best && arrangement(flow, best.parts);
   }
 
+  /** Nodes about a flow that lies a share of the way from node i to the next: the two beside it first. */
+  private nodesAbout(i: number, share: number): readonly (Arrangement | null | undefined)[] {
+    const { nodes } = this;
+    const around = [nodes[i], nodes[i + 1], nodes[i + 2], nodes[i - 1]];
+    if (i < 0 || i + 1 >= nodes.length || nodes[i]?.key === nodes[i + 1]?.key) return around;
+    const inner = this.innerNodes(i);
+    const k = Math.min(Math.floor(share * PARTS), PARTS - 1);
+    return [inner[k], inner[k + 1], inner[k + 2], inner[k - 1], ...around];
+  }
+
+  /** From node i to the next by smaller steps, searched when first asked for: between them the arrangement changes. */
+  private innerNodes(i: number): readonly (Arrangement | null)[] {
+    let inner = this.inner.get(i);
+    if (!inner) {
+      const between = Array.from({ length: PARTS - 1 }, (_, k) => this.search((i + 1 + (k + 1) / PARTS) * this.step));
+      inner = [this.nodes[i]!, ...between, this.nodes[i + 1]!];
+      this.inner.set(i, inner);
+    }
+    return inner;
+  }
+
   /** The action of least mean power at Q > 0; null where none is known. */
   at(flow: number): Action | null {
     const x = flow / this.step - 1;
     const i = Math.floor(x);
-    const near = [this.nodes[i], this.nodes[i + 1], this.nodes[i + 2], this.nodes[i - 1]];
+    const near = this.nodesAbout(i, x - i);
     let best: Action | null = null;
     const consider = (action: Action | null) => {
       if (action && (best === null || meanPower(action) < meanPower(best) * (1 - 1e-12))) best = action;

@@ -23,11 +23,8 @@ const ROUNDING = 1e-7;
 /** Newton's steps on the split of different pumps may end this far from a kink in one's power. */
 const BESIDE_KINKS = 1e-5;
 
-/**
- * Between the nodes of its table best-count takes a split between two solved ones, and passes over an arrangement that is
- * the best only there.
- */
-const BETWEEN_NODES = 5e-4;
+/** Between the nodes of its table best-count takes a split between two solved ones; beside a kink neither is exact. */
+const BETWEEN_NODES = 5e-5;
 
 interface Case {
   readonly seed: number;
