@@ -73,7 +73,7 @@ export class FloorTable {
     // Many different pumps have many arrangements, each good for a short stretch: there a coarser eye sees as much.
     const many = setsByMake(duty).length > MOST_BREAKS;
     const nodes = many ? NODES / 2 : NODES;
-    const narrow = many ? 2e-4 : 1e-6;
+    const narrow = many ? 1e-3 : 1e-6;
     const segments: Segment[] = [];
     let from = 0;
     for (const to of ends) {

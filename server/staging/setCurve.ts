@@ -14,10 +14,10 @@ export interface SetFigures {
 type FiguresAt = (flow: number) => SetFigures | null;
 
 /** Points of a set's curve of power over flow. */
-const READ_POINTS = 600;
+const READ_POINTS = 300;
 
 /**
- * Figures of a set over flow at one static head: a cubic through solved points, good to about 1e-9; where a stretch ends
+ * Figures of a set over flow at one static head: a cubic through solved points, good to about 1e-8; where a stretch ends
  * (rest, a limit, the capacity) the flow itself is solved.
  */
 export class SetCurve {

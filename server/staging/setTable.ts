@@ -41,7 +41,7 @@ export class SetTable {
     this.valve = pumps.station.surplus === 'throttle';
     const capacity = pumps.flatOut(pumps.most).flow;
     // A given set has few arrangements, each over a long stretch: fewer nodes see as much.
-    const nodes = only !== undefined ? 1 : set ? NODES / 2 : NODES;
+    const nodes = only !== undefined ? 1 : set ? NODES / 4 : NODES;
     this.step = only ?? capacity / nodes;
     this.nodes = Array.from({ length: nodes }, (_, i) => this.search((i + 1) * this.step));
     this.rests = this.valve ? [] : restingSets(pumps, choice, { least: only ?? 0, only: this.set });
