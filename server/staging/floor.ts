@@ -188,6 +188,8 @@ class Segment implements Branch {
   /** Arrangements by number: nodes of one number in a row lie on one smooth stretch. */
   private readonly kinds: Uint16Array;
 
+  readonly exact: (flow: number) => number;
+
   constructor(from: number, to: number, cells: number, narrow: number, solve: Solve) {
     // The left end belongs to the segment before it (what runs there may not reach further), or is rest.
     const start = from + (to - from) * 1e-6;
@@ -203,6 +205,8 @@ class Segment implements Branch {
     const apart = [...new Set(nodes)];
     this.from = start;
     this.to = to;
+    // A curve of motor or pump may kink between nodes, just where the power per flow is least.
+    this.exact = (flow) => solve(flow).power;
     this.flows = Float64Array.from(apart, (node) => node.flow);
     this.values = Float64Array.from(apart, (node) => node.power);
     const names = [...new Set(apart.map((node) => node.kind))];

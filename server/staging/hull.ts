@@ -5,6 +5,8 @@ export interface Branch {
   readonly from: number;
   readonly to: number;
   power(flow: number): number;
+  /** The same solved at the flow itself, where `power` reads a table: ends of chords are settled by it. */
+  readonly exact?: (flow: number) => number;
 }
 
 /** A point of the envelope: flow [m³/s] and power [W]. */
@@ -102,6 +104,9 @@ function touch(pieces: HullPiece[]): HullPiece[] {
       to = nextTo;
       if (moved <= 1e-9 * to.flow) break;
     }
+    const slope = (to.power - from.power) / (to.flow - from.flow);
+    from = slid(from, piece.from as Sample, slope, true);
+    to = slid(to, piece.to as Sample, slope, true);
     result[i] = { from, to, chord: true };
     const before = result[i - 1];
     if (before) result[i - 1] = { ...before, to: from };
@@ -112,11 +117,12 @@ function touch(pieces: HullPiece[]): HullPiece[] {
 }
 
 /** The point of a branch, near the sample it began at, that lies lowest under lines of a slope. */
-function slid(now: Sample, sample: Sample, slope: number): Sample {
+function slid(now: Sample, sample: Sample, slope: number, exact = false): Sample {
   const { branch } = now;
   if (branch === null || sample.high <= sample.low) return now;
-  const flow = leastOn((q) => branch.power(q) - slope * q, sample.low, sample.high);
-  const power = branch.power(flow);
+  const powerAt = (exact && branch.exact) || ((q: number) => branch.power(q));
+  const flow = leastOn((q) => powerAt(q) - slope * q, sample.low, sample.high);
+  const power = powerAt(flow);
   return power - slope * flow < now.power - slope * now.flow ? { ...now, flow, power } : now;
 }
 

@@ -106,10 +106,30 @@ export class MixedPumps implements StagedPumps {
     const low = this.system(flow);
     if (this.sent(settings, low) <= flow) return this.stateAt(settings, low);
     const high = Math.max(...settings.map(({ place, speed }) => this.duty[place]!.shutoffHead(speed)));
-    return this.stateAt(
-      settings,
-      root((header) => this.sent(settings, header) - flow, low, high),
-    );
+    const header = root((head) => this.sent(settings, head) - flow, low, high);
+    const state = this.stateAt(settings, header);
+    return Math.abs(state.flow - flow) <= 1e-9 * flow ? state : this.overFlatTop(settings, header, flow);
+  }
+
+  /**
+   * Some pumps that give exactly Q at a header head at which a curve is held flat: there one head has many flows, and
+   * what they send jumps past Q. Those on their flat top carry what the others leave.
+   */
+  private overFlatTop(settings: readonly Setting[], header: number, flow: number): State {
+    const sentAt = (head: number) => settings.map(({ place, speed }) => this.duty[place]!.flowInto(head, speed));
+    const least = sentAt(header * (1 + 1e-9));
+    const most = sentAt(header * (1 - 1e-9));
+    const sum = (flows: readonly number[]) => flows.reduce((all, q) => all + q, 0);
+    const share = (flow - sum(least)) / (sum(most) - sum(least));
+    const running: Running[] = [];
+    let set = 0;
+    settings.forEach(({ place, speed, onDrive }, i) => {
+      const q = least[i]! + share * (most[i]! - least[i]!);
+      if (q <= 0) return;
+      running.push({ pump: this.duty[place]!, count: 1, flow: q, speed, onDrive });
+      set += 2 ** place;
+    });
+    return new State(this.station, this.staticHead, set, running);
   }
 
   private onLine(count: number): Setting[] {

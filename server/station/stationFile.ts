@@ -14,7 +14,8 @@ const positive = z.number().positive().max(LARGEST);
 const notNegative = z.number().min(0).max(LARGEST);
 /** A level above or below the datum. */
 const level = z.number().min(-LARGEST).max(LARGEST);
-const efficiency = z.number().gt(0).max(1);
+/** Below a thousandth nothing runs, and the arithmetic would overflow. */
+const efficiency = z.number().min(0.001).max(1);
 
 /** A number, a table over load, or the name of a published table. */
 const partLoad = z.union([efficiency, z.array(z.strictObject({ load: positive, efficiency })).min(1), z.string()]);
