@@ -109,19 +109,44 @@ function touch(pieces: HullPiece[]): HullPiece[] {
     to = slid(to, piece.to as Sample, slope, true);
     result[i] = { from, to, chord: true };
     const before = result[i - 1];
-    if (before) result[i - 1] = { ...before, to: from };
+    if (before && !before.chord) result[i - 1] = { ...before, to: from };
     const after = result[i + 1];
-    if (after) result[i + 1] = { ...after, from: to };
+    if (after && !after.chord) result[i + 1] = { ...after, from: to };
+  }
+  return stitched(result);
+}
+
+/** Two chords that met in one sample may touch its branch in two places: between them the hull follows it. */
+function stitched(pieces: readonly HullPiece[]): HullPiece[] {
+  const result: HullPiece[] = [];
+  for (const piece of pieces) {
+    const last = result[result.length - 1];
+    if (last && piece.from.flow > last.to.flow) result.push({ from: last.to, to: piece.from, chord: false });
+    result.push(last && piece.from.flow < last.to.flow ? { ...piece, from: last.to } : piece);
   }
   return result;
 }
+
+/** Flows tried before the least is closed in on. */
+const TRIED = 8;
 
 /** The point of a branch, near the sample it began at, that lies lowest under lines of a slope. */
 function slid(now: Sample, sample: Sample, slope: number, exact = false): Sample {
   const { branch } = now;
   if (branch === null || sample.high <= sample.low) return now;
   const powerAt = (exact && branch.exact) || ((q: number) => branch.power(q));
-  const flow = leastOn((q) => powerAt(q) - slope * q, sample.low, sample.high);
+  const above = (q: number) => powerAt(q) - slope * q;
+  // Where a curve kinks there may be more than one least; the lowest of some flows says which is meant.
+  const step = (sample.high - sample.low) / TRIED;
+  let middle = sample.low;
+  let least = Infinity;
+  for (let i = 0; i <= TRIED; i++) {
+    const height = above(sample.low + i * step);
+    if (height >= least) continue;
+    least = height;
+    middle = sample.low + i * step;
+  }
+  const flow = leastOn(above, Math.max(middle - step, sample.low), Math.min(middle + step, sample.high));
   const power = powerAt(flow);
   return power - slope * flow < now.power - slope * now.flow ? { ...now, flow, power } : now;
 }
